@@ -1,0 +1,21 @@
+namespace StreamLogit.Engine.Definition;
+
+/// <summary>What becomes of an event whose label has not come when the wait is over.</summary>
+public enum UnlabelledEvents
+{
+    /// <summary>It is forgotten and counted as expired.</summary>
+    Drop,
+
+    /// <summary>It is learned as a 0, for streams in which only bad events are ever reported.</summary>
+    Negative,
+}
+
+/// <summary>How events wait for their labels.</summary>
+public sealed record LabelOptions
+{
+    /// <summary>How long, in microseconds of the stream's clock, an event waits for its label. Default 30 days.</summary>
+    public long WaitMicroseconds { get; init; } = 30L * 24 * 3600 * 1_000_000;
+
+    /// <summary>What becomes of it then. Default <see cref="UnlabelledEvents.Drop"/>.</summary>
+    public UnlabelledEvents Unlabelled { get; init; } = UnlabelledEvents.Drop;
+}

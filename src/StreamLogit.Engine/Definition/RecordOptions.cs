@@ -1,0 +1,48 @@
+using System.Collections.Immutable;
+
+namespace StreamLogit.Engine.Definition;
+
+/// <summary>How the times of records are written.</summary>
+public enum TimeFormat
+{
+    /// <summary>RFC 3339 date-time with an offset, as in <c>2026-03-01T08:15:30.120Z</c>.</summary>
+    Rfc3339,
+
+    /// <summary>Seconds since 1970-01-01T00:00:00Z, whole or with a fraction.</summary>
+    UnixSeconds,
+
+    /// <summary>Milliseconds since 1970-01-01T00:00:00Z, whole or with a fraction.</summary>
+    UnixMilliseconds,
+}
+
+/// <summary>Where the parts that every record has stand in it. A path names nested fields with dots: <c>payment.amount</c>.</summary>
+public sealed record RecordOptions
+{
+    /// <summary>The path of the event's id. Default <c>id</c>.</summary>
+    public string Id { get; init; } = "id";
+
+    /// <summary>The path of the time. Default <c>time</c>.</summary>
+    public string Time { get; init; } = "time";
+
+    /// <summary>How the time is written. Default <see cref="Definition.TimeFormat.Rfc3339"/>.</summary>
+    public TimeFormat TimeFormat { get; init; } = TimeFormat.Rfc3339;
+
+    /// <summary>The path of the label. Default <c>label</c>.</summary>
+    public string Label { get; init; } = "label";
+
+    /// <summary>The path of the importance weight of the event, which is 1 where the field is absent. Default <c>weight</c>.</summary>
+    public string Weight { get; init; } = "weight";
+
+    /// <summary>
+    /// What the label field may hold, and the label that each value means. A number is compared by value, a string by its characters,
+    /// a boolean by <c>true</c> and <c>false</c>. Default: 0 and 1.
+    /// </summary>
+    public ImmutableDictionary<string, int> LabelValues { get; init; } =
+        ImmutableDictionary<string, int>.Empty.Add("0", 0).Add("1", 1);
+
+    /// <summary>The longest record, in bytes; a longer one is a reject. Default 1 MiB.</summary>
+    public int MaximumBytes { get; init; } = 1 << 20;
+
+    /// <summary>The deepest nesting of objects and arrays; a deeper one is a reject. Default 32.</summary>
+    public int MaximumDepth { get; init; } = 32;
+}

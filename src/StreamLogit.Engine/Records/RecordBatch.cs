@@ -1,0 +1,91 @@
+namespace StreamLogit.Engine.Records;
+
+/// <summary>
+/// A run of records on their way through the worker: the source adds their bytes, the decoder reads them, the engine scores them.
+/// Reused without allocation once it has grown to its working size.
+/// </summary>
+public sealed class RecordBatch
+{
+    private byte[] _bytes = new byte[1 << 16];
+    private DecodedRecord[] _records = new DecodedRecord[1024];
+    private FieldValue[] _fields;
+    private readonly int _fieldCount;
+
+    /// <summary>An empty batch for records of a schema.</summary>
+    public RecordBatch(RecordSchema schema)
+    {
+        ArgumentNullException.ThrowIfNull(schema);
+        _fieldCount = schema.Fields.Length;
+        _fields = new FieldValue[_records.Length * _fieldCount];
+    }
+
+    /// <summary>Where the records come from, as positions name it: a file name, a topic.</summary>
+    public string Origin { get; set; } = "";
+
+    /// <summary>How many records it holds.</summary>
+    public int Count { get; private set; }
+
+    /// <summary>How many bytes it holds: those of its records and of their unescaped texts.</summary>
+    public int ByteCount { get; private set; }
+
+    /// <summary>The records.</summary>
+    public Span<DecodedRecord> Records => _records.AsSpan(0, Count);
+
+    /// <summary>The bytes of all records.</summary>
+    public ReadOnlySpan<byte> Bytes => _bytes.AsSpan(0, ByteCount);
+
+    /// <summary>The fields of a record, in the schema's order.</summary>
+    public Span<FieldValue> Fields(int record) => _fields.AsSpan(record * _fieldCount, _fieldCount);
+
+    /// <summary>The bytes of a record as they came.</summary>
+    public ReadOnlySpan<byte> RecordBytes(int record) => Bytes.Slice(_records[record].Start, _records[record].Length);
+
+    /// <summary>The id of a record as UTF-8, unescaped.</summary>
+    public ReadOnlySpan<byte> Id(int record) => Bytes.Slice(_records[record].IdStart, _records[record].IdLength);
+
+    /// <summary>Empties the batch and keeps its memory.</summary>
+    public void Clear()
+    {
+        Count = 0;
+        ByteCount = 0;
+    }
+
+    /// <summary>Adds the bytes of a record that is still to be decoded.</summary>
+    /// <param name="record">The bytes, without the line end.</param>
+    /// <param name="position">Its number in the origin.</param>
+    public void Add(ReadOnlySpan<byte> record, long position)
+    {
+        if (Count == _records.Length)
+        {
+            Array.Resize(ref _records, Count * 2);
+            Array.Resize(ref _fields, Count * 2 * _fieldCount);
+        }
+        _records[Count++] = new DecodedRecord { Start = ByteCount, Length = record.Length, Position = position };
+        Append(record.Length);
+        record.CopyTo(_bytes.AsSpan(ByteCount - record.Length));
+    }
+
+    /// <summary>Adds the first bytes of a record that is longer than the definition allows, already a reject.</summary>
+    public void AddTooLong(ReadOnlySpan<byte> firstBytes, long position, string detail)
+    {
+        Add(firstBytes, position);
+        Reject(Count - 1, RejectReason.TooLong, detail);
+    }
+
+    /// <summary>Turns a record into a reject.</summary>
+    public void Reject(int record, RejectReason reason, string? detail = null)
+    {
+        _records[record].Kind = RecordKind.Reject;
+        _records[record].Reason = reason;
+        _records[record].Detail = detail;
+    }
+
+    /// <summary>Makes room for text behind the records, where the decoder puts what it unescapes.</summary>
+    internal Span<byte> Append(int length)
+    {
+        if (_bytes.Length - ByteCount < length)
+            Array.Resize(ref _bytes, Math.Max(_bytes.Length * 2, ByteCount + length));
+        ByteCount += length;
+        return _bytes.AsSpan(ByteCount - length, length);
+    }
+}

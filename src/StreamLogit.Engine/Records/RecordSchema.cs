@@ -1,0 +1,65 @@
+using System.Collections.Immutable;
+using StreamLogit.Engine.Definition;
+
+namespace StreamLogit.Engine.Records;
+
+/// <summary>What the features want of a field.</summary>
+[Flags]
+public enum FieldUse
+{
+    /// <summary>Nothing.</summary>
+    None = 0,
+
+    /// <summary>Its value as a number.</summary>
+    Number = 1,
+
+    /// <summary>Its text and the hash of its text.</summary>
+    Category = 2,
+}
+
+/// <summary>The fields that the features of a definition read, each once, and the parts that every record has.</summary>
+public sealed class RecordSchema
+{
+    private readonly Dictionary<string, int> _indices = new(StringComparer.Ordinal);
+
+    /// <summary>Collects the fields of a definition's features in the order in which they are first named.</summary>
+    public RecordSchema(EngineDefinition definition)
+    {
+        ArgumentNullException.ThrowIfNull(definition);
+        Options = definition.Record;
+        var fields = new List<(string Path, FieldUse Use)>();
+        foreach (var feature in definition.Features)
+        {
+            switch (feature)
+            {
+                case NumberFeature number: Add(number.Field, FieldUse.Number); break;
+                case NumberCycleFeature cycle: Add(cycle.Field, FieldUse.Number); break;
+                case CategoryFeature category:
+                    foreach (var path in category.Fields) Add(path, FieldUse.Category);
+                    break;
+            }
+        }
+        Fields = [.. fields];
+
+        void Add(string path, FieldUse use)
+        {
+            if (_indices.TryGetValue(path, out int index))
+            {
+                fields[index] = (path, fields[index].Use | use);
+                return;
+            }
+            _indices[path] = fields.Count;
+            fields.Add((path, use));
+        }
+    }
+
+    /// <summary>Where the id, the time, the label and the weight stand.</summary>
+    public RecordOptions Options { get; }
+
+    /// <summary>The fields, without repetition.</summary>
+    public ImmutableArray<(string Path, FieldUse Use)> Fields { get; }
+
+    /// <summary>The place of a path in <see cref="Fields"/>.</summary>
+    /// <exception cref="KeyNotFoundException">No feature reads that path.</exception>
+    public int IndexOf(string path) => _indices[path];
+}
