@@ -59,4 +59,7 @@ public enum RejectReason
 
     /// <summary>A second event with the id of an event that is still awaiting its label.</summary>
     IdReused,
+
+    /// <summary>A row of comma-separated values that is not quoted as RFC 4180 says, or whose cells are not as many as the header's.</summary>
+    RowMalformed,
 }
