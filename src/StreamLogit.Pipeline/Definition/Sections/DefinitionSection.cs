@@ -1,0 +1,52 @@
+using StreamLogit.Engine.Definition;
+
+namespace StreamLogit.Pipeline.Definition.Sections;
+
+/// <summary>The definition as a whole.</summary>
+internal static class DefinitionSection
+{
+    /// <summary>The definition, without its text; meaningless where errors were added.</summary>
+    public static StreamDefinition? Read(ValueReader value, string folder, DefinitionUse use)
+    {
+        if (value.Object() is not { } definition) return null;
+        definition.Optional("$schema")?.Text();
+        string? stream = definition.Required("stream", "it names the stream")?.Text();
+        var record = definition.Optional("record");
+        var features = definition.Required("features", "it lists what the model sees of an event");
+        var learning = definition.Optional("learning");
+        var labels = LabelsSection.Read(definition.Optional("labels"));
+        var decision = DecisionSection.Read(definition.Optional("decision"));
+        var health = definition.Optional("health");
+        var source = ForRun("source", "it says where the records come from");
+        var scores = ForRun("scores", "it says where scores are written");
+        var rejects = definition.Optional("rejects");
+        var state = ForRun("state", "it says in which folder the state is kept");
+        definition.End();
+
+        var files = new FilePaths(folder);
+        var recordOptions = RecordSection.Read(record, labels);
+        var sourceOptions = SourceSection.Read(source, files);
+        var (output, decisionOptions) = ScoresSection.Read(scores, decision, files, use);
+        return new StreamDefinition
+        {
+            Engine = new EngineDefinition
+            {
+                Stream = stream ?? "",
+                Record = recordOptions,
+                Features = FeaturesSection.Read(features, recordOptions),
+                Learning = LearningSection.Read(learning),
+                Labels = labels,
+                Decision = decisionOptions,
+                Health = HealthSection.Read(health),
+            },
+            Source = sourceOptions,
+            Scores = output,
+            Rejects = RejectsSection.Read(rejects, files),
+            State = StateSection.Read(state, files),
+            EffectiveJson = "",
+        };
+
+        ValueReader? ForRun(string key, string purpose) =>
+            use == DefinitionUse.Run ? definition.Required(key, purpose) : definition.Optional(key);
+    }
+}

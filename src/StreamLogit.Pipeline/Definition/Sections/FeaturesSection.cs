@@ -1,0 +1,91 @@
+using System.Collections.Immutable;
+using StreamLogit.Engine.Definition;
+
+namespace StreamLogit.Pipeline.Definition.Sections;
+
+/// <summary><c>features</c>: what the model sees of an event.</summary>
+internal static class FeaturesSection
+{
+    private const long ShortestPeriodMicroseconds = 1_000;
+    private const long LongestPeriodMicroseconds = 36_525L * 24 * 3600 * 1_000_000;
+
+    public static ImmutableArray<FeatureOptions> Read(ValueReader? value, RecordOptions record)
+    {
+        if (value?.List("features") is not { } items) return [];
+        var features = ImmutableArray.CreateBuilder<FeatureOptions>();
+        var names = new Dictionary<(Type, string), string>();
+        foreach (var item in items)
+        {
+            if (ReadFeature(item, record) is not { } feature) continue;
+            if (names.TryAdd((feature.GetType(), feature.Name), item.Path)) features.Add(feature);
+            else item.Error($"is the same feature as {names[(feature.GetType(), feature.Name)]}: keep one");
+        }
+        return features.ToImmutable();
+    }
+
+    private static FeatureOptions? ReadFeature(ValueReader item, RecordOptions record)
+    {
+        if (item.Object() is not { } section || section.Kind("feature", "number", "category", "cycle") is not var (kind, field)) return null;
+        FeatureOptions? feature = kind switch
+        {
+            "number" => ReadNumber(section, field, record),
+            "category" => ReadCategory(field, record),
+            _ => ReadCycle(section, field, record),
+        };
+        section.End();
+        return feature;
+    }
+
+    private static NumberFeature? ReadNumber(ObjectReader section, ValueReader value, RecordOptions record)
+    {
+        string? field = Field(value, record);
+        var scale = NumberScale.None;
+        if (section.Optional("scale") is { } written)
+        {
+            var read = written.OneOf(("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard));
+            if (read is null) return null;
+            scale = read.Value;
+        }
+        return field is null ? null : new NumberFeature(field, scale);
+    }
+
+    private static CategoryFeature? ReadCategory(ValueReader value, RecordOptions record)
+    {
+        if (value.OneOrList("paths of fields") is not { } items) return null;
+        var fields = ImmutableArray.CreateBuilder<string>();
+        foreach (var item in items)
+        {
+            if (Field(item, record) is not { } field) continue;
+            if (fields.Contains(field)) item.Error($"the field {Quoted.Text(field)} is there twice: keep one");
+            else fields.Add(field);
+        }
+        return fields.Count == items.Length ? new CategoryFeature(fields.ToImmutable()) : null;
+    }
+
+    private static FeatureOptions? ReadCycle(ObjectReader section, ValueReader value, RecordOptions record)
+    {
+        string? field = Field(value, record);
+        var period = section.Required("period", "how long the cycle is, a duration for the time of the event or a number for another field");
+        if (field is null || period is null) return null;
+        if (field == record.Time)
+        {
+            return period.Duration(ShortestPeriodMicroseconds, LongestPeriodMicroseconds) is { } microseconds
+                ? new TimeCycleFeature(microseconds, period.Value.Text)
+                : null;
+        }
+        if (period.Value.Kind == System.Text.Json.JsonValueKind.String)
+        {
+            period.Error($"expected a number in the unit of the field, found {period.Value.Describe()}; only the time of the event, {Quoted.Text(record.Time)}, takes a duration");
+            return null;
+        }
+        return period.Number(NumberRange.Positive) is { } length ? new NumberCycleFeature(field, length) : null;
+    }
+
+    private static string? Field(ValueReader value, RecordOptions record)
+    {
+        string? field = value.FieldPath();
+        if (field is null || field != record.Label) return field;
+        value.Error($"the field {Quoted.Text(field)} holds the label, which is not known when an event is scored: name another");
+        return null;
+    }
+}

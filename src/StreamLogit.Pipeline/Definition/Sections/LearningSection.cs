@@ -1,0 +1,41 @@
+using System.Collections.Immutable;
+using StreamLogit.Engine.Definition;
+
+namespace StreamLogit.Pipeline.Definition.Sections;
+
+/// <summary><c>learning</c>: the bank of settings and what is published of it.</summary>
+internal static class LearningSection
+{
+    private const int FewestSlotsExponent = 4;
+    private const int MostSlotsExponent = 26;
+    private const string Blend = "blend";
+
+    public static LearningOptions Read(ValueReader? value)
+    {
+        var defaults = new LearningOptions();
+        if (value?.Object() is not { } section) return defaults;
+        int? slots = section.Optional("slots")?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
+        ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
+        var bank = section.Optional("bank") is { } written ? BankSection.Read(written) : defaults.Bank;
+        string? publish = ReadPublish(section.Optional("publish"), bank);
+        double? switchRate = section.Optional("switchRate")?.Number(NumberRange.ZeroToOne);
+        section.End();
+        return new LearningOptions
+        {
+            Slots = slots ?? defaults.Slots,
+            HashSeed = hashSeed ?? defaults.HashSeed,
+            Bank = bank ?? defaults.Bank,
+            PublishedSetting = publish,
+            SwitchRate = switchRate ?? defaults.SwitchRate,
+        };
+    }
+
+    private static string? ReadPublish(ValueReader? value, ImmutableArray<SettingOptions>? bank)
+    {
+        if (value?.Text() is not { } name || name == Blend) return null;
+        // Where the bank is wrong nobody can say which names are right.
+        if (bank is not { } settings || settings.Any(setting => setting.Name == name)) return name;
+        value.UnknownName([Blend, .. settings.Select(setting => setting.Name)]);
+        return null;
+    }
+}

@@ -1,0 +1,9 @@
+using StreamLogit.Engine.Definition;
+
+namespace StreamLogit.Pipeline.Definition.Sections;
+
+/// <summary>An update rule that the bank can hold.</summary>
+/// <param name="Name">What <c>update</c> calls it.</param>
+/// <param name="Numbers">Its numbers.</param>
+/// <param name="Create">Makes a setting of the numbers, which are in the order of <paramref name="Numbers"/>.</param>
+internal sealed record UpdateRule(string Name, IReadOnlyList<RuleNumber> Numbers, Func<double[], SettingOptions> Create);

@@ -1,0 +1,26 @@
+using StreamLogit.Engine.Definition;
+using StreamLogit.Pipeline.Options;
+
+namespace StreamLogit.Pipeline.Definition;
+
+/// <summary>A stream definition that has been checked: what the engine computes, where records come from and where results go.</summary>
+public sealed record StreamDefinition
+{
+    /// <summary>What the engine computes.</summary>
+    public required EngineDefinition Engine { get; init; }
+
+    /// <summary>Where the records come from, or null where the definition does not say.</summary>
+    public SourceOptions? Source { get; init; }
+
+    /// <summary>Where scores are written, or null where the definition does not say.</summary>
+    public FileOutputOptions? Scores { get; init; }
+
+    /// <summary>Where rejects are written, or null where they are only counted.</summary>
+    public FileOutputOptions? Rejects { get; init; }
+
+    /// <summary>Where the state is kept and how often it is committed, or null where the definition does not say.</summary>
+    public StateOptions? State { get; init; }
+
+    /// <summary>The definition as it was used, overrides included, without comments: JSON, indented.</summary>
+    public required string EffectiveJson { get; init; }
+}
