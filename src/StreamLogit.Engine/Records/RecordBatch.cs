@@ -6,6 +6,12 @@ namespace StreamLogit.Engine.Records;
 /// </summary>
 public sealed class RecordBatch
 {
+    /// <summary>
+    /// How many bytes there are at least behind the last one in use, whatever they hold. The decoder reads several bytes at once and may
+    /// reach so far.
+    /// </summary>
+    internal const int Padding = 256;
+
     private byte[] _bytes = new byte[1 << 16];
     private DecodedRecord[] _records = new DecodedRecord[1024];
     private FieldValue[] _fields;
@@ -25,7 +31,7 @@ public sealed class RecordBatch
     /// <summary>How many records it holds.</summary>
     public int Count { get; private set; }
 
-    /// <summary>How many bytes it holds: those of its records and of their unescaped texts.</summary>
+    /// <summary>How many bytes it holds: those of its records, a NUL behind each, and their unescaped texts.</summary>
     public int ByteCount { get; private set; }
 
     /// <summary>The records.</summary>
@@ -61,8 +67,9 @@ public sealed class RecordBatch
             Array.Resize(ref _fields, Count * 2 * _fieldCount);
         }
         _records[Count++] = new DecodedRecord { Start = ByteCount, Length = record.Length, Position = position };
-        Append(record.Length);
-        record.CopyTo(_bytes.AsSpan(ByteCount - record.Length));
+        var target = Append(record.Length + 1);
+        record.CopyTo(target);
+        target[record.Length] = 0;
     }
 
     /// <summary>Adds the first bytes of a record that is longer than the definition allows, already a reject.</summary>
@@ -83,8 +90,8 @@ public sealed class RecordBatch
     /// <summary>Makes room for text behind the records, where the decoder puts what it unescapes.</summary>
     internal Span<byte> Append(int length)
     {
-        if (_bytes.Length - ByteCount < length)
-            Array.Resize(ref _bytes, Math.Max(_bytes.Length * 2, ByteCount + length));
+        if (_bytes.Length - ByteCount < length + Padding)
+            Array.Resize(ref _bytes, Math.Max(_bytes.Length * 2, ByteCount + length + Padding));
         ByteCount += length;
         return _bytes.AsSpan(ByteCount - length, length);
     }

@@ -1,0 +1,102 @@
+using System.Text;
+
+namespace StreamLogit.Engine.Records;
+
+/// <summary>An object whose keys are read: the record itself, or one that a dotted path leads into. Finds its keys by name.</summary>
+/// <remarks>
+/// Keys that nobody reads are learned as they come, up to a bound, so that they too are compared directly the next time.
+/// </remarks>
+internal sealed class KnownObject
+{
+    private const int MostLearned = 256;
+
+    private KnownKey?[] _table = new KnownKey?[64];
+    private int _count;
+    private int _learned;
+
+    /// <summary>Stands before the first key.</summary>
+    public KnownKey Start { get; } = KnownKey.CreateUnmatched();
+
+    /// <summary>Stands for the keys that are not known. Its values are not read.</summary>
+    public KnownKey Stray { get; } = KnownKey.CreateUnmatched();
+
+    /// <summary>The part of the lowest rank that stands within.</summary>
+    public RecordPart? FirstPart { get; private set; }
+
+    /// <summary>Builds the tree of keys that the definition's paths lead through.</summary>
+    /// <remarks>
+    /// A path <c>a.b</c> leads to the key b of the object at key a. In the record itself a key named <c>a.b</c> stands for the same,
+    /// as flat records have it; a record with both has that key twice.
+    /// </remarks>
+    public static KnownObject Build(IEnumerable<RecordPart> parts)
+    {
+        var root = new KnownObject();
+        foreach (var part in parts)
+        {
+            var here = root;
+            string[] names = part.Path.Split('.');
+            for (int i = 0; i < names.Length - 1; i++)
+            {
+                var outer = here.GetOrAdd(names[i]);
+                here = outer.Inner ??= new KnownObject();
+                if (here.FirstPart is null || part.Rank < here.FirstPart.Rank) here.FirstPart = part;
+            }
+            var key = here.GetOrAdd(names[^1]);
+            key.Add(part);
+            if (here == root) continue;
+            var flat = root.GetOrAdd(part.Path);
+            flat.Add(part);
+            flat.Twin = key;
+            key.Twin = flat;
+        }
+        return root;
+    }
+
+    /// <summary>The key of a name, or null.</summary>
+    public KnownKey? Find(ReadOnlySpan<byte> name, ulong fingerprint)
+    {
+        int mask = _table.Length - 1;
+        for (int i = (int)fingerprint & mask; _table[i] is { } key; i = (i + 1) & mask)
+        {
+            if (name.SequenceEqual(key.Name)) return key;
+        }
+        return null;
+    }
+
+    /// <summary>Remembers a key that nobody reads, or returns null where there is no room for it.</summary>
+    public KnownKey? TryLearn(ReadOnlySpan<byte> name)
+    {
+        if (_learned == MostLearned || name.Length + 2 > KnownKey.LongestQuoted) return null;
+        _learned++;
+        return Add(new KnownKey(name));
+    }
+
+    private KnownKey GetOrAdd(string name)
+    {
+        byte[] utf8 = Encoding.UTF8.GetBytes(name);
+        return Find(utf8, KeyFingerprint.Of(utf8)) ?? Add(new KnownKey(utf8));
+    }
+
+    private KnownKey Add(KnownKey key)
+    {
+        if (++_count * 2 > _table.Length)
+        {
+            var old = _table;
+            _table = new KnownKey?[old.Length * 2];
+            foreach (var moved in old)
+            {
+                if (moved is not null) Place(moved);
+            }
+        }
+        Place(key);
+        return key;
+    }
+
+    private void Place(KnownKey key)
+    {
+        int mask = _table.Length - 1;
+        int i = (int)KeyFingerprint.Of(key.Name) & mask;
+        while (_table[i] is not null) i = (i + 1) & mask;
+        _table[i] = key;
+    }
+}
