@@ -1,0 +1,183 @@
+using StreamLogit.Engine.Numerics;
+
+namespace StreamLogit.Engine.Learning;
+
+/// <summary>The blend on lanes of one width.</summary>
+internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
+{
+    // Below this a sum of probabilities is taken from logarithms, because its terms may have underflowed.
+    private const double SmallestSum = 1e-280;
+
+    // A place beyond the last setting is this much worse than the best setting.
+    private const double NoSetting = 1e300;
+
+    private readonly int _settingCount;
+    private readonly double _switchRate;
+    private readonly double[] _weight;
+    private readonly double[] _share;
+    private readonly double[] _lossAboveBest;
+    private readonly double[] _logLossTotal;
+    private readonly double[] _brierTotal;
+
+    // Of the log-odds in _logOdds: e^-|z| and the probabilities of the labels 1 and 0, as long as _isCached.
+    private readonly double[] _logOdds;
+    private readonly double[] _exp;
+    private readonly double[] _probability;
+    private readonly double[] _complement;
+    private readonly double[] _loss;
+    private double[] _miss;
+    private bool _isCached;
+
+    public Blend(int settingCount, double switchRate)
+    {
+        int rowLength = RowWidth.Padded(settingCount);
+        _settingCount = settingCount;
+        _switchRate = switchRate;
+        _weight = new double[rowLength];
+        _share = new double[rowLength];
+        _lossAboveBest = new double[rowLength];
+        _logLossTotal = new double[rowLength];
+        _brierTotal = new double[rowLength];
+        _logOdds = new double[rowLength];
+        _exp = new double[rowLength];
+        _probability = new double[rowLength];
+        _complement = new double[rowLength];
+        _loss = new double[rowLength];
+        _miss = _complement;
+        Array.Fill(_weight, 1.0 / settingCount, 0, settingCount);
+        Array.Fill(_share, switchRate / settingCount, 0, settingCount);
+        Array.Fill(_lossAboveBest, NoSetting, settingCount, rowLength - settingCount);
+    }
+
+    public override ReadOnlySpan<double> MissProbability => _miss;
+
+    public override double LogOdds(ReadOnlySpan<double> settingLogOdds)
+    {
+        ComputeProbabilities(settingLogOdds);
+        double one = LaneSum.OfProducts<T>(in _weight[0], in _probability[0], (nuint)_weight.Length);
+        double zero = LaneSum.OfProducts<T>(in _weight[0], in _complement[0], (nuint)_weight.Length);
+        return one > SmallestSum && zero > SmallestSum
+            ? Elementary.Log(one) - Elementary.Log(zero)
+            : LogOfSum(1) - LogOfSum(-1);
+    }
+
+    public override void Learn(ReadOnlySpan<double> scoredLogOdds, int label, double weight)
+    {
+        if (!_isCached || !scoredLogOdds.SequenceEqual(_logOdds.AsSpan(0, scoredLogOdds.Length))) ComputeProbabilities(scoredLogOdds);
+        double[] hit = label == 1 ? _probability : _complement;
+        _miss = label == 1 ? _complement : _probability;
+        for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
+        {
+            T logOdds = T.Load(in _logOdds[0], lane);
+            T loss = LaneMath.SoftplusOf(label == 1 ? T.Of(0) - logOdds : logOdds, T.Load(in _exp[0], lane)) * T.Of(weight);
+            T miss = T.Load(in _miss[0], lane);
+            loss.Store(ref _loss[0], lane);
+            (T.Load(in _logLossTotal[0], lane) + loss).Store(ref _logLossTotal[0], lane);
+            (T.Load(in _brierTotal[0], lane) + T.Of(weight) * (miss * miss)).Store(ref _brierTotal[0], lane);
+        }
+        if (_settingCount == 1) return;
+        if (_switchRate == 0) MoveExponentialWeights();
+        else MoveFixedShare(hit, weight);
+    }
+
+    public override void Weights(Span<double> weights)
+    {
+        double total = 0;
+        for (int setting = 0; setting < _settingCount; setting++) total += _weight[setting];
+        for (int setting = 0; setting < _settingCount; setting++) weights[setting] = _weight[setting] / total;
+    }
+
+    public override double LogLossTotal(int setting) => _logLossTotal[setting];
+
+    public override double BrierTotal(int setting) => _brierTotal[setting];
+
+    public override void SaveSetting(int setting, Span<double> numbers)
+    {
+        numbers[0] = _weight[setting];
+        numbers[1] = _lossAboveBest[setting];
+        numbers[2] = _logLossTotal[setting];
+        numbers[3] = _brierTotal[setting];
+    }
+
+    public override void LoadSetting(int setting, ReadOnlySpan<double> numbers)
+    {
+        _weight[setting] = numbers[0];
+        _lossAboveBest[setting] = numbers[1];
+        _logLossTotal[setting] = numbers[2];
+        _brierTotal[setting] = numbers[3];
+    }
+
+    private void ComputeProbabilities(ReadOnlySpan<double> settingLogOdds)
+    {
+        settingLogOdds.CopyTo(_logOdds);
+        for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
+        {
+            T logOdds = T.Load(in _logOdds[0], lane);
+            T exp = LaneMath.Exp(T.Of(0) - T.Abs(logOdds));
+            exp.Store(ref _exp[0], lane);
+            LaneMath.SigmoidOf(logOdds, exp).Store(ref _probability[0], lane);
+            LaneMath.SigmoidOf(T.Of(0) - logOdds, exp).Store(ref _complement[0], lane);
+        }
+        _isCached = true;
+    }
+
+    // Kept as losses: weights of settings that lag far behind underflow, but such a setting may come back.
+    private void MoveExponentialWeights()
+    {
+        double best = double.PositiveInfinity;
+        for (int setting = 0; setting < _settingCount; setting++)
+        {
+            _lossAboveBest[setting] += _loss[setting];
+            best = Math.Min(best, _lossAboveBest[setting]);
+        }
+        for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
+        {
+            T loss = T.Load(in _lossAboveBest[0], lane) - T.Of(best);
+            loss.Store(ref _lossAboveBest[0], lane);
+            LaneMath.Exp(T.Of(0) - loss).Store(ref _weight[0], lane);
+        }
+    }
+
+    private void MoveFixedShare(double[] hit, double weight)
+    {
+        double total = LaneSum.OfProducts<T>(in _weight[0], in hit[0], (nuint)_weight.Length);
+        if (weight == 1 && total > SmallestSum)
+        {
+            Mix(in hit[0], total);
+            return;
+        }
+
+        // The power of the probabilities, over its greatest, which keeps the sum away from 0.
+        double least = double.PositiveInfinity;
+        for (int setting = 0; setting < _settingCount; setting++) least = Math.Min(least, _loss[setting]);
+        for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
+            LaneMath.Exp(T.Of(least) - T.Load(in _loss[0], lane)).Store(ref _loss[0], lane);
+        Mix(in _loss[0], LaneSum.OfProducts<T>(in _weight[0], in _loss[0], (nuint)_weight.Length));
+    }
+
+    private void Mix(ref readonly double likelihood, double total)
+    {
+        T keep = T.Of((1 - _switchRate) / total);
+        for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
+        {
+            T kept = T.Load(in _weight[0], lane) * T.Load(in likelihood, lane) * keep;
+            (kept + T.Load(in _share[0], lane)).Store(ref _weight[0], lane);
+        }
+    }
+
+    // ln of the weighted sum of sigmoid(sign * log-odds).
+    private double LogOfSum(int sign)
+    {
+        double greatest = double.NegativeInfinity;
+        for (int setting = 0; setting < _settingCount; setting++) greatest = Math.Max(greatest, LogOfTerm(setting, sign));
+        double sum = 0;
+        for (int setting = 0; setting < _settingCount; setting++) sum += Elementary.Exp(LogOfTerm(setting, sign) - greatest);
+        return greatest + Elementary.Log(sum);
+    }
+
+    private double LogOfTerm(int setting, int sign)
+    {
+        double logWeight = _switchRate == 0 ? -_lossAboveBest[setting] : Elementary.Log(_weight[setting]);
+        return logWeight - Elementary.Softplus(-sign * _logOdds[setting]);
+    }
+}
