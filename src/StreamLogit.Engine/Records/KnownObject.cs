@@ -20,34 +20,34 @@ internal sealed class KnownObject
     /// <summary>Stands for the keys that are not known. Its values are not read.</summary>
     public KnownKey Stray { get; } = KnownKey.CreateUnmatched();
 
-    /// <summary>The part of the lowest rank that stands within.</summary>
-    public RecordPart? FirstPart { get; private set; }
+    /// <summary>All parts that stand within, by rank, each with the key of the record that stands for the same.</summary>
+    public List<(RecordPart Part, KnownKey Flat)> Parts { get; } = [];
 
     /// <summary>Builds the tree of keys that the definition's paths lead through.</summary>
     /// <remarks>
     /// A path <c>a.b</c> leads to the key b of the object at key a. In the record itself a key named <c>a.b</c> stands for the same,
     /// as flat records have it; a record with both has that key twice.
     /// </remarks>
+    /// <param name="parts">The parts, by rank.</param>
     public static KnownObject Build(IEnumerable<RecordPart> parts)
     {
         var root = new KnownObject();
         foreach (var part in parts)
         {
             var here = root;
-            string[] names = part.Path.Split('.');
-            for (int i = 0; i < names.Length - 1; i++)
-            {
-                var outer = here.GetOrAdd(names[i]);
-                here = outer.Inner ??= new KnownObject();
-                if (here.FirstPart is null || part.Rank < here.FirstPart.Rank) here.FirstPart = part;
-            }
-            var key = here.GetOrAdd(names[^1]);
-            key.Add(part);
-            if (here == root) continue;
             var flat = root.GetOrAdd(part.Path);
             flat.Add(part);
-            flat.Twin = key;
-            key.Twin = flat;
+            string[] names = part.Path.Split('.');
+            if (names.Length == 1) continue;
+            foreach (string name in names[..^1])
+            {
+                here = here.GetOrAdd(name).Inner ??= new KnownObject();
+                here.Parts.Add((part, flat));
+            }
+            var nested = here.GetOrAdd(names[^1]);
+            nested.Add(part);
+            nested.Twin = flat;
+            flat.Twin = nested;
         }
         return root;
     }

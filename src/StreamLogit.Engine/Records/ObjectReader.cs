@@ -4,10 +4,29 @@ namespace StreamLogit.Engine.Records;
 internal sealed unsafe class ObjectReader(
     int maximumDepth, JsonFault fault, RecordFault recordFault, RecordParts parts, OpenKeys keys, SkippedValues skipped)
 {
+    /// <summary>The keys on the way to a part that hold no object, each with what it holds.</summary>
+    private readonly List<(KnownKey Key, JsonToken Token)> _blocked = [];
+
     private long _record;
 
     /// <summary>Starts a record.</summary>
-    public void Begin() => _record++;
+    public void Begin()
+    {
+        _record++;
+        _blocked.Clear();
+    }
+
+    /// <summary>Ends a record: it is at fault if no object is where one should be, unless the record has the part in its flat form.</summary>
+    public void End()
+    {
+        foreach (var (key, token) in _blocked)
+        {
+            foreach (var (part, flat) in key.Inner!.Parts)
+            {
+                if (flat.SeenIn != _record) recordFault.AddNoObject(part, key, token);
+            }
+        }
+    }
 
     /// <summary>Reads an object. Returns the place behind it, or null after telling the fault.</summary>
     /// <param name="at">Its opening brace.</param>
@@ -117,7 +136,7 @@ internal sealed unsafe class ObjectReader(
             token.Length = (int)(at - token.Start);
         }
         foreach (var part in key.Parts) parts.Read(part, token);
-        if (key.Inner?.FirstPart is { } inner && token.Kind is not (JsonKind.Object or JsonKind.Null)) recordFault.AddNoObject(inner, key, token);
+        if (key.Inner is not null && token.Kind is not (JsonKind.Object or JsonKind.Null)) _blocked.Add((key, token));
         return at;
     }
 }

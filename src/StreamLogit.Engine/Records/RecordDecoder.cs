@@ -89,6 +89,7 @@ public sealed unsafe class RecordDecoder
                 RejectWhole(batch, index, *first);
                 return;
             }
+            _objects.End();
             _parts.End(ref record);
         }
         if (_recordFault.Reason != RejectReason.None) batch.Reject(index, _recordFault.Reason, _recordFault.Detail);

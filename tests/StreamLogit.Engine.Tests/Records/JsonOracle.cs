@@ -33,7 +33,7 @@ internal sealed partial class JsonOracle(RecordSchema schema)
         }
         catch (JsonException)
         {
-            // Too deep or broken, whichever comes first: cut to the first level too deep, a document that is only open is not broken.
+            // Too deep or broken, whichever comes first.
             return OracleRecord.Reject(IsTooDeepFirst(record) ? RejectReason.TooDeep : RejectReason.NotJson);
         }
         using (document) return Read(document.RootElement);
@@ -120,8 +120,8 @@ internal sealed partial class JsonOracle(RecordSchema schema)
 
     private static JsonElement? Find(JsonElement root, string path, out bool isBlocked)
     {
-        var nested = FindNested(root, path, out isBlocked);
-        return path.Contains('.') && root.TryGetProperty(path, out var flat) ? flat : nested;
+        isBlocked = false;
+        return path.Contains('.') && root.TryGetProperty(path, out var flat) ? flat : FindNested(root, path, out isBlocked);
     }
 
     /// <summary>Follows a path; blocked is one that something other than an object or null stands in the way of.</summary>
