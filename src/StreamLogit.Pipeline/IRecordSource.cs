@@ -1,0 +1,25 @@
+using StreamLogit.Engine.Records;
+
+namespace StreamLogit.Pipeline;
+
+/// <summary>Gives the records of a stream in their order. One thread at a time uses it, except for <see cref="Progress"/>.</summary>
+public interface IRecordSource : IDisposable
+{
+    /// <summary>The position after the last record given.</summary>
+    SourcePosition Position { get; }
+
+    /// <summary>How much has been read. Any thread may ask.</summary>
+    SourceProgress Progress { get; }
+
+    /// <summary>Goes to a position that this source, or an earlier one of the same origins, gave. Only before the first fill.</summary>
+    /// <exception cref="PipelineException">What was read up to there is not there any more.</exception>
+    void Seek(SourcePosition position);
+
+    /// <summary>
+    /// Adds records to an empty batch, at least one and at most <paramref name="maximumRecords"/>, and names their origin.
+    /// Waits only as long as there is none, a fraction of a second at most, and then says that it is idle; so too, without an exception,
+    /// when <paramref name="cancellation"/> is requested.
+    /// </summary>
+    /// <exception cref="PipelineException">The source cannot be read.</exception>
+    ValueTask<FillOutcome> FillAsync(RecordBatch batch, int maximumRecords, CancellationToken cancellation);
+}
