@@ -1,0 +1,218 @@
+using System.Collections.Immutable;
+using System.IO.Hashing;
+using Microsoft.Data.Sqlite;
+using StreamLogit.Engine.Persistence;
+
+namespace StreamLogit.Pipeline.State;
+
+/// <summary>The tables of a state.</summary>
+/// <remarks>
+/// SQLite does not check what it reads for flipped bits, and a coefficient with a flipped bit looks like any other; so every block
+/// carries its XXH3.
+/// </remarks>
+internal sealed class StateDatabase : IDisposable
+{
+    /// <summary>The file in the state folder.</summary>
+    public const string FileName = "state.db";
+
+    // "SLgt", so that the program file(1) and a stray open tell a state from another SQLite database.
+    private const int ApplicationId = 0x534c6774;
+    private const int FormatVersion = 1;
+
+    private readonly SqliteConnection _connection;
+    private readonly SqliteCommand _putBlock;
+    private readonly SqliteCommand _removeBlock;
+
+    private StateDatabase(string path, SqliteConnection connection)
+    {
+        Path = path;
+        _connection = connection;
+        _putBlock = Command("INSERT INTO blocks(part, number, hash, bytes) VALUES ($part, $number, $hash, $bytes) "
+            + "ON CONFLICT(part, number) DO UPDATE SET hash = excluded.hash, bytes = excluded.bytes", "$part", "$number", "$hash", "$bytes");
+        _removeBlock = Command("DELETE FROM blocks WHERE part = $part AND number = $number", "$part", "$number");
+    }
+
+    /// <summary>Where it lies.</summary>
+    public string Path { get; }
+
+    /// <summary>Opens the database, and makes its tables where it is new.</summary>
+    /// <exception cref="SqliteException">It cannot be opened.</exception>
+    public static StateDatabase Open(string path, SqliteOpenMode mode)
+    {
+        var connection = new SqliteConnection(new SqliteConnectionStringBuilder
+        {
+            DataSource = path,
+            Mode = mode,
+            Pooling = false,
+            DefaultTimeout = 5,
+        }.ToString());
+        try
+        {
+            connection.Open();
+            Prepare(connection, path, mode);
+            return new StateDatabase(path, connection);
+        }
+        catch
+        {
+            connection.Dispose();
+            throw;
+        }
+    }
+
+    /// <summary>Begins a transaction. Disposing of it without a commit takes all its writes back.</summary>
+    public SqliteTransaction Begin() => _connection.BeginTransaction(deferred: false);
+
+    /// <summary>Begins a transaction that sees one moment of the database, whatever others write.</summary>
+    public SqliteTransaction BeginRead() => _connection.BeginTransaction(deferred: true);
+
+    /// <summary>The value of a key of the meta table, or null.</summary>
+    public string? ReadMeta(string key)
+    {
+        using var command = Command("SELECT value FROM meta WHERE key = $key", "$key");
+        command.Parameters[0].Value = key;
+        return (string?)command.ExecuteScalar();
+    }
+
+    /// <summary>Puts the value of a key of the meta table.</summary>
+    public void WriteMeta(string key, string value) =>
+        Execute("INSERT INTO meta(key, value) VALUES ($key, $value) ON CONFLICT(key) DO UPDATE SET value = excluded.value",
+            ("$key", key), ("$value", value));
+
+    public SourcePosition ReadPosition()
+    {
+        using var command = Command("SELECT origin, offset, number, fingerprint FROM positions ORDER BY place");
+        using var reader = command.ExecuteReader();
+        var origins = ImmutableArray.CreateBuilder<OriginPosition>();
+        while (reader.Read())
+            origins.Add(new OriginPosition(reader.GetString(0), reader.GetInt64(1), reader.GetInt64(2), unchecked((ulong)reader.GetInt64(3))));
+        return new SourcePosition(origins.ToImmutable());
+    }
+
+    public void WritePosition(SourcePosition position)
+    {
+        Execute("DELETE FROM positions");
+        for (int place = 0; place < position.Origins.Length; place++)
+        {
+            var origin = position.Origins[place];
+            Execute("INSERT INTO positions(place, origin, offset, number, fingerprint) VALUES ($place, $origin, $offset, $number, $fingerprint)",
+                ("$place", place), ("$origin", origin.Origin), ("$offset", origin.Offset), ("$number", origin.Number),
+                ("$fingerprint", unchecked((long)origin.Fingerprint)));
+        }
+    }
+
+    public ImmutableSortedDictionary<string, long> ReadMarks()
+    {
+        using var command = Command("SELECT name, mark FROM outputs");
+        using var reader = command.ExecuteReader();
+        var marks = ImmutableSortedDictionary.CreateBuilder<string, long>(StringComparer.Ordinal);
+        while (reader.Read()) marks[reader.GetString(0)] = reader.GetInt64(1);
+        return marks.ToImmutable();
+    }
+
+    public void WriteMarks(ImmutableSortedDictionary<string, long> marks)
+    {
+        foreach (var (name, mark) in marks)
+            Execute("INSERT INTO outputs(name, mark) VALUES ($name, $mark) ON CONFLICT(name) DO UPDATE SET mark = excluded.mark",
+                ("$name", name), ("$mark", mark));
+    }
+
+    public StateBlocks ReadBlocks()
+    {
+        using var command = Command("SELECT part, number, hash, bytes FROM blocks");
+        using var reader = command.ExecuteReader();
+        var blocks = new StateBlocks();
+        while (reader.Read())
+        {
+            string part = reader.GetString(0);
+            long number = reader.GetInt64(1);
+            byte[] bytes = reader.GetFieldValue<byte[]>(3);
+            if (reader.GetInt64(2) != Hash(bytes)) throw StorageFault.Damaged(Path, $"block {number} of its part '{part}' has changed since it was written");
+            blocks.Put(part, number, bytes);
+        }
+        return blocks;
+    }
+
+    public void WriteBlocks(StateBlocks changes, SqliteTransaction transaction)
+    {
+        _putBlock.Transaction = transaction;
+        _removeBlock.Transaction = transaction;
+        foreach (var (part, number, bytes) in changes.Changes())
+        {
+            var command = bytes is null ? _removeBlock : _putBlock;
+            command.Parameters[0].Value = part;
+            command.Parameters[1].Value = number;
+            if (bytes is not null)
+            {
+                command.Parameters[2].Value = Hash(bytes);
+                command.Parameters[3].Value = bytes;
+            }
+            command.ExecuteNonQuery();
+        }
+    }
+
+    public void Dispose()
+    {
+        _putBlock.Dispose();
+        _removeBlock.Dispose();
+        _connection.Dispose();
+    }
+
+    private static void Prepare(SqliteConnection connection, string path, SqliteOpenMode mode)
+    {
+        using var command = connection.CreateCommand();
+        int applicationId = (int)Pragma("application_id");
+        int version = (int)Pragma("user_version");
+        bool isNew = applicationId == 0 && version == 0 && Pragma("schema_version") == 0;
+        if (!isNew && applicationId != ApplicationId)
+            throw StorageFault.Damaged(path, "it is a database of another program");
+        if (version > FormatVersion)
+            throw new PipelineException($"The state {path} was written by a later version of this program (format {version}; this one reads up to {FormatVersion}).");
+        if (mode == SqliteOpenMode.ReadOnly)
+        {
+            if (isNew) throw new PipelineException($"The state {path} is empty.");
+            return;
+        }
+
+        // FULL has a commit on the disk before it counts; in WAL mode that is one fsync a commit.
+        command.CommandText = "PRAGMA journal_mode = WAL; PRAGMA synchronous = FULL; PRAGMA journal_size_limit = 67108864;";
+        command.ExecuteNonQuery();
+        if (!isNew) return;
+        command.CommandText = $"""
+            BEGIN IMMEDIATE;
+            CREATE TABLE meta(key TEXT PRIMARY KEY, value TEXT NOT NULL) WITHOUT ROWID;
+            CREATE TABLE positions(place INTEGER PRIMARY KEY, origin TEXT NOT NULL, offset INTEGER NOT NULL,
+                number INTEGER NOT NULL, fingerprint INTEGER NOT NULL);
+            CREATE TABLE outputs(name TEXT PRIMARY KEY, mark INTEGER NOT NULL) WITHOUT ROWID;
+            CREATE TABLE blocks(part TEXT NOT NULL, number INTEGER NOT NULL, hash INTEGER NOT NULL, bytes BLOB NOT NULL,
+                PRIMARY KEY(part, number)) WITHOUT ROWID;
+            PRAGMA application_id = {ApplicationId};
+            PRAGMA user_version = {FormatVersion};
+            COMMIT;
+            """;
+        command.ExecuteNonQuery();
+
+        long Pragma(string name)
+        {
+            command.CommandText = $"PRAGMA {name}";
+            return (long)(command.ExecuteScalar() ?? 0L);
+        }
+    }
+
+    private static long Hash(byte[] bytes) => unchecked((long)XxHash3.HashToUInt64(bytes));
+
+    private void Execute(string sql, params ReadOnlySpan<(string Name, object Value)> parameters)
+    {
+        using var command = _connection.CreateCommand();
+        command.CommandText = sql;
+        foreach (var (name, value) in parameters) command.Parameters.AddWithValue(name, value);
+        command.ExecuteNonQuery();
+    }
+
+    private SqliteCommand Command(string sql, params ReadOnlySpan<string> parameters)
+    {
+        var command = _connection.CreateCommand();
+        command.CommandText = sql;
+        foreach (string name in parameters) command.Parameters.Add(new SqliteParameter { ParameterName = name });
+        return command;
+    }
+}

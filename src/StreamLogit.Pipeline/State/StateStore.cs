@@ -1,0 +1,124 @@
+using System.Globalization;
+using Microsoft.Data.Sqlite;
+
+namespace StreamLogit.Pipeline.State;
+
+/// <summary>The state of a worker: one SQLite database in a folder that it has for itself. Every commit is a checkpoint.</summary>
+public sealed class StateStore : IDisposable
+{
+    private const string StreamKey = "stream";
+    private const string DefinitionKey = "definition";
+    private const string CommitsKey = "commits";
+
+    private readonly StateLock _lock;
+    private readonly StateDatabase _database;
+    private readonly string _stream;
+    private readonly string _definition;
+    private long _commits;
+
+    private StateStore(StateLock folderLock, StateDatabase database, string stream, string definition)
+    {
+        _lock = folderLock;
+        _database = database;
+        _stream = stream;
+        _definition = definition;
+        _commits = ReadCommits(database);
+    }
+
+    /// <summary>Called within a commit, when all is written and nothing counts yet; tests die here.</summary>
+    internal Action? BeforeCommit { get; set; }
+
+    /// <summary>Opens the state of a folder for a worker, and makes it where there is none.</summary>
+    /// <param name="folder">The folder.</param>
+    /// <param name="stream">The stream that the state must belong to.</param>
+    /// <param name="definition">The definition of this run, JSON, which the state keeps for those who look at it.</param>
+    /// <exception cref="PipelineException">Another worker has it, it belongs to another stream, is damaged or cannot be written.</exception>
+    public static StateStore Open(string folder, string stream, string definition)
+    {
+        string path = Path.Combine(folder, StateDatabase.FileName);
+        StateLock? folderLock = null;
+        StateDatabase? database = null;
+        try
+        {
+            Directory.CreateDirectory(folder);
+            folderLock = StateLock.Take(folder);
+            database = Guard(path, () => StateDatabase.Open(path, SqliteOpenMode.ReadWriteCreate));
+            if (Guard(path, () => database.ReadMeta(StreamKey)) is { } owner && owner != stream)
+                throw new PipelineException($"The state {path} belongs to the stream '{owner}', not to '{stream}'.");
+            return Guard(path, () => new StateStore(folderLock, database, stream, definition));
+        }
+        catch (Exception e) when (e is PipelineException or IOException or UnauthorizedAccessException)
+        {
+            database?.Dispose();
+            folderLock?.Dispose();
+            if (e is PipelineException) throw;
+            throw StorageFault.OfFile(folder, e);
+        }
+    }
+
+    /// <summary>Reads the last checkpoint of a folder without a claim to it; a worker may be running on it.</summary>
+    /// <exception cref="PipelineException">There is none, or it cannot be read.</exception>
+    public static (StateInfo Info, Checkpoint Checkpoint) Peek(string folder)
+    {
+        string path = Path.Combine(folder, StateDatabase.FileName);
+        if (!File.Exists(path)) throw new PipelineException($"There is no state in {folder}.");
+        return Guard(path, () =>
+        {
+            using var database = StateDatabase.Open(path, SqliteOpenMode.ReadOnly);
+            using var transaction = database.BeginRead();
+            long commits = ReadCommits(database);
+            if (commits == 0) throw new PipelineException($"The state {path} has no commit yet.");
+            var info = new StateInfo(database.ReadMeta(StreamKey) ?? "", database.ReadMeta(DefinitionKey) ?? "", commits);
+            return (info, Read(database));
+        });
+    }
+
+    /// <summary>The last checkpoint, or null where nothing was ever committed.</summary>
+    /// <exception cref="PipelineException">It cannot be read.</exception>
+    public Checkpoint? Read() => _commits == 0 ? null : Guard(_database.Path, () => Read(_database));
+
+    /// <summary>Commits a checkpoint, all of it or nothing.</summary>
+    /// <exception cref="PipelineException">It was not committed: the disk is full or failed.</exception>
+    public void Commit(Checkpoint checkpoint) => Guard(_database.Path, () =>
+    {
+        using var transaction = _database.Begin();
+        _database.WriteBlocks(checkpoint.Blocks, transaction);
+        _database.WritePosition(checkpoint.Position);
+        _database.WriteMarks(checkpoint.Marks);
+        _database.WriteMeta(StreamKey, _stream);
+        _database.WriteMeta(DefinitionKey, _definition);
+        _database.WriteMeta(CommitsKey, (_commits + 1).ToString(CultureInfo.InvariantCulture));
+        BeforeCommit?.Invoke();
+        transaction.Commit();
+        return ++_commits;
+    });
+
+    /// <inheritdoc/>
+    public void Dispose()
+    {
+        _database.Dispose();
+        _lock.Dispose();
+    }
+
+    private static Checkpoint Read(StateDatabase database) =>
+        new(database.ReadPosition(), database.ReadMarks(), database.ReadBlocks());
+
+    private static long ReadCommits(StateDatabase database) =>
+        database.ReadMeta(CommitsKey) is { } commits ? long.Parse(commits, CultureInfo.InvariantCulture) : 0;
+
+    private static T Guard<T>(string path, Func<T> use)
+    {
+        try
+        {
+            return use();
+        }
+        catch (SqliteException e)
+        {
+            throw StorageFault.OfDatabase(path, e);
+        }
+        catch (Exception e) when (e is InvalidCastException or FormatException or OverflowException)
+        {
+            throw StorageFault.Damaged(path, "it holds values of another kind than it should", e);
+        }
+    }
+}
