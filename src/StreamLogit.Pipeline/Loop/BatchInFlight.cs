@@ -1,0 +1,31 @@
+using StreamLogit.Engine.Decisions;
+using StreamLogit.Engine.Persistence;
+using StreamLogit.Engine.Records;
+
+namespace StreamLogit.Pipeline.Loop;
+
+/// <summary>A batch on its way through the stages: records, and later their scores. Used again and again.</summary>
+internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)
+{
+    public RecordBatch Records { get; } = records;
+
+    public ScoreBatch Scores { get; } = scores;
+
+    /// <summary>Where the source goes on after this batch, if a commit follows it.</summary>
+    public SourcePosition? CommitAt { get; set; }
+
+    /// <summary>What changed in the engine since the last commit, if a commit follows this batch.</summary>
+    public StateBlocks? Changes { get; set; }
+
+    /// <summary>Whether nothing follows for a while, so that health is to be published now.</summary>
+    public bool IsPause { get; set; }
+
+    public void Clear()
+    {
+        Records.Clear();
+        Scores.Clear();
+        CommitAt = null;
+        Changes = null;
+        IsPause = false;
+    }
+}

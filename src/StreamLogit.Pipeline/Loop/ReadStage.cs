@@ -1,0 +1,86 @@
+using StreamLogit.Engine.Records;
+
+namespace StreamLogit.Pipeline.Loop;
+
+/// <summary>Reads and decodes batches, and decides after which of them a commit follows. The last thing it sends is always a commit.</summary>
+internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Conveyor conveyor, LoopOptions options, TimeProvider time)
+{
+    private readonly CommitClock _commits = new(options.CommitEveryEvents, options.CommitEveryTime, time);
+    private readonly Pacer? _pacer = options.Speed is double speed ? new Pacer(speed, options.BatchSize, time) : null;
+    private bool _isPaused = true;
+
+    private bool IsPauseDue => !_isPaused || _commits.IsDue;
+
+    public async Task RunAsync(CancellationToken stop)
+    {
+        SourcePosition? held = null;
+        var batch = await TakeEmptyAsync().ConfigureAwait(false);
+        while (!stop.IsCancellationRequested)
+        {
+            // A batch that is still held back when the run is stopped was never given: the next run reads it again.
+            held = _pacer is null ? null : source.Position;
+            var outcome = await source.FillAsync(batch.Records, _pacer?.BatchSize ?? options.BatchSize, stop).ConfigureAwait(false);
+            if (outcome == FillOutcome.Ended) break;
+            if (outcome == FillOutcome.Idle)
+            {
+                if (!IsPauseDue) continue;
+                await SendPauseAsync(batch, source.Position).ConfigureAwait(false);
+            }
+            else
+            {
+                decoder.Decode(batch.Records);
+                if (held is not null && !await HoldAsync(batch.Records, held, stop).ConfigureAwait(false)) break;
+                await SendAsync(batch).ConfigureAwait(false);
+                held = null;
+            }
+            batch = await TakeEmptyAsync().ConfigureAwait(false);
+        }
+
+        batch.Clear();
+        batch.IsPause = true;
+        batch.CommitAt = held ?? source.Position;
+        await conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None).ConfigureAwait(false);
+        conveyor.Read.Writer.Complete();
+    }
+
+    private async ValueTask<BatchInFlight> TakeEmptyAsync()
+    {
+        var batch = await conveyor.Empty.Reader.ReadAsync(CancellationToken.None).ConfigureAwait(false);
+        batch.Clear();
+        return batch;
+    }
+
+    private ValueTask SendAsync(BatchInFlight batch)
+    {
+        _commits.Add(batch.Records.Count);
+        if (_commits.IsDue) Commit(batch, source.Position);
+        _isPaused = false;
+        return conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None);
+    }
+
+    private ValueTask SendPauseAsync(BatchInFlight batch, SourcePosition position)
+    {
+        batch.IsPause = true;
+        if (_commits.IsDue) Commit(batch, position);
+        _isPaused = true;
+        return conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None);
+    }
+
+    private void Commit(BatchInFlight batch, SourcePosition position)
+    {
+        batch.CommitAt = position;
+        _commits.Restart();
+    }
+
+    /// <summary>Holds records back until they are due; false when the run is stopped before.</summary>
+    private async ValueTask<bool> HoldAsync(RecordBatch records, SourcePosition held, CancellationToken stop)
+    {
+        _pacer!.See(records);
+        while (!await _pacer.WaitAsync(stop).ConfigureAwait(false))
+        {
+            if (stop.IsCancellationRequested) return false;
+            if (IsPauseDue) await SendPauseAsync(await TakeEmptyAsync().ConfigureAwait(false), held).ConfigureAwait(false);
+        }
+        return true;
+    }
+}

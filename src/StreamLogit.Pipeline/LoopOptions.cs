@@ -1,0 +1,26 @@
+namespace StreamLogit.Pipeline;
+
+/// <summary>How records are moved; nothing here changes a score.</summary>
+public sealed record LoopOptions
+{
+    /// <summary>The most records that travel together, 1 or more. Default 1024.</summary>
+    public int BatchSize { get; init; } = 1024;
+
+    /// <summary>How many batches are under way at once, 1 or more. Default 8.</summary>
+    public int Batches { get; init; } = 8;
+
+    /// <summary>
+    /// How many times faster than in the recording time passes: 60 gives an hour of records in a minute. Null, the default, is as
+    /// fast as possible.
+    /// </summary>
+    public double? Speed { get; init; }
+
+    /// <summary>Records between two commits, 1 or more. Default 100,000.</summary>
+    public int CommitEveryEvents { get; init; } = 100_000;
+
+    /// <summary>Wall time between two commits, above 0. Default 10 s.</summary>
+    public TimeSpan CommitEveryTime { get; init; } = TimeSpan.FromSeconds(10);
+
+    /// <summary>The least wall time between two health snapshots. Default 250 ms.</summary>
+    public TimeSpan HealthEvery { get; init; } = TimeSpan.FromMilliseconds(250);
+}

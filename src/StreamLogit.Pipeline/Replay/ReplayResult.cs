@@ -1,0 +1,10 @@
+using StreamLogit.Engine.Health;
+using StreamLogit.Engine.Learning;
+
+namespace StreamLogit.Pipeline.Replay;
+
+/// <summary>What a replay gave.</summary>
+/// <param name="Health">How the probabilities did over the whole replay.</param>
+/// <param name="ScoreHash">The <see cref="Replay.ScoreHash"/> of all scores.</param>
+/// <param name="Model">The coefficients at the end.</param>
+public sealed record ReplayResult(HealthSnapshot Health, string ScoreHash, ModelSnapshot Model);

@@ -1,0 +1,61 @@
+using System.Collections.Immutable;
+using StreamLogit.Engine;
+using StreamLogit.Engine.Health;
+using StreamLogit.Engine.Records;
+using StreamLogit.Pipeline.Loop;
+using StreamLogit.Pipeline.State;
+
+namespace StreamLogit.Pipeline;
+
+/// <summary>
+/// Reads batches of records, runs them through the engine, writes what comes of them, and commits. Each of the three goes on at its
+/// own pace, on a task of its own. How the batches are cut changes no bit of any score.
+/// </summary>
+public sealed class ScoringLoop
+{
+    private readonly IRecordSource _source;
+    private readonly Conveyor _conveyor;
+    private readonly ReadStage _read;
+    private readonly ScoreStage _score;
+    private readonly WriteStage _write;
+
+    /// <summary>A loop that runs once. Source, engine and sinks stand where the state says.</summary>
+    /// <param name="engine">The engine, which is the loop's alone until it ends.</param>
+    /// <param name="source">Where records come from.</param>
+    /// <param name="sinks">Where scores and rejects go, each started.</param>
+    /// <param name="state">Where commits go, or null where nothing is kept.</param>
+    /// <param name="options">How records are moved.</param>
+    /// <param name="time">The clock of commits, of waits and of health.</param>
+    public ScoringLoop(
+        ScoringEngine engine, IRecordSource source, ImmutableArray<IScoreSink> sinks, StateStore? state, LoopOptions options, TimeProvider time)
+    {
+        ArgumentOutOfRangeException.ThrowIfLessThan(options.BatchSize, 1);
+        // A batch may be held back while another carries a commit.
+        ArgumentOutOfRangeException.ThrowIfLessThan(options.Batches, 2);
+        _source = source;
+        _conveyor = new Conveyor(options.Batches, () => new BatchInFlight(new RecordBatch(engine.Schema), engine.CreateScoreBatch()));
+        _read = new ReadStage(source, new RecordDecoder(engine.Schema), _conveyor, options, time);
+        _score = new ScoreStage(engine, _conveyor, state is not null, options.HealthEvery, time);
+        _write = new WriteStage(sinks, state, _conveyor);
+    }
+
+    /// <summary>The latest health snapshot. Any thread may ask.</summary>
+    public HealthSnapshot Health => _score.Health;
+
+    /// <summary>How far it has come. Any thread may ask.</summary>
+    public LoopProgress Progress => new(_write.Records, _source.Progress, _write.Commits);
+
+    /// <summary>Runs until the source ends or the run is stopped; either way it ends with a commit.</summary>
+    /// <param name="stop">Stops the run after the batches that are under way.</param>
+    /// <exception cref="PipelineException">What surrounds the engine is broken. Nothing after the last commit counts.</exception>
+    public async Task RunAsync(CancellationToken stop)
+    {
+        using var stopReading = CancellationTokenSource.CreateLinkedTokenSource(stop);
+        var token = stopReading.Token;
+        await Task.WhenAll(
+            _conveyor.Start(() => _read.RunAsync(token), stopReading),
+            _conveyor.Start(_score.RunAsync, stopReading),
+            _conveyor.Start(_write.RunAsync, stopReading)).ConfigureAwait(false);
+        _conveyor.ThrowFault();
+    }
+}

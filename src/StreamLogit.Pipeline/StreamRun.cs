@@ -1,0 +1,118 @@
+using System.Collections.Immutable;
+using StreamLogit.Engine;
+using StreamLogit.Engine.Health;
+using StreamLogit.Engine.Persistence;
+using StreamLogit.Pipeline.Definition;
+using StreamLogit.Pipeline.Files;
+using StreamLogit.Pipeline.Options;
+using StreamLogit.Pipeline.State;
+
+namespace StreamLogit.Pipeline;
+
+/// <summary>A worker's run over its stream: it begins where the last one committed, or at the beginning.</summary>
+public sealed class StreamRun : IDisposable
+{
+    private readonly IRecordSource _source;
+    private readonly ImmutableArray<IScoreSink> _sinks;
+    private readonly StateStore? _state;
+    private readonly ScoringLoop _loop;
+
+    /// <summary>Takes up the state, and brings engine, source and outputs to where it stands.</summary>
+    /// <param name="definition">The stream.</param>
+    /// <param name="source">Where records come from; the run disposes of it.</param>
+    /// <param name="sinks">Where scores and rejects go; the run disposes of them.</param>
+    /// <param name="options">How records are moved.</param>
+    /// <param name="time">The clock of commits, of waits and of health.</param>
+    /// <exception cref="PipelineException">State, source and outputs do not fit together, or are out of reach.</exception>
+    /// <exception cref="InvalidStateException">The state belongs to another definition.</exception>
+    public StreamRun(
+        StreamDefinition definition, IRecordSource source, ImmutableArray<IScoreSink> sinks, LoopOptions options, TimeProvider time)
+    {
+        _source = source;
+        _sinks = sinks;
+        try
+        {
+            Engine = new ScoringEngine(definition.Engine);
+            if (definition.State is { } state)
+            {
+                options = options with { CommitEveryEvents = state.EveryEvents, CommitEveryTime = state.EveryTime };
+                _state = StateStore.Open(state.Folder, definition.Engine.Stream, definition.EffectiveJson);
+            }
+            Resume();
+            _loop = new ScoringLoop(Engine, _source, _sinks, _state, options, time);
+        }
+        catch
+        {
+            Dispose();
+            throw;
+        }
+    }
+
+    /// <summary>The engine. It belongs to the loop while that runs.</summary>
+    public ScoringEngine Engine { get; }
+
+    /// <summary>Whether it goes on from an earlier run.</summary>
+    public bool IsResumed { get; private set; }
+
+    /// <summary>The latest health snapshot. Any thread may ask.</summary>
+    public HealthSnapshot Health => _loop.Health;
+
+    /// <summary>How far this run has come. Any thread may ask.</summary>
+    public LoopProgress Progress => _loop.Progress;
+
+    /// <summary>Opens a run over files as the definition names them.</summary>
+    /// <exception cref="PipelineException">State, source and outputs do not fit together, or are out of reach.</exception>
+    /// <exception cref="InvalidStateException">The state belongs to another definition.</exception>
+    public static StreamRun Open(StreamDefinition definition, LoopOptions options, TimeProvider time)
+    {
+        var source = definition.Source switch
+        {
+            FileSourceOptions file => FileSource.Open(file, definition.Engine.Record.MaximumBytes, time),
+            null => throw new ArgumentException("The definition names no source.", nameof(definition)),
+            var other => throw new ArgumentException($"{other.GetType().Name} is no file.", nameof(definition)),
+        };
+        var sinks = ImmutableArray.CreateBuilder<IScoreSink>();
+        if (definition.Scores is { } scores) sinks.Add(new ScoreFile(scores, definition.Engine));
+        if (definition.Rejects is { } rejects) sinks.Add(new RejectFile(rejects));
+        return new StreamRun(definition, source, sinks.ToImmutable(), options, time);
+    }
+
+    /// <summary>Runs until the source ends or the run is stopped; either way it ends with a commit.</summary>
+    /// <exception cref="PipelineException">What surrounds the engine is broken. Nothing after the last commit counts.</exception>
+    public Task RunAsync(CancellationToken stop) => _loop.RunAsync(stop);
+
+    /// <inheritdoc/>
+    public void Dispose()
+    {
+        _source.Dispose();
+        foreach (var sink in _sinks) sink.Dispose();
+        _state?.Dispose();
+    }
+
+    private void Resume()
+    {
+        var checkpoint = _state?.Read();
+        if (checkpoint is not null)
+        {
+            // Outputs are cut back last, when nothing else can go wrong any more.
+            Engine.Load(checkpoint.Blocks);
+            _source.Seek(checkpoint.Position);
+            IsResumed = true;
+        }
+        bool isKnown = true;
+        foreach (var sink in _sinks)
+        {
+            long mark = 0;
+            bool hasMark = checkpoint is not null && checkpoint.Marks.TryGetValue(sink.Name, out mark);
+            sink.Start(hasMark ? mark : null);
+            isKnown &= hasMark;
+        }
+        if (_state is null || isKnown && checkpoint is not null) return;
+
+        // What a run writes and dies over before its next commit must be told from a file that was there before.
+        var marks = _sinks.ToImmutableSortedDictionary(sink => sink.Name, sink => sink.Flush(), StringComparer.Ordinal);
+        var blocks = new StateBlocks();
+        Engine.Save(blocks);
+        _state.Commit(new Checkpoint(checkpoint?.Position ?? SourcePosition.Start, marks, blocks));
+    }
+}
