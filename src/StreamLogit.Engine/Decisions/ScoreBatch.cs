@@ -19,16 +19,15 @@ public sealed class ScoreBatch(int reasonsPerScore)
     /// <summary>Empties the batch and keeps its memory.</summary>
     public void Clear() => Count = 0;
 
-    /// <summary>Adds a score and hands out the place for its reasons.</summary>
-    internal Span<Reason> Add(in Score score)
+    /// <summary>Adds a score to be filled in, with room for its reasons.</summary>
+    internal ref Score Add(out Span<Reason> reasons)
     {
         if (Count == _scores.Length)
         {
             Array.Resize(ref _scores, Count * 2);
             Array.Resize(ref _reasons, Count * 2 * reasonsPerScore);
         }
-        _scores[Count] = score;
-        Count++;
-        return _reasons.AsSpan((Count - 1) * reasonsPerScore, reasonsPerScore);
+        reasons = _reasons.AsSpan(Count * reasonsPerScore, reasonsPerScore);
+        return ref _scores[Count++];
     }
 }

@@ -12,8 +12,3 @@ public sealed record HealthOptions
     /// <summary>The length of the window that counts labels instead of time. Default 10,000.</summary>
     public int LastLabels { get; init; } = 10_000;
 }
-
-/// <summary>A window of the stream's clock.</summary>
-/// <param name="Name">As the definition writes it: <c>1d</c>.</param>
-/// <param name="LengthMicroseconds">Its length, a whole number of minutes.</param>
-public sealed record HealthWindow(string Name, long LengthMicroseconds);

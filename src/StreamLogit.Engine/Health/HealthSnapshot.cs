@@ -41,26 +41,3 @@ public sealed record HealthSnapshot
     /// <summary>The figures of every setting of the bank, in its order.</summary>
     public ImmutableArray<SettingFigures> Settings { get; init; } = [];
 }
-
-/// <summary>Figures of the published probabilities over some labels; every mean is weighted by the records' weights and NaN without any.</summary>
-/// <param name="Count">Labels.</param>
-/// <param name="Weight">The sum of their weights.</param>
-/// <param name="LogLoss">Mean -ln of the probability that was published for what happened, in nats.</param>
-/// <param name="BaseRateLogLoss">The same for the Krichevsky-Trofimov predictor, which knows only how often labels were 1 so far.</param>
-/// <param name="Brier">Mean (p - y)^2 (Brier 1950, for two classes), 0 to 1.</param>
-/// <param name="MeanProbability">Mean published probability.</param>
-/// <param name="ObservedRate">Share of labels that are 1.</param>
-public sealed record HealthFigures(
-    long Count, double Weight, double LogLoss, double BaseRateLogLoss, double Brier, double MeanProbability, double ObservedRate);
-
-/// <summary>Figures over a window.</summary>
-/// <param name="Name">The window as the definition writes it, or <c>last 10000 labels</c>.</param>
-/// <param name="Figures">Its figures.</param>
-public sealed record WindowFigures(string Name, HealthFigures Figures);
-
-/// <summary>Figures of a setting of the bank, had it been published.</summary>
-/// <param name="Name">The setting.</param>
-/// <param name="LogLoss">Its mean log-loss in nats.</param>
-/// <param name="Brier">Its mean Brier score.</param>
-/// <param name="BlendWeight">Its present weight in the blend, 0 to 1.</param>
-public sealed record SettingFigures(string Name, double LogLoss, double Brier, double BlendWeight);

@@ -1,0 +1,36 @@
+using System.Runtime.CompilerServices;
+
+namespace StreamLogit.Engine.Awaiting;
+
+/// <summary>What is kept of an awaiting event besides its log-odds, its vector and its id.</summary>
+internal struct AwaitingHeader
+{
+    /// <summary>The hash of its id.</summary>
+    public ulong IdHash;
+
+    /// <summary>The stream's clock when it was scored, in microseconds; its wait counts from there.</summary>
+    public long ScoredAtMicroseconds;
+
+    /// <summary>The event's own time.</summary>
+    public long TimeMicroseconds;
+
+    /// <summary>The log-odds that were published.</summary>
+    public double LogOdds;
+
+    /// <summary>The importance weight that the event gave, or NaN.</summary>
+    public double Weight;
+
+    /// <summary>Entries of its vector.</summary>
+    public int Entries;
+
+    /// <summary>Bytes of its id.</summary>
+    public int IdLength;
+
+    /// <summary>Its place among the events of its segment.</summary>
+    public int Ordinal;
+
+    /// <summary>Bytes that it takes in the segment.</summary>
+    public int TotalBytes;
+
+    public static int Size => Unsafe.SizeOf<AwaitingHeader>();
+}

@@ -1,0 +1,103 @@
+using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Persistence;
+using StreamLogit.Engine.Records;
+
+namespace StreamLogit.Engine.Features;
+
+/// <summary>Turns events into sparse vectors: first come the hashed slots of categories, behind them the dense slots of numbers and cycles.</summary>
+internal sealed class FeatureEncoder
+{
+    private const string Part = "features/learned";
+    private readonly Feature[] _features;
+    private readonly SlotLedger _ledger;
+    private readonly CoefficientNames _names = new();
+    private readonly VectorBuilder _vector;
+
+    public FeatureEncoder(EngineDefinition definition, RecordSchema schema)
+    {
+        FirstDenseSlot = definition.Learning.Slots;
+        var hashed = new HashedSlots(definition.Learning.Slots, definition.Learning.HashSeed);
+        int next = FirstDenseSlot;
+        _features = [.. definition.Features.Select(options =>
+        {
+            var feature = Create(options, schema, hashed, next);
+            next += feature.DenseSlots;
+            return feature;
+        })];
+        _ledger = new SlotLedger(next);
+        MaximumEntries = _features.Sum(f => f.MaximumEntries);
+        _vector = new VectorBuilder(_ledger, MaximumEntries);
+    }
+
+    /// <summary>Where the slots of numbers and cycles start, which are the last ones.</summary>
+    public int FirstDenseSlot { get; }
+
+    /// <summary>All slots.</summary>
+    public int SlotCount => _ledger.SlotCount;
+
+    /// <summary>The most entries that a vector has.</summary>
+    public int MaximumEntries { get; }
+
+    /// <summary>Events encoded.</summary>
+    public long Events { get; private set; }
+
+    /// <summary>Events of which a category shares its slot with another value.</summary>
+    public long CollidedEvents { get; private set; }
+
+    /// <summary>Encodes an event. The result is valid until the next call.</summary>
+    public VectorBuilder Encode(RecordBatch records, int record)
+    {
+        _vector.Clear();
+        for (int i = 0; i < _features.Length; i++)
+        {
+            _vector.Feature = i;
+            _features[i].Encode(records, record, _vector);
+        }
+        Events++;
+        if (_vector.HasCollision) CollidedEvents++;
+        return _vector;
+    }
+
+    /// <summary>Every slot that an event has used, with its name, dense slots first.</summary>
+    public IEnumerable<(int Slot, string Name)> UsedSlots()
+    {
+        int dense = FirstDenseSlot;
+        foreach (var feature in _features)
+            for (int end = dense + feature.DenseSlots; dense < end; dense++)
+                if (_ledger.IsUsed(dense)) yield return (dense, feature.NameOf(dense));
+        for (int slot = 0; slot < FirstDenseSlot; slot++)
+            if (_ledger.IsUsed(slot)) yield return (slot, _names.Of(slot));
+    }
+
+    public void Save(StateBlocks changes)
+    {
+        using var bytes = new MemoryStream();
+        using var writer = new BinaryWriter(bytes);
+        writer.Write(Events);
+        writer.Write(CollidedEvents);
+        foreach (var feature in _features) feature.Save(writer);
+        changes.Put(Part, 0, bytes.ToArray());
+        _ledger.Save(changes);
+        _names.Save(changes);
+    }
+
+    public void Load(StateBlocks state)
+    {
+        byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException($"the state has no {Part}");
+        using var reader = new BinaryReader(new MemoryStream(bytes));
+        Events = reader.ReadInt64();
+        CollidedEvents = reader.ReadInt64();
+        foreach (var feature in _features) feature.Load(reader);
+        _ledger.Load(state);
+        _names.Load(state);
+    }
+
+    private Feature Create(FeatureOptions options, RecordSchema schema, HashedSlots hashed, int firstSlot) => options switch
+    {
+        NumberFeature number => new NumberEncoding(number, schema.IndexOf(number.Field), firstSlot),
+        TimeCycleFeature cycle => new TimeCycleEncoding(cycle, firstSlot),
+        NumberCycleFeature cycle => new NumberCycleEncoding(cycle, schema.IndexOf(cycle.Field), firstSlot),
+        CategoryFeature category => new CategoryEncoding(category, [.. category.Fields.Select(schema.IndexOf)], hashed, _names),
+        _ => throw new ArgumentException($"no encoding for {options.GetType().Name}", nameof(options)),
+    };
+}

@@ -1,0 +1,60 @@
+namespace StreamLogit.Engine.Features;
+
+/// <summary>
+/// The vector of one event while it is encoded, and what its reasons need: which feature each entry belongs to and
+/// the sum of the slot's values over all events before this one. One builder is used for every event.
+/// </summary>
+internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries)
+{
+    private readonly int[] _slots = new int[maximumEntries];
+    private readonly double[] _values = new double[maximumEntries];
+    private readonly int[] _features = new int[maximumEntries];
+    private readonly double[] _sumsBefore = new double[maximumEntries];
+
+    public int Count { get; private set; }
+
+    /// <summary>Whether a category of this event met a slot that another value had taken before it.</summary>
+    public bool HasCollision { get; private set; }
+
+    /// <summary>The feature whose entries are being added.</summary>
+    public int Feature { get; set; }
+
+    public EncodedVector Vector => new(_slots.AsSpan(0, Count), _values.AsSpan(0, Count));
+
+    /// <summary>For each entry, the place of its feature in the definition.</summary>
+    public ReadOnlySpan<int> Features => _features.AsSpan(0, Count);
+
+    /// <summary>For each entry, the sum of its slot's values over the events before this one.</summary>
+    public ReadOnlySpan<double> SumsBefore => _sumsBefore.AsSpan(0, Count);
+
+    public void Clear()
+    {
+        Count = 0;
+        HasCollision = false;
+    }
+
+    /// <summary>Adds an entry at a dense slot.</summary>
+    public void Add(int slot, double value)
+    {
+        _sumsBefore[Count] = ledger.AddDense(slot, value);
+        Append(slot, value);
+    }
+
+    /// <summary>Adds an entry of value 1 at a hashed slot.</summary>
+    /// <returns>Whether the slot is used for the first time, so that it wants a name.</returns>
+    public bool AddHashed(int slot, uint tag)
+    {
+        var use = ledger.AddHashed(slot, tag, out _sumsBefore[Count]);
+        HasCollision |= use == SlotUse.Collision;
+        Append(slot, 1);
+        return use == SlotUse.First;
+    }
+
+    private void Append(int slot, double value)
+    {
+        _slots[Count] = slot;
+        _values[Count] = value;
+        _features[Count] = Feature;
+        Count++;
+    }
+}

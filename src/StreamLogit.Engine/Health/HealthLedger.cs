@@ -1,0 +1,126 @@
+using System.Collections.Immutable;
+using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Numerics;
+using StreamLogit.Engine.Persistence;
+using StreamLogit.Engine.Records;
+
+namespace StreamLogit.Engine.Health;
+
+/// <summary>Counts what happens and keeps the sums from which health is told, always of the probabilities that were published.</summary>
+internal sealed class HealthLedger
+{
+    private const string Part = "health/counts";
+    private static readonly RejectReason[] Reasons = [.. Enum.GetValues<RejectReason>().Where(r => r != RejectReason.None)];
+
+    private readonly HealthOptions _options;
+    private readonly MinuteRing _minutes;
+    private readonly LastLabels _last;
+    private readonly long[] _rejects = new long[Reasons.Max(r => (int)r) + 1];
+    private LabelSums _total;
+    private BaseRate _baseRate;
+
+    public HealthLedger(HealthOptions options)
+    {
+        _options = options;
+        _minutes = new MinuteRing(options.Windows.Select(w => (int)(w.LengthMicroseconds / 60_000_000)).DefaultIfEmpty(1).Max());
+        _last = new LastLabels(options.LastLabels);
+    }
+
+    /// <summary>Labels learned.</summary>
+    public long Labelled => _total.Count;
+
+    public void CountReject(RejectReason reason) => _rejects[(int)reason]++;
+
+    /// <summary>Counts a label against the log-odds that were published for its event.</summary>
+    public void CountLabel(long clockMicroseconds, double logOdds, int label, double weight)
+    {
+        double probability = Elementary.Sigmoid(logOdds);
+        double error = probability - label;
+        var sums = new LabelSums
+        {
+            Count = 1,
+            Weight = weight,
+            LogLoss = weight * LogLoss(logOdds, label),
+            BaseRateLogLoss = weight * _baseRate.LogLossThenLearn(label, weight),
+            Brier = weight * (error * error),
+            Probability = weight * probability,
+            Positive = weight * label,
+        };
+        _total.Add(sums);
+        _minutes.Add(clockMicroseconds, sums);
+        _last.Add(sums);
+    }
+
+    /// <summary>-ln p for label 1 and -ln(1 - p) for label 0, from the log-odds, so that it stays finite where p rounds to 0 or 1.</summary>
+    private static double LogLoss(double logOdds, int label)
+    {
+        double margin = label == 1 ? logOdds : -logOdds;
+        return Math.Max(-margin, 0) + Elementary.Log1p(Elementary.Exp(-Math.Abs(margin)));
+    }
+
+    /// <summary>The figures of now.</summary>
+    public HealthSnapshot Snapshot(long? clockMicroseconds)
+    {
+        var windows = _options.Windows
+            .Select(w => new WindowFigures(w.Name, _minutes.Window(clockMicroseconds ?? 0, w.LengthMicroseconds).ToFigures()))
+            .Append(new WindowFigures(FormattableString.Invariant($"last {_options.LastLabels} labels"), _last.Window().ToFigures()));
+        return new HealthSnapshot
+        {
+            ClockMicroseconds = clockMicroseconds,
+            Labelled = _total.Count,
+            Rejected = _rejects.Sum(),
+            RejectsByReason = Reasons.Where(r => _rejects[(int)r] > 0).ToImmutableSortedDictionary(r => r.Code(), r => _rejects[(int)r], StringComparer.Ordinal),
+            Total = _total.ToFigures(),
+            Windows = [.. windows],
+        };
+    }
+
+    public void Save(StateBlocks changes)
+    {
+        using var bytes = new MemoryStream();
+        using var writer = new BinaryWriter(bytes);
+        WriteSums(writer, _total);
+        writer.Write(_baseRate.Ones);
+        writer.Write(_baseRate.Labels);
+        writer.Write(_rejects.Length);
+        foreach (long count in _rejects) writer.Write(count);
+        changes.Put(Part, 0, bytes.ToArray());
+        _minutes.Save(changes);
+        _last.Save(changes);
+    }
+
+    public void Load(StateBlocks state)
+    {
+        byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException($"the state has no {Part}");
+        using var reader = new BinaryReader(new MemoryStream(bytes));
+        _total = ReadSums(reader);
+        _baseRate.Ones = reader.ReadDouble();
+        _baseRate.Labels = reader.ReadDouble();
+        int reasons = reader.ReadInt32();
+        for (int i = 0; i < reasons; i++) _rejects[i] = reader.ReadInt64();
+        _minutes.Load(state);
+        _last.Load(state);
+    }
+
+    private static void WriteSums(BinaryWriter writer, in LabelSums sums)
+    {
+        writer.Write(sums.Count);
+        writer.Write(sums.Weight);
+        writer.Write(sums.LogLoss);
+        writer.Write(sums.BaseRateLogLoss);
+        writer.Write(sums.Brier);
+        writer.Write(sums.Probability);
+        writer.Write(sums.Positive);
+    }
+
+    private static LabelSums ReadSums(BinaryReader reader) => new()
+    {
+        Count = reader.ReadInt64(),
+        Weight = reader.ReadDouble(),
+        LogLoss = reader.ReadDouble(),
+        BaseRateLogLoss = reader.ReadDouble(),
+        Brier = reader.ReadDouble(),
+        Probability = reader.ReadDouble(),
+        Positive = reader.ReadDouble(),
+    };
+}
