@@ -225,7 +225,7 @@ public sealed class ScoringEngine
 
     private SettingFigures FiguresOf(int setting)
     {
-        double weight = _bank.LabelWeight;
+        double weight = _health.LabelWeight;
         return new(_bank.Names[setting], _bank.LogLossTotal(setting) / weight, _bank.BrierTotal(setting) / weight, _bank.BlendWeight(setting));
     }
 
