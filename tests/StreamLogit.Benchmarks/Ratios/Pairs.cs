@@ -1,0 +1,37 @@
+using System.Diagnostics;
+
+namespace StreamLogit.Benchmarks.Ratios;
+
+/// <summary>Times two pieces of work in turn, so that what slows the machine slows both.</summary>
+internal static class Pairs
+{
+    private const int Rounds = 9;
+
+    /// <summary>The median over the rounds of (time of the first) / (time of the second).</summary>
+    public static double MedianRatio(Action first, Action second)
+    {
+        var ratios = new double[Rounds];
+        first();
+        second();
+        for (int i = 0; i < Rounds; i++) ratios[i] = Seconds(first) / Seconds(second);
+        Array.Sort(ratios);
+        return ratios[Rounds / 2];
+    }
+
+    /// <summary>The median time of one piece of work.</summary>
+    public static double MedianSeconds(Action work)
+    {
+        var times = new double[Rounds];
+        work();
+        for (int i = 0; i < Rounds; i++) times[i] = Seconds(work);
+        Array.Sort(times);
+        return times[Rounds / 2];
+    }
+
+    private static double Seconds(Action work)
+    {
+        var watch = Stopwatch.StartNew();
+        work();
+        return watch.Elapsed.TotalSeconds;
+    }
+}
