@@ -43,7 +43,7 @@ internal sealed class HealthLedger
         {
             Count = 1,
             Weight = weight,
-            LogLoss = weight * LogLoss(logOdds, label),
+            LogLoss = weight * Elementary.Softplus(label == 1 ? -logOdds : logOdds),
             BaseRateLogLoss = weight * _baseRate.LogLossThenLearn(label, weight),
             Brier = weight * (error * error),
             Probability = weight * probability,
@@ -52,13 +52,6 @@ internal sealed class HealthLedger
         _total.Add(sums);
         _minutes.Add(clockMicroseconds, sums);
         _last.Add(sums);
-    }
-
-    /// <summary>-ln p for label 1 and -ln(1 - p) for label 0, from the log-odds, so that it stays finite where p rounds to 0 or 1.</summary>
-    private static double LogLoss(double logOdds, int label)
-    {
-        double margin = label == 1 ? logOdds : -logOdds;
-        return Math.Max(-margin, 0) + Elementary.Log1p(Elementary.Exp(-Math.Abs(margin)));
     }
 
     /// <summary>The figures of now.</summary>
