@@ -36,7 +36,11 @@ public sealed class FileSource : IRecordSource
     /// <param name="maximumBytes">The longest record; a longer one becomes a reject without being read into memory as a whole.</param>
     /// <param name="time">By which to wait for more, where the file is followed.</param>
     /// <exception cref="InvalidRecordingException">There is no such file, or it cannot be opened.</exception>
-    public static FileSource Open(FileSourceOptions options, int maximumBytes, TimeProvider time)
+    public static FileSource Open(FileSourceOptions options, int maximumBytes, TimeProvider time) =>
+        Open(RecordingFile.Open(options.Path), options, maximumBytes, time);
+
+    /// <summary>Takes the bytes of a file that is open.</summary>
+    internal static FileSource Open(RecordingFile file, FileSourceOptions options, int maximumBytes, TimeProvider time)
     {
         IRecordCutter cutter = options.Format switch
         {
@@ -44,7 +48,7 @@ public sealed class FileSource : IRecordSource
             RecordingFormat.Csv => new CsvCutter(options.Path, maximumBytes),
             _ => throw new ArgumentOutOfRangeException(nameof(options), options.Format, null),
         };
-        return new FileSource(RecordingFile.Open(options.Path), cutter, options.Follow, time);
+        return new FileSource(file, cutter, options.Follow, time);
     }
 
     /// <inheritdoc/>

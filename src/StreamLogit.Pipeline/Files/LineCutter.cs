@@ -24,6 +24,7 @@ internal sealed class LineCutter(int maximumBytes) : IRecordCutter
     public int Cut(ReadOnlySpan<byte> unread, bool atEnd, RecordBatch batch)
     {
         if (_longLine.IsOpen) return PassLongLine(unread, atEnd, batch);
+        if (unread.IsEmpty) return 0;
 
         int newline = unread[_searched..].IndexOf((byte)'\n');
         if (newline < 0)

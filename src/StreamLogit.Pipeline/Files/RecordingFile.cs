@@ -40,8 +40,7 @@ internal sealed class RecordingFile : IDisposable
     /// <summary>Opens the recording of that name; <c>-</c> is standard input.</summary>
     public static RecordingFile Open(string path)
     {
-        if (path == StandardInput)
-            return new RecordingFile(path, "stdin", Console.OpenStandardInput(), canBlock: true);
+        if (path == StandardInput) return OfPipe("stdin", Console.OpenStandardInput());
         try
         {
             var file = new FileStream(path, FileMode.Open, FileAccess.Read,
@@ -57,6 +56,9 @@ internal sealed class RecordingFile : IDisposable
             throw new InvalidRecordingException($"The recording {path} cannot be opened: {e.Message}", e);
         }
     }
+
+    /// <summary>Takes bytes that another program sends.</summary>
+    public static RecordingFile OfPipe(string origin, Stream pipe) => new(origin, origin, pipe, canBlock: true);
 
     /// <summary>Goes from the beginning to a byte of the content: by seeking, or by reading up to it where the content is unpacked on the way.</summary>
     /// <returns>Whether the content reaches that far.</returns>
