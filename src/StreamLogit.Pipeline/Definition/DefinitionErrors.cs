@@ -9,7 +9,7 @@ internal sealed class DefinitionErrors
 
     public void Add(DefinitionPlace place, string path, string message) => _errors.Add(new DefinitionError(place, path, message));
 
-    /// <summary>Throws if there is an error: the file's own by line and column, then those of overrides in their order.</summary>
+    /// <summary>Throws if there is an error: the file's own by line and column, then those of overrides as they were found.</summary>
     /// <exception cref="DefinitionException">There is at least one error.</exception>
     public void ThrowIfAny()
     {

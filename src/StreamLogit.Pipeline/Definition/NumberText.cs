@@ -1,11 +1,15 @@
 using System.Globalization;
+using System.Text.RegularExpressions;
 
 namespace StreamLogit.Pipeline.Definition;
 
 /// <summary>Reads the digits of JSON numbers without losing any: <c>1e5</c> and <c>100.0</c> are whole, <c>1e-400</c> is not 0.</summary>
-internal static class NumberText
+internal static partial class NumberText
 {
     private const int MostDigits = 20;
+
+    /// <summary>Whether the text is a JSON number (RFC 8259).</summary>
+    public static bool IsNumber(string text) => NumberPattern().IsMatch(text);
 
     /// <summary>Whether the number is exactly 0.</summary>
     public static bool IsZero(string text)
@@ -35,4 +39,7 @@ internal static class NumberText
         if (text[0] == '-') number = -number;
         return true;
     }
+
+    [GeneratedRegex(@"\A-?(0|[1-9][0-9]*)(\.[0-9]+)?([eE][+-]?[0-9]+)?\z")]
+    private static partial Regex NumberPattern();
 }

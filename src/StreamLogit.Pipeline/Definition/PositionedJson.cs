@@ -1,4 +1,6 @@
+using System.Buffers;
 using System.Collections.Immutable;
+using System.Text;
 using System.Text.Json;
 using System.Text.Unicode;
 
@@ -8,6 +10,7 @@ namespace StreamLogit.Pipeline.Definition;
 internal static class PositionedJson
 {
     private const int DeepestNesting = 64;
+    private const int LongestMessage = 150;
     private static ReadOnlySpan<byte> ByteOrderMark => [0xEF, 0xBB, 0xBF];
 
     /// <summary>The value, or null and what is wrong with the text.</summary>
@@ -69,7 +72,7 @@ internal static class PositionedJson
                     return PositionedValue.List(place, items.ToImmutable());
                 case JsonTokenType.String: return PositionedValue.Scalar(JsonValueKind.String, place, reader.GetString()!);
                 case JsonTokenType.Number:
-                    return PositionedValue.Scalar(JsonValueKind.Number, place, System.Text.Encoding.ASCII.GetString(reader.ValueSpan));
+                    return PositionedValue.Scalar(JsonValueKind.Number, place, Encoding.ASCII.GetString(reader.ValueSpan));
                 case JsonTokenType.True: return PositionedValue.Scalar(JsonValueKind.True, place);
                 case JsonTokenType.False: return PositionedValue.Scalar(JsonValueKind.False, place);
                 default: return PositionedValue.Scalar(JsonValueKind.Null, place);
@@ -80,13 +83,15 @@ internal static class PositionedJson
     private static int ValidLength(ReadOnlySpan<byte> utf8)
     {
         int valid = 0;
-        while (System.Text.Rune.DecodeFromUtf8(utf8[valid..], out _, out int consumed) == System.Buffers.OperationStatus.Done) valid += consumed;
+        while (Rune.DecodeFromUtf8(utf8[valid..], out _, out int consumed) == OperationStatus.Done) valid += consumed;
         return valid;
     }
 
+    // The message ends with the position, and may quote all the rest of the text.
     private static string WithoutPosition(string message)
     {
-        int position = message.IndexOf(" LineNumber:", StringComparison.Ordinal);
-        return position < 0 ? message : message[..position];
+        int position = message.LastIndexOf(" LineNumber:", StringComparison.Ordinal);
+        string what = string.Concat((position < 0 ? message : message[..position]).Select(c => char.IsControl(c) ? ' ' : c));
+        return what.Length <= LongestMessage ? what : string.Concat(what.AsSpan(0, LongestMessage), "...");
     }
 }

@@ -1,3 +1,4 @@
+using System.Text.Json;
 using StreamLogit.Engine.Definition;
 
 namespace StreamLogit.Pipeline.Definition.Sections;
@@ -26,7 +27,7 @@ internal sealed class BankEntry
         if (value.Object() is not { } entry) return null;
         var update = entry.Required("update", $"it names the update rule, one of {Quoted.List(UpdateRules.All.Select(rule => rule.Name))}");
         if (update is null) return null;
-        var rule = UpdateRules.All.FirstOrDefault(rule => rule.Name == update.Value.Text && update.Value.Kind == System.Text.Json.JsonValueKind.String);
+        var rule = UpdateRules.All.FirstOrDefault(rule => rule.Name == update.Value.Text && update.Value.Kind == JsonValueKind.String);
         if (rule is null)
         {
             update.UnknownName([.. UpdateRules.All.Select(known => known.Name)]);

@@ -1,4 +1,5 @@
 using System.Collections.Immutable;
+using System.Text.Json;
 using StreamLogit.Engine.Definition;
 
 namespace StreamLogit.Pipeline.Definition.Sections;
@@ -13,15 +14,23 @@ internal static class FeaturesSection
     {
         if (value?.List("features") is not { } items) return [];
         var features = ImmutableArray.CreateBuilder<FeatureOptions>();
-        var names = new Dictionary<(Type, string), string>();
+        var paths = new Dictionary<string, string>(StringComparer.Ordinal);
         foreach (var item in items)
         {
             if (ReadFeature(item, record) is not { } feature) continue;
-            if (names.TryAdd((feature.GetType(), feature.Name), item.Path)) features.Add(feature);
-            else item.Error($"is the same feature as {names[(feature.GetType(), feature.Name)]}: keep one");
+            string identity = IdentityOf(feature);
+            if (paths.TryAdd(identity, item.Path)) features.Add(feature);
+            else item.Error($"is the same feature as {paths[identity]}: keep one");
         }
         return features.ToImmutable();
     }
+
+    // What two features share when their coefficients would have the same names, or always the same values.
+    private static string IdentityOf(FeatureOptions feature) => feature switch
+    {
+        TimeCycleFeature cycle => FormattableString.Invariant($"time of {cycle.PeriodMicroseconds}"),
+        _ => $"{feature.GetType().Name} {feature.Name}",
+    };
 
     private static FeatureOptions? ReadFeature(ValueReader item, RecordOptions record)
     {
@@ -73,7 +82,7 @@ internal static class FeaturesSection
                 ? new TimeCycleFeature(microseconds, period.Value.Text)
                 : null;
         }
-        if (period.Value.Kind == System.Text.Json.JsonValueKind.String)
+        if (period.Value.Kind == JsonValueKind.String)
         {
             period.Error($"expected a number in the unit of the field, found {period.Value.Describe()}; only the time of the event, {Quoted.Text(record.Time)}, takes a duration");
             return null;

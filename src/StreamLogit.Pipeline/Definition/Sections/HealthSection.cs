@@ -8,7 +8,7 @@ internal static class HealthSection
 {
     private const long MinuteMicroseconds = 60_000_000;
     private const long LongestWindowMicroseconds = 366L * 24 * 3600 * 1_000_000;
-    private const int MostLabels = 10_000_000;
+    private const int MostLabels = 1_000_000;
 
     public static HealthOptions Read(ValueReader? value)
     {

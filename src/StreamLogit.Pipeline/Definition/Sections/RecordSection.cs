@@ -67,7 +67,8 @@ internal static class RecordSection
                 continue;
             }
             meanings[key] = label;
-            if (!double.TryParse(key, NumberStyles.Float, CultureInfo.InvariantCulture, out double number)) continue;
+            if (!NumberText.IsNumber(key)) continue;
+            double number = double.Parse(key, NumberStyles.Float, CultureInfo.InvariantCulture);
             if (!numbers.TryAdd(number, (key, label)) && numbers[number] is var (other, otherLabel) && otherLabel != label)
             {
                 meaning.Error($"the same number as {Quoted.Text(other)}, which means {otherLabel}: a number has one meaning");
