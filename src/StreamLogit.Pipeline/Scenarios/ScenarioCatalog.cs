@@ -27,14 +27,14 @@ public static class ScenarioCatalog
         {
             "ferry-tickets" => Create(FerryTickets.DefaultEventsPerDay, "t-", (perDay, seed) => new FerryTickets(perDay, seed)),
             "pump-stations" => Create(PumpStations.DefaultEventsPerDay, "r-", (perDay, seed) => new PumpStations(perDay, seed)),
-            _ => throw new ArgumentException($"There is no scenario '{name}'.", nameof(name)),
+            _ => throw new ArgumentException($"There is no scenario '{name}'."),
         };
 
         ScenarioWriter Create(int defaultPerDay, string idPrefix, Func<int, int, IScenario> make)
         {
             int perDay = options.EventsPerDay ?? defaultPerDay;
             if (options.Records / perDay > ScenarioCalendar.MaximumDays)
-                throw new ArgumentException("The stream would outlast the year 9999: ask for fewer records or for more events per day.", nameof(options));
+                throw new ArgumentException("The stream would outlast the year 9999: ask for fewer records or for more events per day.");
             return new ScenarioWriter(make(perDay, options.Seed), options, idPrefix);
         }
     }

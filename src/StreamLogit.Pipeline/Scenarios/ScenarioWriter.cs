@@ -35,7 +35,7 @@ public sealed class ScenarioWriter
     /// <param name="output">Where to; it stays open.</param>
     /// <param name="progress">Is told the number of records written from time to time.</param>
     /// <param name="cancellation">Stops between records.</param>
-    public void Write(Stream output, IProgress<long>? progress = null, CancellationToken cancellation = default)
+    public void Write(Stream output, Action<long>? progress = null, CancellationToken cancellation = default)
     {
         ArgumentNullException.ThrowIfNull(output);
         var buffer = new ArrayBufferWriter<byte>(FlushBytes * 2);
@@ -65,11 +65,11 @@ public sealed class ScenarioWriter
             cancellation.ThrowIfCancellationRequested();
             output.Write(buffer.WrittenSpan);
             buffer.ResetWrittenCount();
-            progress?.Report(record + 1);
+            progress?.Invoke(record + 1);
         }
         output.Write(buffer.WrittenSpan);
         output.Flush();
-        progress?.Report(_options.Records);
+        progress?.Invoke(_options.Records);
     }
 
     private void WriteEvent(Utf8JsonWriter json, ScenarioEvent next)
