@@ -11,6 +11,12 @@ public sealed record LearningOptions
     /// <summary>The seed of the hash that gives a category its slot. Default 0.</summary>
     public ulong HashSeed { get; init; }
 
+    /// <summary>
+    /// The probability that a model gives before it has learned anything, above 0 and below 1: its log-odds is where every intercept starts.
+    /// Where bad events are rare and labels late, 0.5 makes every event of the first days an alert. Default 0.5.
+    /// </summary>
+    public double StartProbability { get; init; } = 0.5;
+
     /// <summary>The settings, at most 64, each with a name that no other has. Default: <see cref="DefaultBank.Settings"/>.</summary>
     public ImmutableArray<SettingOptions> Bank { get; init; } = DefaultBank.Settings;
 

@@ -1,6 +1,7 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Learning;
@@ -32,6 +33,8 @@ internal sealed class Bank
             throw new ArgumentException($"The published setting '{options.PublishedSetting}' is not in the bank.", nameof(options));
         _blocks = new SlotBlocks(slotCount, LearnerGroup.DoublesPerSlot(options.Bank));
         _groups = LearnerGroup.Create(options.Bank, _blocks, widestLanes);
+        double intercept = Elementary.Log(options.StartProbability) - Elementary.Log(1 - options.StartProbability);
+        foreach (LearnerGroup group in _groups) group.Learner.StartAt(intercept);
         _blend = Blend.Create(SettingCount, options.SwitchRate, widestLanes);
         _settingWeights = new double[SettingCount];
         _state = new BankState(Names, _blocks, _groups, _blend);

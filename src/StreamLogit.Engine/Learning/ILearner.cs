@@ -14,6 +14,9 @@ internal interface ILearner
     /// <summary>The log-odds that <see cref="Score"/> computed last, one for every place.</summary>
     ReadOnlySpan<double> LogOdds { get; }
 
+    /// <summary>Puts the intercept of every setting. Only before anything is learned.</summary>
+    void StartAt(double intercept);
+
     /// <summary>Computes the log-odds of every setting. The slots must have been checked.</summary>
     void Score(in EncodedVector x);
 

@@ -54,6 +54,8 @@ internal sealed class SgdLearner<T> : ILearner where T : struct, ILanes<T>
 
     public int DoublesPerSetting => 3;
 
+    public void StartAt(double intercept) => Array.Fill(_intercept, intercept);
+
     public void Score(in EncodedVector x) => ComputeLogOdds(in x);
 
     public void Learn(in EncodedVector x, int label, double weight, ReadOnlySpan<double> missProbability)

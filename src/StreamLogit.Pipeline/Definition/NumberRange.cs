@@ -12,5 +12,7 @@ internal sealed record NumberRange(double Minimum, double Maximum, string InWord
 
     public static NumberRange ZeroToOne { get; } = new(0, 1, "a number from 0 to 1");
 
+    public static NumberRange BetweenZeroAndOne { get; } = new(double.Epsilon, double.BitDecrement(1), "a number above 0 and below 1");
+
     public bool Contains(double number) => number >= Minimum && number <= Maximum;
 }

@@ -22,6 +22,7 @@ internal static class DefinitionInWords
         yield return "";
         yield return "Learning";
         yield return $"  published: {engine.Learning.PublishedSetting ?? FormattableString.Invariant($"the blend of all settings, switch rate {engine.Learning.SwitchRate}")}";
+        yield return FormattableString.Invariant($"  probability before anything is learned: {engine.Learning.StartProbability}");
         foreach (var setting in engine.Learning.Bank) yield return $"  setting: {setting.Name}";
         yield return "";
         yield return "Labels";

@@ -45,6 +45,20 @@ public sealed class SgdLearnerTests
         Assert.True(compared >= 5);
     }
 
+    [Theory]
+    [InlineData(0.5)]
+    [InlineData(0.01)]
+    [InlineData(0.999)]
+    public void Score_NothingLearned_GivesTheStartProbability(double probability)
+    {
+        var bank = new Bank(BankStream.Options(new SgdSetting(0.1, 0, 0), new SgdSetting(0.2, 0, 0)) with { StartProbability = probability }, 1);
+
+        double logOdds = new BankStream(bank, 1).Next([3.5], label: 1);
+
+        Assert.Equal(probability, 1 / (1 + Math.Exp(-logOdds)), 1e-15);
+        Assert.Equal(Math.Log(probability / (1 - probability)) + 0.2 * (1 - probability), bank.Intercept(1), 1e-14);
+    }
+
     private static void AssertClose(double expected, double actual) =>
         Assert.InRange(Math.Abs(actual - expected), 0, 1e-12 * Math.Max(1, Math.Abs(expected)));
 }

@@ -20,7 +20,7 @@ public sealed class StreamDefinitionReaderTests
             { "cycle": "at", "period": "1d" }, { "cycle": "bearing", "period": 360 },
           ],
           "learning": {
-            "slots": 1024, "hashSeed": 18446744073709551615,
+            "slots": 1024, "hashSeed": 18446744073709551615, "startProbability": 0.01,
             "bank": [ { "update": "sgd", "step": [ 0.01, 0.1 ], "stepDecay": 0.25, "weightDecay": [ 0, 1e-6 ] } ],
             "publish": "sgd step=0.01 stepDecay=0.25 weightDecay=0", "switchRate": 0,
           },
@@ -55,6 +55,7 @@ public sealed class StreamDefinitionReaderTests
         Assert.Equal(new TimeCycleFeature(86_400_000_000, "1d"), engine.Features[5]);
         Assert.Equal(new NumberCycleFeature("bearing", 360), engine.Features[6]);
         Assert.Equal((1024, ulong.MaxValue, 0.0), (engine.Learning.Slots, engine.Learning.HashSeed, engine.Learning.SwitchRate));
+        Assert.Equal(0.01, engine.Learning.StartProbability);
         Assert.Equal(
             [new SgdSetting(0.01, 0.25, 0), new SgdSetting(0.01, 0.25, 1e-6), new SgdSetting(0.1, 0.25, 0), new SgdSetting(0.1, 0.25, 1e-6)],
             engine.Learning.Bank);

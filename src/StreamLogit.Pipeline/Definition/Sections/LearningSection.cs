@@ -17,6 +17,7 @@ internal static class LearningSection
         int? slots = section.Optional("slots")?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
         ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
         var bank = section.Optional("bank") is { } written ? BankSection.Read(written) : defaults.Bank;
+        double? startProbability = section.Optional("startProbability")?.Number(NumberRange.BetweenZeroAndOne);
         string? publish = ReadPublish(section.Optional("publish"), bank);
         double? switchRate = section.Optional("switchRate")?.Number(NumberRange.ZeroToOne);
         section.End();
@@ -25,6 +26,7 @@ internal static class LearningSection
             Slots = slots ?? defaults.Slots,
             HashSeed = hashSeed ?? defaults.HashSeed,
             Bank = bank ?? defaults.Bank,
+            StartProbability = startProbability ?? defaults.StartProbability,
             PublishedSetting = publish,
             SwitchRate = switchRate ?? defaults.SwitchRate,
         };
