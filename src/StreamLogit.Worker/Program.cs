@@ -2,6 +2,7 @@ using System.CommandLine;
 using System.CommandLine.Invocation;
 using System.Text;
 using StreamLogit.Engine.Persistence;
+using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Worker;
 using StreamLogit.Worker.Commands;
@@ -19,7 +20,7 @@ catch (DefinitionException exception)
 {
     return Fail($"the definition cannot be used\n{exception.Message}", ExitCode.WrongInput);
 }
-catch (Exception exception) when (exception is WrongInputException or InvalidStateException)
+catch (Exception exception) when (exception is WrongInputException or InvalidRecordingException or InvalidStateException)
 {
     return Fail(exception.Message, ExitCode.WrongInput);
 }
@@ -27,7 +28,7 @@ catch (OperationCanceledException)
 {
     return Fail("stopped before it was done", ExitCode.Failed);
 }
-catch (Exception exception) when (exception is IOException or UnauthorizedAccessException)
+catch (Exception exception) when (exception is PipelineException or IOException or UnauthorizedAccessException)
 {
     return Fail(exception.Message, ExitCode.Failed);
 }

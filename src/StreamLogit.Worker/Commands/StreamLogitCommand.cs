@@ -10,7 +10,10 @@ internal static class StreamLogitCommand
     {
         var root = new RootCommand("Scores every event of a stream with a logistic model and learns from each label as it arrives.")
         {
+            RunCommand.Create(),
+            ReplayCommand.Create(),
             CheckCommand.Create(),
+            ShowCommand.Create(),
             SynthCommand.Create(),
         };
         foreach (var help in root.Options.OfType<HelpOption>()) help.Action = new ExampleHelp((HelpAction)help.Action!);

@@ -23,11 +23,7 @@ internal static class SourceSection
     private static RecordingFormat? FormatOf(ValueReader? file, string? path)
     {
         if (file is null || path is null) return null;
-        switch (Path.GetExtension(path).ToUpperInvariant())
-        {
-            case ".JSONL" or ".NDJSON": return RecordingFormat.JsonLines;
-            case ".CSV": return RecordingFormat.Csv;
-        }
+        if (RecordingFormats.OfName(path) is { } format) return format;
         file.Error($"the name {Quoted.Text(file.Value.Text)} does not tell the format (.jsonl, .ndjson or .csv would): add \"format\": \"jsonl\" or \"csv\"");
         return null;
     }

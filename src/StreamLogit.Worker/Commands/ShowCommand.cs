@@ -1,0 +1,89 @@
+using System.CommandLine;
+using StreamLogit.Engine.Learning;
+using StreamLogit.Worker.Output;
+
+namespace StreamLogit.Worker.Commands;
+
+/// <summary><c>show</c>: shows the model of a state.</summary>
+internal static class ShowCommand
+{
+    private const int DefaultTop = 20;
+
+    public static Command Create()
+    {
+        var path = new Argument<string>("STATE") { Description = "The state folder of a worker, or the file in it; the worker may be running" };
+        var json = new Option<bool>("--json") { Description = "Write everything as JSON" };
+        var top = new Option<int?>("--top")
+        {
+            Description = $"How many coefficients the table has, the largest first; {DefaultTop} if not given",
+            HelpName = "N",
+            CustomParser = WholeNumber.Between("--top", 0, int.MaxValue),
+        };
+        var command = new ExampleCommand(
+            "show", "Shows the coefficients and the blend of a saved model", "streamlogit show demo-streams/out/pump-stations.state --top 10")
+        {
+            path, json, top,
+        };
+        command.SetAction(result =>
+        {
+            var model = SavedModel.Read(result.GetRequiredValue(path));
+            if (result.GetValue(json)) WriteJson(model.Snapshot);
+            else WriteTables(model, result.GetValue(top) ?? DefaultTop);
+            return ExitCode.Done;
+        });
+        return command;
+    }
+
+    private static void WriteJson(ModelSnapshot model) => JsonOutput.Write(json =>
+    {
+        json.WriteStartObject();
+        json.WriteNumber("version", model.Version);
+        json.WriteStartArray("settings");
+        foreach (var setting in model.Settings)
+        {
+            json.WriteStartObject();
+            json.WriteString("name", setting.Name);
+            json.WriteNumber("intercept", setting.Intercept);
+            json.WriteStartArray("coefficients");
+            foreach (var coefficient in setting.Coefficients)
+            {
+                json.WriteStartObject();
+                json.WriteString("feature", coefficient.Feature);
+                json.WriteNumber("value", coefficient.Value);
+                json.WriteEndObject();
+            }
+            json.WriteEndArray();
+            json.WriteEndObject();
+        }
+        json.WriteEndArray();
+        json.WriteStartArray("blend");
+        foreach (var part in model.Blend)
+        {
+            json.WriteStartObject();
+            json.WriteString("name", part.Name);
+            json.WriteNumber("weight", part.Weight);
+            json.WriteEndObject();
+        }
+        json.WriteEndArray();
+        json.WriteEndObject();
+    });
+
+    private static void WriteTables(SavedModel model, int top)
+    {
+        var settings = new ResultTable("setting", "weight in the blend", "intercept");
+        for (int i = 0; i < model.Snapshot.Settings.Length; i++)
+        {
+            var setting = model.Snapshot.Settings[i];
+            settings.Add(setting.Name, FigureText.Mean(model.Snapshot.Blend[i].Weight), FigureText.Coefficient(setting.Intercept));
+        }
+        settings.Write(Terminal.Output);
+        Console.Out.WriteLine();
+
+        var coefficients = new ResultTable("feature", "coefficient");
+        foreach (var (feature, value) in model.PublishedCoefficients().OrderByDescending(c => Math.Abs(c.Value)).ThenBy(c => c.Feature, StringComparer.Ordinal).Take(top))
+            coefficients.Add(feature, FigureText.Coefficient(value));
+        coefficients.Write(Terminal.Output);
+        Console.Error.WriteLine(
+            $"stream {model.Stream}, {model.Snapshot.Version} labels learned; coefficients of {model.PublishedSetting ?? "the blend"}, the largest of {model.Snapshot.Settings[0].Coefficients.Length}");
+    }
+}

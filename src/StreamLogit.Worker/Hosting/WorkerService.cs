@@ -1,0 +1,39 @@
+using Microsoft.Extensions.Hosting;
+using Microsoft.Extensions.Logging;
+using StreamLogit.Pipeline;
+
+namespace StreamLogit.Worker.Hosting;
+
+/// <summary>The run of a stream as a service of the host: it stops with the host, and the host with it.</summary>
+internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostApplicationLifetime lifetime, ILogger<WorkerService> logger) : BackgroundService
+{
+    private static readonly TimeSpan ReportEvery = TimeSpan.FromMinutes(1);
+
+    private string Stream => run.Engine.Definition.Stream;
+
+    /// <inheritdoc/>
+    protected override async Task ExecuteAsync(CancellationToken stoppingToken)
+    {
+        try
+        {
+            var health = run.Health;
+            if (run.IsResumed) logger.GoesOn(Stream, health.Records, health.Labelled);
+            else logger.Begins(Stream);
+
+            using var reports = time.CreateTimer(_ => Report(), null, ReportEvery, ReportEvery);
+            await run.RunAsync(stoppingToken);
+            if (stoppingToken.IsCancellationRequested) logger.Stopped(Stream);
+            else logger.Ended(Stream);
+        }
+        finally
+        {
+            lifetime.StopApplication();
+        }
+    }
+
+    private void Report()
+    {
+        var health = run.Health;
+        logger.Runs(Stream, run.Progress.Records, health.Awaiting, health.Rejected, health.Total.LogLoss, health.Total.BaseRateLogLoss);
+    }
+}
