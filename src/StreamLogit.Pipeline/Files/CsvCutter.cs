@@ -68,9 +68,10 @@ internal sealed class CsvCutter(string path, int maximumBytes) : IRecordCutter
     {
         long line = Line + 1;
         Line += LinesOf(row);
-        if (row.Length > maximumBytes && TrimEnd(row).Length > maximumBytes)
+        int length = TrimEnd(row).Length;
+        if (length > maximumBytes)
         {
-            _longLine.Reject(row, row.Length, line, batch);
+            _longLine.Reject(row, length, line, batch);
             return;
         }
         if (_row.Cells.Length != header.Count)
