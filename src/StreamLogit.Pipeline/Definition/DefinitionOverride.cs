@@ -14,13 +14,14 @@ internal sealed record DefinitionOverride(IReadOnlyList<PathPart> Parts, Positio
 
     private const string Separator = "__";
     private const int LongestPlace = 100;
+    private const int MostParts = 32;
 
     /// <summary>Reads <c>path=value</c>, or adds an error and returns null.</summary>
     public static DefinitionOverride? FromArgument(string argument, DefinitionErrors errors)
     {
         var place = PlaceOf($"--set {argument}");
         var path = DefinitionPath.Parse(argument);
-        if (path is not var (parts, length) || length == argument.Length)
+        if (path is not var (parts, length) || length == argument.Length || parts.Count > MostParts)
         {
             errors.Add(place, "", "an override is written path=value, as learning.bank[0].step=0.01");
             return null;
@@ -37,7 +38,7 @@ internal sealed record DefinitionOverride(IReadOnlyList<PathPart> Parts, Positio
             if (!name.StartsWith(VariablePrefix, StringComparison.Ordinal)) continue;
             var place = PlaceOf($"environment variable {name}");
             string[] parts = name[VariablePrefix.Length..].Split(Separator);
-            if (parts.Any(string.IsNullOrEmpty))
+            if (parts.Any(string.IsNullOrEmpty) || parts.Length > MostParts)
             {
                 errors.Add(place, "", "a variable is named STREAMLOGIT__path__part, with the keys as the definition writes them");
                 continue;

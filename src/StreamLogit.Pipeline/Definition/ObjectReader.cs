@@ -4,6 +4,7 @@ namespace StreamLogit.Pipeline.Definition;
 internal sealed class ObjectReader(PositionedValue value, string path, DefinitionErrors errors)
 {
     private readonly List<string> _known = [];
+    private bool _keysAreFree;
 
     public void Error(string message) => errors.Add(value.Place, path, message);
 
@@ -45,7 +46,7 @@ internal sealed class ObjectReader(PositionedValue value, string path, Definitio
     /// <summary>All members, for objects whose keys are the user's own.</summary>
     public IEnumerable<(string Key, ValueReader Value)> Own()
     {
-        _known.AddRange(value.Members.Select(member => member.Key));
+        _keysAreFree = true;
         return value.Members.Select(member => (member.Key, new ValueReader(member.Value, DefinitionPath.Member(path, member.Key), errors)));
     }
 
@@ -63,7 +64,7 @@ internal sealed class ObjectReader(PositionedValue value, string path, Definitio
             {
                 errors.Add(member.Place, memberPath, $"the key is there twice, before at {first[member.Key]}: keep one");
             }
-            else if (!_known.Contains(member.Key))
+            else if (!_keysAreFree && !_known.Contains(member.Key))
             {
                 string hint = NearestName.Hint(member.Key, _known);
                 errors.Add(member.Place, memberPath, $"unknown key{(hint.Length == 0 ? "." : hint)} Known here: {Quoted.List(_known)}");

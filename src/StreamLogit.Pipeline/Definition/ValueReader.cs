@@ -95,15 +95,16 @@ internal sealed class ValueReader(PositionedValue value, string path, Definition
         Error($"expected one of {Quoted.List(known)}, found {value.Describe()}{hint}");
     }
 
-    /// <summary>The items of a list that is not empty.</summary>
-    public ImmutableArray<ValueReader>? List(string what)
+    /// <summary>The items of a list that is not empty and not longer than a bound.</summary>
+    public ImmutableArray<ValueReader>? List(string what, int most)
     {
         if (value.Kind != JsonValueKind.Array || value.Items.IsEmpty) return WantedValue<ImmutableArray<ValueReader>>($"a list of {what}, at least one");
+        if (value.Items.Length > most) return WantedValue<ImmutableArray<ValueReader>>($"at most {most} {what}", $"{value.Items.Length}");
         return [.. value.Items.Select((item, index) => new ValueReader(item, DefinitionPath.Item(path, index), errors))];
     }
 
     /// <summary>The items of a list that is not empty, or the value itself where it is not a list.</summary>
-    public ImmutableArray<ValueReader>? OneOrList(string what) => value.Kind == JsonValueKind.Array ? List(what) : [this];
+    public ImmutableArray<ValueReader>? OneOrList(string what, int most) => value.Kind == JsonValueKind.Array ? List(what, most) : [this];
 
     public ObjectReader? Object()
     {
@@ -123,9 +124,9 @@ internal sealed class ValueReader(PositionedValue value, string path, Definition
         return null;
     }
 
-    private T? WantedValue<T>(string what) where T : struct
+    private T? WantedValue<T>(string what, string? found = null) where T : struct
     {
-        Error($"expected {what}, found {value.Describe()}");
+        Error($"expected {what}, found {found ?? value.Describe()}");
         return null;
     }
 }

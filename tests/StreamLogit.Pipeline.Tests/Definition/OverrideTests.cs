@@ -99,6 +99,14 @@ public sealed class OverrideTests
             (error.Place.ToString(), error.Message));
     }
 
+    [Fact]
+    public void Set_PathOfVeryManyParts_IsRefused()
+    {
+        string path = string.Join('.', Enumerable.Repeat("a", 200_000));
+
+        Assert.StartsWith("an override is written path=value", Assert.Single(Definitions.Errors(Definition, [path + "=1"])).Message, StringComparison.Ordinal);
+    }
+
     [Theory]
     [InlineData("features.number=5", "features", "is a list, in which \"number\" is nothing: give an index, from 0")]
     [InlineData("decision[0]=5", "decision", "is an object, in which [0] is nothing: name a key")]

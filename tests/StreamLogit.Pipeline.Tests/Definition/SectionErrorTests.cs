@@ -89,6 +89,20 @@ public sealed class SectionErrorTests
         if (!expected.EndsWith(' ')) Assert.Equal("quay.json:" + expected, error);
     }
 
+    [Fact]
+    public void Lists_LongerThanTheirBounds_AreRefused()
+    {
+        string fields = string.Join(", ", Enumerable.Range(0, 17).Select(i => $"\"f{i}\""));
+        string features = string.Join(", ", Enumerable.Range(0, 1001).Select(i => $$"""{ "number": "f{{i}}" }"""));
+        string labels = string.Join(", ", Enumerable.Range(0, 1001).Select(i => $"\"v{i}\": 1"));
+        string windows = string.Join(", ", Enumerable.Range(1, 17).Select(i => $"\"{i}h\""));
+
+        Assert.Equal("expected at most 1000 features, found 1001", Definitions.Errors($$"""{ "stream": "q", "features": [ {{features}} ] }""").Single().Message);
+        Assert.Equal("expected at most 16 paths of fields, found 17", Definitions.Errors($$"""{ "stream": "q", "features": [ { "category": [ {{fields}} ] } ] }""").Single().Message);
+        Assert.Equal("expected at most 1000 values, found 1001", Definitions.ErrorWith($"\"record\": {{ \"labelValues\": {{ {labels} }} }}").Message);
+        Assert.Equal("expected at most 16 durations, found 17", Definitions.ErrorWith($"\"health\": {{ \"windows\": [ {windows} ] }}").Message);
+    }
+
     [Theory]
     [InlineData("\"source\": {}", "2:11: source: the key \"file\" is missing: it names the recording to read, or \"-\" for standard input")]
     [InlineData("\"source\": { \"file\": 3 }", "2:21: source.file: expected a string, found the number 3")]

@@ -6,8 +6,6 @@ namespace StreamLogit.Pipeline.Definition.Sections;
 /// <summary>One entry of the bank: an update rule and, for each of its numbers, the values to combine.</summary>
 internal sealed class BankEntry
 {
-    private const int LongestList = 1000;
-
     private readonly UpdateRule _rule;
 
     /// <summary>The values of each number, in the order of the rule's numbers.</summary>
@@ -60,12 +58,7 @@ internal sealed class BankEntry
     {
         var value = number.Default is null ? entry.Required(number.Key, number.Range.InWords + ", or a list of them") : entry.Optional(number.Key);
         if (value is null) return number.Default is { } absent ? [absent] : null;
-        if (value.OneOrList("numbers") is not { } items) return null;
-        if (items.Length > LongestList)
-        {
-            value.Error($"has {items.Length} items; a list of numbers has at most {LongestList}");
-            return null;
-        }
+        if (value.OneOrList("numbers", BankSection.MostSettings) is not { } items) return null;
         var values = new List<double>();
         foreach (var item in items)
         {

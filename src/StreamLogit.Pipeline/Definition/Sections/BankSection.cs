@@ -7,7 +7,7 @@ namespace StreamLogit.Pipeline.Definition.Sections;
 /// <summary><c>learning.bank</c>: entries of an update rule with numbers, each number one or a list, whose product gives the settings.</summary>
 internal static class BankSection
 {
-    private const int MostSettings = 64;
+    public const int MostSettings = 64;
     private const string Default = "default";
 
     /// <summary>The settings in the order in which they are written, or null and errors.</summary>
@@ -19,7 +19,7 @@ internal static class BankSection
             value.UnknownName([Default]);
             return null;
         }
-        if (value.List("entries, each an update rule with its numbers (or the string \"default\")") is not { } entries) return null;
+        if (value.List("entries, each an update rule with its numbers (or the string \"default\")", MostSettings) is not { } entries) return null;
         var settings = ImmutableArray.CreateBuilder<SettingOptions>();
         var origins = new Dictionary<string, string>(StringComparer.Ordinal);
         bool right = true;

@@ -7,12 +7,14 @@ namespace StreamLogit.Pipeline.Definition.Sections;
 /// <summary><c>features</c>: what the model sees of an event.</summary>
 internal static class FeaturesSection
 {
+    private const int MostFeatures = 1000;
+    private const int MostCrossedFields = 16;
     private const long ShortestPeriodMicroseconds = 1_000;
     private const long LongestPeriodMicroseconds = 36_525L * 24 * 3600 * 1_000_000;
 
     public static ImmutableArray<FeatureOptions> Read(ValueReader? value, RecordOptions record)
     {
-        if (value?.List("features") is not { } items) return [];
+        if (value?.List("features", MostFeatures) is not { } items) return [];
         var features = ImmutableArray.CreateBuilder<FeatureOptions>();
         var paths = new Dictionary<string, string>(StringComparer.Ordinal);
         foreach (var item in items)
@@ -60,7 +62,7 @@ internal static class FeaturesSection
 
     private static CategoryFeature? ReadCategory(ValueReader value, RecordOptions record)
     {
-        if (value.OneOrList("paths of fields") is not { } items) return null;
+        if (value.OneOrList("paths of fields", MostCrossedFields) is not { } items) return null;
         var fields = ImmutableArray.CreateBuilder<string>();
         foreach (var item in items)
         {

@@ -8,6 +8,7 @@ internal static class HealthSection
 {
     private const long MinuteMicroseconds = 60_000_000;
     private const long LongestWindowMicroseconds = 366L * 24 * 3600 * 1_000_000;
+    private const int MostWindows = 16;
     private const int MostLabels = 1_000_000;
 
     public static HealthOptions Read(ValueReader? value)
@@ -25,7 +26,7 @@ internal static class HealthSection
 
     private static ImmutableArray<HealthWindow>? ReadWindows(ValueReader? value)
     {
-        if (value?.List("durations") is not { } items) return null;
+        if (value?.List("durations", MostWindows) is not { } items) return null;
         var windows = ImmutableArray.CreateBuilder<HealthWindow>();
         foreach (var item in items)
         {

@@ -9,6 +9,7 @@ internal static class RecordSection
 {
     private const int ShortestLimitBytes = 64;
     private const int LongestLimitBytes = 1 << 26;
+    private const int MostLabelValues = 1000;
     private const int DeepestLimit = 256;
 
     public static RecordOptions Read(ValueReader? value, LabelOptions labels)
@@ -56,6 +57,11 @@ internal static class RecordSection
     private static ImmutableDictionary<string, int>? ReadLabelValues(ValueReader? value, LabelOptions labels)
     {
         if (value?.Object() is not { } section) return null;
+        if (value.Value.Members.Length > MostLabelValues)
+        {
+            value.Error($"expected at most {MostLabelValues} values, found {value.Value.Members.Length}");
+            return null;
+        }
         var meanings = new Dictionary<string, int>(StringComparer.Ordinal);
         var numbers = new Dictionary<double, (string Key, int Meaning)>();
         bool right = true;

@@ -1,0 +1,85 @@
+namespace StreamLogit.Pipeline.Tests.Definition;
+
+/// <summary>What a schema can say, both the schema and the reader refuse.</summary>
+public sealed class SchemaRefusalTests
+{
+    [Theory]
+    [InlineData("\"listen\": \"http://127.0.0.1:7070\"")]
+    [InlineData("\"$schema\": 1")]
+    [InlineData("\"record\": { \"id\": \"a..b\" }")]
+    [InlineData("\"record\": { \"id\": \"\" }")]
+    [InlineData("\"record\": { \"timeFormat\": \"iso\" }")]
+    [InlineData("\"record\": { \"labelValues\": {} }")]
+    [InlineData("\"record\": { \"labelValues\": { \"a\": 0, \"b\": 0 } }")]
+    [InlineData("\"record\": { \"labelValues\": { \"a\": 1, \"b\": 0.5 } }")]
+    [InlineData("\"record\": { \"maxBytes\": 1e9 }")]
+    [InlineData("\"record\": { \"maxDepth\": 1.5 }")]
+    [InlineData("\"learning\": { \"slots\": 1000 }")]
+    [InlineData("\"learning\": { \"hashSeed\": -1 }")]
+    [InlineData("\"learning\": { \"bank\": \"none\" }")]
+    [InlineData("\"learning\": { \"bank\": [] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"update\": \"sgd\" } ] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"update\": \"sgd\", \"step\": 0 } ] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"update\": \"sgd\", \"step\": [] } ] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"update\": \"sgd\", \"step\": [ 0.1, 0.10 ] } ] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"update\": \"sgd\", \"step\": 0.1, \"stepDecay\": 2 } ] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"update\": \"sgd\", \"step\": 0.1, \"weightDecay\": -1 } ] }")]
+    [InlineData("\"learning\": { \"bank\": [ { \"step\": 0.1 } ] }")]
+    [InlineData("\"learning\": { \"publish\": \"\" }")]
+    [InlineData("\"learning\": { \"switchRate\": 2 }")]
+    [InlineData("\"labels\": { \"wait\": \"30 days\" }")]
+    [InlineData("\"labels\": { \"unlabelled\": true }")]
+    [InlineData("\"decision\": { \"cutoff\": \"0.5\" }")]
+    [InlineData("\"health\": { \"windows\": [ 60 ] }")]
+    [InlineData("\"health\": { \"lastLabels\": 1000001 }")]
+    [InlineData("\"source\": {}")]
+    [InlineData("\"source\": { \"file\": \"in.txt\" }")]
+    [InlineData("\"source\": { \"file\": \"a.csv\", \"follow\": null }")]
+    [InlineData("\"scores\": { \"file\": \"-\" }")]
+    [InlineData("\"scores\": { \"reasons\": 21 }")]
+    [InlineData("\"rejects\": {}")]
+    [InlineData("\"state\": { \"every\": \"10s\" }")]
+    [InlineData("\"state\": { \"folder\": \"s\", \"every\": \"1e3s\" }")]
+    [InlineData("\"state\": { \"folder\": \"s\\u0000\" }")]
+    [InlineData("\"state\": []")]
+    public void Section_Wrong_IsRefusedByBoth(string keys) => AssertRefused(Definitions.With(keys));
+
+    [Theory]
+    [InlineData("{}")]
+    [InlineData("[]")]
+    [InlineData("{ \"features\": [ { \"number\": \"a\" } ] }")]
+    [InlineData("{ \"stream\": \"q\" }")]
+    [InlineData("{ \"stream\": \"\", \"features\": [ { \"number\": \"a\" } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ {} ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"number\": \"a\", \"category\": \"b\" } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"number\": \"a\", \"scale\": \"log\" } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"category\": [] } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"category\": [ \"a\", \"a\" ] } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"cycle\": \"time\" } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"cycle\": \"angle\", \"period\": 0 } ] }")]
+    [InlineData("{ \"stream\": \"q\", \"features\": [ { \"history\": \"count\", \"per\": \"card\" } ] }")]
+    public void Definition_Wrong_IsRefusedByBoth(string definition) => AssertRefused(definition);
+
+    [Fact]
+    public void Lists_LongerThanTheirBounds_AreRefusedByBoth()
+    {
+        string fields = string.Join(", ", Enumerable.Range(0, 17).Select(i => $"\"f{i}\""));
+        string features = string.Join(", ", Enumerable.Range(0, 1001).Select(i => $$"""{ "number": "f{{i}}" }"""));
+        string labels = string.Join(", ", Enumerable.Range(0, 1001).Select(i => $"\"v{i}\": 1"));
+        string windows = string.Join(", ", Enumerable.Range(1, 17).Select(i => $"\"{i}h\""));
+        string steps = string.Join(", ", Enumerable.Range(1, 65).Select(i => $"{i}e-3"));
+
+        AssertRefused($$"""{ "stream": "q", "features": [ {{features}} ] }""");
+        AssertRefused($$"""{ "stream": "q", "features": [ { "category": [ {{fields}} ] } ] }""");
+        AssertRefused(Definitions.With($"\"record\": {{ \"labelValues\": {{ {labels} }} }}"));
+        AssertRefused(Definitions.With($"\"health\": {{ \"windows\": [ {windows} ] }}"));
+        AssertRefused(Definitions.With($$"""  "learning": { "bank": [ { "update": "sgd", "step": [ {{steps}} ] } ] } """));
+    }
+
+    private static void AssertRefused(string definition)
+    {
+        Assert.NotEmpty(Definitions.Errors(definition));
+        Assert.False(SchemaFile.Accepts(definition));
+    }
+}
