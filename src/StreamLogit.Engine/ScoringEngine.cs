@@ -35,7 +35,7 @@ public sealed class ScoringEngine
         Definition = definition;
         Schema = new RecordSchema(definition);
         _encoder = new FeatureEncoder(definition, Schema);
-        _bank = new Bank(definition.Learning, _encoder.SlotCount);
+        _bank = new Bank(definition.Learning, _encoder.SlotCount, _encoder.FirstDenseSlot);
         _awaiting = new AwaitingStore(_bank.SettingCount, definition.Labels.WaitMicroseconds);
         _health = new HealthLedger(definition.Health);
         _reasons = new ReasonFinder(definition.Features.Length);

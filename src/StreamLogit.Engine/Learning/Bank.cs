@@ -1,3 +1,4 @@
+using System.Buffers.Binary;
 using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Features;
@@ -9,35 +10,42 @@ namespace StreamLogit.Engine.Learning;
 /// <summary>The settings that learn side by side from the same events, and their blend. Allocates nothing when it scores or learns.</summary>
 internal sealed class Bank
 {
+    private const string ClockPart = "learning/clock";
     private readonly SlotBlocks _blocks;
-    private readonly ImmutableArray<LearnerGroup> _groups;
+    private readonly LearnerGroup[] _groups;
     private readonly Blend _blend;
+    private readonly BankState _state;
     private readonly int _publishedSetting;
     private readonly double[] _settingWeights;
-    private readonly BankState _state;
+    private WarmStart? _warmStart;
+    private long _lastLabelMicroseconds = long.MinValue;
+    private bool _isChanged = true;
 
-    /// <param name="options">The settings and what of them is published.</param>
-    /// <param name="slotCount">Coefficient slots, the dense and the hashed ones together.</param>
-    public Bank(LearningOptions options, int slotCount) : this(options, slotCount, RowWidth.Widest)
+    /// <summary>A bank without rules that need to know which slots are dense.</summary>
+    public Bank(LearningOptions options, int slotCount) : this(options, slotCount, slotCount)
     {
     }
 
     /// <param name="options">The settings and what of them is published.</param>
-    /// <param name="slotCount">Coefficient slots, the dense and the hashed ones together.</param>
+    /// <param name="slotCount">Coefficient slots, the hashed and the dense ones together.</param>
+    /// <param name="firstDenseSlot">Where the dense slots start, which are the last ones.</param>
     /// <param name="widestLanes">The widest lanes to use: 1, 2, 4 or 8. Changes no bit.</param>
-    internal Bank(LearningOptions options, int slotCount, int widestLanes)
+    /// <exception cref="ArgumentException">A rule does not suit the slots, or there are too many slots for the settings.</exception>
+    public Bank(LearningOptions options, int slotCount, int firstDenseSlot, int widestLanes = RowWidth.Widest)
     {
         Names = [.. options.Bank.Select(setting => setting.Name)];
         _publishedSetting = options.PublishedSetting is null ? -1 : Names.IndexOf(options.PublishedSetting);
         if (options.PublishedSetting is not null && _publishedSetting < 0)
             throw new ArgumentException($"The published setting '{options.PublishedSetting}' is not in the bank.", nameof(options));
         _blocks = new SlotBlocks(slotCount, LearnerGroup.DoublesPerSlot(options.Bank));
-        _groups = LearnerGroup.Create(options.Bank, _blocks, widestLanes);
+        ImmutableArray<LearnerGroup> groups = LearnerGroup.Create(options.Bank, _blocks, firstDenseSlot, widestLanes);
+        _groups = [.. groups];
         double intercept = Elementary.Log(options.StartProbability) - Elementary.Log(1 - options.StartProbability);
-        foreach (LearnerGroup group in _groups) group.Learner.StartAt(intercept);
+        foreach (LearnerGroup group in groups)
+            for (int lane = 0; lane < group.Settings.Length; lane++) group.Learner.StartIntercept(lane, intercept);
         _blend = Blend.Create(SettingCount, options.SwitchRate, widestLanes);
         _settingWeights = new double[SettingCount];
-        _state = new BankState(Names, _blocks, _groups, _blend);
+        _state = new BankState(Names, firstDenseSlot, _blocks, groups, _blend);
     }
 
     /// <summary>How many settings.</summary>
@@ -46,7 +54,20 @@ internal sealed class Bank
     /// <summary>Their names, in the bank's order.</summary>
     public ImmutableArray<string> Names { get; }
 
-    /// <summary>Scores an event with every setting.</summary>
+    /// <summary>
+    /// Lets every setting start from coefficients that were fitted before. They stay where they are; what is learned is added to them, and
+    /// what pulls coefficients towards 0 pulls them back to these. Only on a bank that has learned nothing.
+    /// </summary>
+    /// <param name="intercept">The intercept.</param>
+    /// <param name="coefficients">The coefficient of every slot.</param>
+    public void StartFrom(double intercept, ReadOnlySpan<double> coefficients)
+    {
+        ArgumentOutOfRangeException.ThrowIfNotEqual(coefficients.Length, _blocks.SlotCount);
+        _warmStart = new WarmStart(intercept, coefficients);
+        _isChanged = true;
+    }
+
+    /// <summary>Scores an event with every setting. The coefficients are those after the last label, however long ago it was.</summary>
     /// <param name="x">The event.</param>
     /// <param name="timeMicroseconds">The stream's clock.</param>
     /// <param name="logOdds">Receives the log-odds of every setting.</param>
@@ -55,9 +76,10 @@ internal sealed class Bank
     public double Score(in EncodedVector x, long timeMicroseconds, Span<double> logOdds)
     {
         _blocks.Check(x.Slots);
+        double offset = _warmStart?.LogOdds(in x) ?? 0;
         foreach (LearnerGroup group in _groups)
         {
-            group.Learner.Score(in x);
+            group.Learner.Score(in x, offset);
             group.Scatter(group.Learner.LogOdds, logOdds);
         }
         if (_publishedSetting >= 0) return logOdds[_publishedSetting];
@@ -76,10 +98,21 @@ internal sealed class Bank
         in EncodedVector x, ReadOnlySpan<double> scoredLogOdds, bool isFresh, int label, double weight, long timeMicroseconds)
     {
         _blocks.Mark(x.Slots);
-        _state.MarkChanged();
+        _isChanged = true;
         _blend.Learn(scoredLogOdds[..SettingCount], label, weight);
+        double elapsed = AdvanceClock(timeMicroseconds);
+        double offset = _warmStart?.LogOdds(in x) ?? 0;
         foreach (LearnerGroup group in _groups)
-            group.Learner.Learn(in x, label, weight, isFresh ? group.Gather(_blend.MissProbability) : default);
+        {
+            group.Learner.Learn(in x, new Lesson
+            {
+                Label = label,
+                Weight = weight,
+                ElapsedMicroseconds = elapsed,
+                Offset = offset,
+                MissProbability = isFresh ? group.Gather(_blend.MissProbability) : default,
+            });
+        }
     }
 
     /// <summary>The coefficient of each entry of x in what is published: that of the published setting, or the mean weighted as the blend.</summary>
@@ -91,13 +124,17 @@ internal sealed class Bank
         coefficients[..x.Slots.Length].Clear();
         foreach (LearnerGroup group in _groups)
             group.Learner.AddCoefficients(in x, group.Gather(_settingWeights), coefficients);
+        _warmStart?.AddTo(in x, coefficients);
     }
 
     /// <summary>The intercept of a setting.</summary>
-    public double Intercept(int setting) => LearnerGroup.Find(_groups, setting, out int lane).Intercept(lane);
+    public double Intercept(int setting) => Find(setting, out int lane).Intercept(lane) + (_warmStart?.Intercept ?? 0);
 
     /// <summary>The coefficient of a slot in a setting.</summary>
-    public double Coefficient(int slot, int setting) => LearnerGroup.Find(_groups, setting, out int lane).Coefficient(slot, lane);
+    public double Coefficient(int slot, int setting) => Find(setting, out int lane).Coefficient(slot, lane) + (_warmStart?[slot] ?? 0);
+
+    /// <summary>How many coefficients of a setting, without the intercept, are not 0, or not those of the warm start.</summary>
+    public long NonZeroCount(int setting) => Find(setting, out int lane).NonZeroCount(lane);
 
     /// <summary>The weight of a setting in the blend, 0 to 1.</summary>
     public double BlendWeight(int setting)
@@ -113,10 +150,52 @@ internal sealed class Bank
     /// <summary>The sum of weight * (p - y)^2 of a setting over the labels learned.</summary>
     public double BrierTotal(int setting) => _blend.BrierTotal(setting);
 
-    /// <summary>Puts what changed since the last call into the parts <c>learning/...</c>.</summary>
-    public void Save(StateBlocks changes) => _state.Save(changes);
+    /// <summary>The sum of the weights of the labels that a setting learned; a setting that came later than others has less.</summary>
+    public double WeightTotal(int setting) => _blend.WeightTotal(setting);
 
-    /// <summary>Takes up a saved state. Only on a bank that has learned nothing.</summary>
-    /// <exception cref="InvalidStateException">The state is damaged or belongs to another bank.</exception>
-    public void Load(StateBlocks state) => _state.Load(state);
+    /// <summary>Puts what changed since the last call into the parts <c>learning/...</c>.</summary>
+    public void Save(StateBlocks changes)
+    {
+        if (!_isChanged) return;
+        Span<byte> clock = stackalloc byte[sizeof(long)];
+        BinaryPrimitives.WriteInt64LittleEndian(clock, _lastLabelMicroseconds);
+        changes.Put(ClockPart, 0, clock);
+        _warmStart?.Save(changes);
+        _state.Save(changes);
+        _isChanged = false;
+    }
+
+    /// <summary>
+    /// Takes up a saved state. Only on a bank that has learned nothing. Settings that the state has too go on where they were; the others start
+    /// from the coefficients of the saved blend and get an equal share of its weight.
+    /// </summary>
+    /// <exception cref="InvalidStateException">The state is damaged, or is about other slots.</exception>
+    public BankChange Load(StateBlocks state)
+    {
+        byte[]? clock = state.Find(ClockPart, 0);
+        if (clock is not { Length: sizeof(long) }) throw new InvalidStateException("The state has no clock of the bank.");
+        _lastLabelMicroseconds = BinaryPrimitives.ReadInt64LittleEndian(clock);
+        _warmStart = WarmStart.Load(state, _blocks.SlotCount);
+        BankChange change = _state.Load(state);
+        _isChanged = !_state.IsLayoutSaved;
+        return change;
+    }
+
+    private ILearner Find(int setting, out int lane)
+    {
+        foreach (LearnerGroup group in _groups)
+        {
+            lane = group.Settings.IndexOf(setting);
+            if (lane >= 0) return group.Learner;
+        }
+        throw new ArgumentOutOfRangeException(nameof(setting));
+    }
+
+    private double AdvanceClock(long timeMicroseconds)
+    {
+        long last = _lastLabelMicroseconds;
+        if (timeMicroseconds <= last) return 0;
+        _lastLabelMicroseconds = timeMicroseconds;
+        return last == long.MinValue ? 0 : (double)timeMicroseconds - last;
+    }
 }

@@ -8,105 +8,94 @@ namespace StreamLogit.Engine.Learning;
 /// Saves a bank and loads it: <c>learning/bank</c> says how its rows lie, <c>learning/settings</c> has a block for every setting,
 /// <c>learning/coefficients</c> a block for every run of slots. Numbers are little-endian doubles.
 /// </summary>
-internal sealed class BankState(ImmutableArray<string> names, SlotBlocks blocks, ImmutableArray<LearnerGroup> groups, Blend blend)
+internal sealed class BankState
 {
-    private const string BankPart = "learning/bank";
-    private const string SettingsPart = "learning/settings";
-    private const string CoefficientsPart = "learning/coefficients";
-    private const int FormatVersion = 1;
+    public const string BankPart = "learning/bank";
+    public const string SettingsPart = "learning/settings";
+    public const string CoefficientsPart = "learning/coefficients";
 
-    private readonly int _doublesPerSlot = groups.Sum(group => group.Learner.DoublesPerSlot);
-    private bool _isChanged = true;
-    private bool _isLayoutSaved;
+    private readonly SlotBlocks _blocks;
+    private readonly ImmutableArray<LearnerGroup> _groups;
+    private readonly Blend _blend;
+    private readonly BankLayout _layout;
+    /// <summary>Blocks of an earlier layout that the next save must take away.</summary>
+    private ImmutableArray<(string Part, long Number)> _outdated = [];
 
-    /// <summary>Notes that something was learned.</summary>
-    public void MarkChanged() => _isChanged = true;
-
-    public void Save(StateBlocks changes)
+    public BankState(ImmutableArray<string> names, int firstDenseSlot, SlotBlocks blocks, ImmutableArray<LearnerGroup> groups, Blend blend)
     {
-        if (!_isChanged) return;
-        if (!_isLayoutSaved) changes.Put(BankPart, 0, Layout());
-        SaveSettings(changes);
-        double[] numbers = new double[_doublesPerSlot * blocks.SlotsPerBlock];
-        for (int block = 0; block < blocks.Count; block++)
+        _blocks = blocks;
+        _groups = groups;
+        _blend = blend;
+        _layout = new BankLayout
         {
-            if (!blocks.IsChanged(block)) continue;
-            Span<double> rest = numbers;
-            foreach (LearnerGroup group in groups)
-            {
-                Span<double> rows = group.Learner.Rows(block * blocks.SlotsPerBlock, blocks.SlotsPerBlock);
-                rows.CopyTo(rest);
-                rest = rest[rows.Length..];
-            }
-            changes.Put(CoefficientsPart, block, MemoryMarshal.AsBytes<double>(numbers));
-            blocks.MarkSaved(block);
-        }
-        _isChanged = false;
-        _isLayoutSaved = true;
+            SlotCount = blocks.SlotCount,
+            FirstDenseSlot = firstDenseSlot,
+            SlotsPerBlock = blocks.SlotsPerBlock,
+            KeepsLosses = blend.KeepsLosses,
+            Groups = [.. groups.Select(group => new GroupLayout(
+                group.Rule, group.Learner.RowLength, group.Learner.RowsPerSlot, group.Learner.NumbersPerSetting,
+                [.. group.Settings.Select(place => (place, names[place]))]))],
+        };
     }
 
-    public void Load(StateBlocks state)
+    /// <summary>Whether the saved state lies as this bank does. If not, the next save replaces all of it.</summary>
+    public bool IsLayoutSaved { get; private set; }
+
+    /// <summary>Puts what changed. Only to be called if something did.</summary>
+    public void Save(StateBlocks changes)
     {
-        byte[] layout = state.Find(BankPart, 0) ?? throw new InvalidStateException("The state has no bank.");
-        if (!layout.AsSpan().SequenceEqual(Layout())) throw new InvalidStateException("The state belongs to another bank of settings.");
-        LoadSettings(state);
-        foreach ((long block, byte[] bytes) in state.Read(CoefficientsPart))
-        {
-            if (block < 0 || block >= blocks.Count || bytes.Length != _doublesPerSlot * blocks.SlotsPerBlock * sizeof(double))
-                throw new InvalidStateException("A block of coefficients is damaged.");
-            ReadOnlySpan<double> rest = MemoryMarshal.Cast<byte, double>(bytes);
-            foreach (LearnerGroup group in groups)
-            {
-                Span<double> rows = group.Learner.Rows((int)block * blocks.SlotsPerBlock, blocks.SlotsPerBlock);
-                rest[..rows.Length].CopyTo(rows);
-                rest = rest[rows.Length..];
-            }
-            blocks.MarkSaved((int)block);
-        }
-        _isChanged = false;
-        _isLayoutSaved = true;
+        foreach ((string part, long number) in _outdated) changes.Remove(part, number);
+        _outdated = [];
+        if (!IsLayoutSaved) changes.Put(BankPart, 0, _layout.ToBytes());
+        IsLayoutSaved = true;
+        SaveSettings(changes);
+        SaveCoefficients(changes);
+    }
+
+    /// <summary>Takes up a state, of this bank or of another one over the same slots.</summary>
+    /// <exception cref="InvalidStateException">The state is damaged or is about other slots.</exception>
+    public BankChange Load(StateBlocks state)
+    {
+        byte[] bytes = state.Find(BankPart, 0) ?? throw new InvalidStateException("The state has no bank.");
+        var saved = new SavedBank(BankLayout.Read(bytes), state);
+        if (saved.Layout.SlotCount != _layout.SlotCount || saved.Layout.FirstDenseSlot != _layout.FirstDenseSlot)
+            throw new InvalidStateException("The state has another number of slots.");
+        BankChange change = new BankTransfer(_layout, _groups, _blocks, _blend).From(saved);
+        IsLayoutSaved = bytes.AsSpan().SequenceEqual(_layout.ToBytes());
+        if (IsLayoutSaved) _blocks.MarkAllSaved();
+        else _outdated = [.. saved.BlockNumbers.Select(n => (CoefficientsPart, n)), .. Enumerable.Range(0, saved.Layout.SettingCount).Select(n => (SettingsPart, (long)n))];
+        return change;
     }
 
     private void SaveSettings(StateBlocks changes)
     {
-        foreach (LearnerGroup group in groups)
+        foreach (LearnerGroup group in _groups)
         {
-            double[] numbers = new double[Blend.DoublesPerSetting + group.Learner.DoublesPerSetting];
+            double[] numbers = new double[Blend.NumbersPerSetting + group.Learner.NumbersPerSetting];
             for (int lane = 0; lane < group.Settings.Length; lane++)
             {
-                blend.SaveSetting(group.Settings[lane], numbers);
-                group.Learner.SaveSetting(lane, numbers.AsSpan(Blend.DoublesPerSetting));
+                _blend.SaveSetting(group.Settings[lane], numbers);
+                group.Learner.SaveSetting(lane, numbers.AsSpan(Blend.NumbersPerSetting));
                 changes.Put(SettingsPart, group.Settings[lane], MemoryMarshal.AsBytes<double>(numbers));
             }
         }
     }
 
-    private void LoadSettings(StateBlocks state)
+    private void SaveCoefficients(StateBlocks changes)
     {
-        foreach (LearnerGroup group in groups)
+        double[] numbers = new double[_layout.DoublesPerSlot * _blocks.SlotsPerBlock];
+        for (int block = 0; block < _blocks.Count; block++)
         {
-            for (int lane = 0; lane < group.Settings.Length; lane++)
+            if (!_blocks.IsChanged(block)) continue;
+            Span<double> rest = numbers;
+            foreach (LearnerGroup group in _groups)
             {
-                ReadOnlySpan<double> numbers = MemoryMarshal.Cast<byte, double>(state.Find(SettingsPart, group.Settings[lane]));
-                if (numbers.Length != Blend.DoublesPerSetting + group.Learner.DoublesPerSetting)
-                    throw new InvalidStateException($"The numbers of setting '{names[group.Settings[lane]]}' are damaged.");
-                blend.LoadSetting(group.Settings[lane], numbers);
-                group.Learner.LoadSetting(lane, numbers[Blend.DoublesPerSetting..]);
+                Span<double> rows = group.Learner.Rows(block * _blocks.SlotsPerBlock, _blocks.SlotsPerBlock);
+                rows.CopyTo(rest);
+                rest = rest[rows.Length..];
             }
+            changes.Put(CoefficientsPart, block, MemoryMarshal.AsBytes<double>(numbers));
+            _blocks.MarkSaved(block);
         }
-    }
-
-    private byte[] Layout()
-    {
-        using var stream = new MemoryStream();
-        using (var writer = new BinaryWriter(stream))
-        {
-            writer.Write(FormatVersion);
-            writer.Write(blocks.SlotCount);
-            writer.Write(blocks.SlotsPerBlock);
-            writer.Write(names.Length);
-            foreach (string name in names) writer.Write(name);
-        }
-        return stream.ToArray();
     }
 }

@@ -35,14 +35,25 @@ internal abstract class Blend
     /// <summary>The weights, which sum to 1.</summary>
     public abstract void Weights(Span<double> weights);
 
+    /// <summary>Whether the weights are kept as losses (switch rate 0), or as they are.</summary>
+    public abstract bool KeepsLosses { get; }
+
+    /// <summary>Sets the weights by their logarithms, up to a common summand.</summary>
+    public abstract void SetLogWeights(ReadOnlySpan<double> logWeights);
+
     public abstract double LogLossTotal(int setting);
 
     public abstract double BrierTotal(int setting);
 
-    /// <summary>Doubles that a setting has in a saved state.</summary>
-    public const int DoublesPerSetting = 4;
+    public abstract double WeightTotal(int setting);
+
+    /// <summary>Numbers that a setting has in a saved state: its weight or, if losses are kept, its loss above the best setting, then the totals.</summary>
+    public const int NumbersPerSetting = 4;
 
     public abstract void SaveSetting(int setting, Span<double> numbers);
 
     public abstract void LoadSetting(int setting, ReadOnlySpan<double> numbers);
+
+    /// <summary>ln of the weight in the saved numbers of a setting, up to a common summand.</summary>
+    public static double LogWeightOf(ReadOnlySpan<double> numbers, bool keepsLosses) => keepsLosses ? -numbers[0] : Elementary.Log(numbers[0]);
 }

@@ -18,6 +18,7 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
     private readonly double[] _lossAboveBest;
     private readonly double[] _logLossTotal;
     private readonly double[] _brierTotal;
+    private readonly double[] _weightTotal;
 
     // Of the log-odds in _logOdds: e^-|z| and the probabilities of the labels 1 and 0, as long as _isCached.
     private readonly double[] _logOdds;
@@ -38,16 +39,19 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         _lossAboveBest = new double[rowLength];
         _logLossTotal = new double[rowLength];
         _brierTotal = new double[rowLength];
+        _weightTotal = new double[rowLength];
         _logOdds = new double[rowLength];
         _exp = new double[rowLength];
         _probability = new double[rowLength];
         _complement = new double[rowLength];
         _loss = new double[rowLength];
         _miss = _complement;
-        Array.Fill(_weight, 1.0 / settingCount, 0, settingCount);
+        Array.Fill(_weight, KeepsLosses ? 1 : 1.0 / settingCount, 0, settingCount);
         Array.Fill(_share, switchRate / settingCount, 0, settingCount);
         Array.Fill(_lossAboveBest, NoSetting, settingCount, rowLength - settingCount);
     }
+
+    public override bool KeepsLosses => _switchRate == 0;
 
     public override ReadOnlySpan<double> MissProbability => _miss;
 
@@ -74,9 +78,10 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
             loss.Store(ref _loss[0], lane);
             (T.Load(in _logLossTotal[0], lane) + loss).Store(ref _logLossTotal[0], lane);
             (T.Load(in _brierTotal[0], lane) + T.Of(weight) * (miss * miss)).Store(ref _brierTotal[0], lane);
+            (T.Load(in _weightTotal[0], lane) + T.Of(weight)).Store(ref _weightTotal[0], lane);
         }
         if (_settingCount == 1) return;
-        if (_switchRate == 0) MoveExponentialWeights();
+        if (KeepsLosses) MoveExponentialWeights();
         else MoveFixedShare(hit, weight);
     }
 
@@ -87,24 +92,41 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         for (int setting = 0; setting < _settingCount; setting++) weights[setting] = _weight[setting] / total;
     }
 
+    public override void SetLogWeights(ReadOnlySpan<double> logWeights)
+    {
+        double greatest = double.NegativeInfinity, total = 0;
+        foreach (double logWeight in logWeights) greatest = Math.Max(greatest, logWeight);
+        for (int setting = 0; setting < _settingCount; setting++)
+        {
+            _lossAboveBest[setting] = greatest - logWeights[setting];
+            _weight[setting] = Elementary.Exp(-_lossAboveBest[setting]);
+            total += _weight[setting];
+        }
+        if (KeepsLosses) return;
+        for (int setting = 0; setting < _settingCount; setting++) _weight[setting] /= total;
+    }
+
     public override double LogLossTotal(int setting) => _logLossTotal[setting];
 
     public override double BrierTotal(int setting) => _brierTotal[setting];
 
+    public override double WeightTotal(int setting) => _weightTotal[setting];
+
     public override void SaveSetting(int setting, Span<double> numbers)
     {
-        numbers[0] = _weight[setting];
-        numbers[1] = _lossAboveBest[setting];
-        numbers[2] = _logLossTotal[setting];
-        numbers[3] = _brierTotal[setting];
+        numbers[0] = KeepsLosses ? _lossAboveBest[setting] : _weight[setting];
+        numbers[1] = _logLossTotal[setting];
+        numbers[2] = _brierTotal[setting];
+        numbers[3] = _weightTotal[setting];
     }
 
     public override void LoadSetting(int setting, ReadOnlySpan<double> numbers)
     {
-        _weight[setting] = numbers[0];
-        _lossAboveBest[setting] = numbers[1];
-        _logLossTotal[setting] = numbers[2];
-        _brierTotal[setting] = numbers[3];
+        if (KeepsLosses) _lossAboveBest[setting] = numbers[0];
+        _weight[setting] = KeepsLosses ? Elementary.Exp(-numbers[0]) : numbers[0];
+        _logLossTotal[setting] = numbers[1];
+        _brierTotal[setting] = numbers[2];
+        _weightTotal[setting] = numbers[3];
     }
 
     private void ComputeProbabilities(ReadOnlySpan<double> settingLogOdds)
@@ -177,7 +199,7 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
 
     private double LogOfTerm(int setting, int sign)
     {
-        double logWeight = _switchRate == 0 ? -_lossAboveBest[setting] : Elementary.Log(_weight[setting]);
+        double logWeight = KeepsLosses ? -_lossAboveBest[setting] : Elementary.Log(_weight[setting]);
         return logWeight - Elementary.Softplus(-sign * _logOdds[setting]);
     }
 }

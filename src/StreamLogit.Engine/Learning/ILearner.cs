@@ -14,20 +14,13 @@ internal interface ILearner
     /// <summary>The log-odds that <see cref="Score"/> computed last, one for every place.</summary>
     ReadOnlySpan<double> LogOdds { get; }
 
-    /// <summary>Puts the intercept of every setting. Only before anything is learned.</summary>
-    void StartAt(double intercept);
-
     /// <summary>Computes the log-odds of every setting. The slots must have been checked.</summary>
-    void Score(in EncodedVector x);
+    /// <param name="x">The event.</param>
+    /// <param name="offset">Log-odds that are added for every setting.</param>
+    void Score(in EncodedVector x, double offset);
 
     /// <summary>Teaches every setting one label. The slots must have been marked.</summary>
-    /// <param name="x">The event.</param>
-    /// <param name="label">0 or 1.</param>
-    /// <param name="weight">Its importance, 0 or more.</param>
-    /// <param name="missProbability">
-    /// What every setting gives at present to the label that was not the case; empty when that is not known and must be computed.
-    /// </param>
-    void Learn(in EncodedVector x, int label, double weight, ReadOnlySpan<double> missProbability);
+    void Learn(in EncodedVector x, in Lesson lesson);
 
     /// <summary>Adds to each place of <paramref name="coefficients"/> the coefficients of that entry of x, weighted by setting.</summary>
     void AddCoefficients(in EncodedVector x, ReadOnlySpan<double> settingWeights, Span<double> coefficients);
@@ -36,14 +29,23 @@ internal interface ILearner
 
     double Coefficient(int slot, int lane);
 
-    /// <summary>Doubles that a slot takes.</summary>
-    int DoublesPerSlot { get; }
+    /// <summary>How many coefficients are not 0, without the intercept.</summary>
+    long NonZeroCount(int lane);
+
+    /// <summary>Lets a setting that has learned nothing start from these coefficients.</summary>
+    void StartIntercept(int lane, double intercept);
+
+    /// <summary>Lets a setting that has learned nothing start from these coefficients. The slot must have been marked.</summary>
+    void StartCoefficient(int slot, int lane, double coefficient);
+
+    /// <summary>Rows of settings that a slot has; the first holds the coefficients, before the scale of <see cref="SaveSetting"/>.</summary>
+    int RowsPerSlot { get; }
 
     /// <summary>The rows of some slots, for saving and loading.</summary>
     Span<double> Rows(int slot, int count);
 
-    /// <summary>Doubles that a setting has besides its rows.</summary>
-    int DoublesPerSetting { get; }
+    /// <summary>Numbers that a setting has besides its rows: the intercept first, then the scale of its coefficients, then what the rule needs.</summary>
+    int NumbersPerSetting { get; }
 
     void SaveSetting(int lane, Span<double> numbers);
 

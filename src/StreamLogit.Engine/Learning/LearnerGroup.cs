@@ -11,8 +11,9 @@ internal sealed class LearnerGroup
     private readonly bool _isWholeBank;
     private readonly double[] _row;
 
-    private LearnerGroup(ILearner learner, ImmutableArray<int> settings, int bankSize)
+    private LearnerGroup(string rule, ILearner learner, ImmutableArray<int> settings, int bankSize)
     {
+        Rule = rule;
         Learner = learner;
         _settings = settings;
         _isWholeBank = settings.Length == bankSize;
@@ -24,33 +25,32 @@ internal sealed class LearnerGroup
     /// <summary>The places of this group's settings in the bank.</summary>
     public ImmutableArray<int> Settings => _settings;
 
+    /// <summary>The name of the rule.</summary>
+    public string Rule { get; }
+
     /// <summary>One group for every rule that occurs, in the order of the first setting of each.</summary>
-    public static ImmutableArray<LearnerGroup> Create(ImmutableArray<SettingOptions> bank, SlotBlocks blocks, int widestLanes)
+    public static ImmutableArray<LearnerGroup> Create(
+        ImmutableArray<SettingOptions> bank, SlotBlocks blocks, int firstDenseSlot, int widestLanes)
     {
         var groups = ImmutableArray.CreateBuilder<LearnerGroup>();
         foreach (var rule in bank.Select((setting, index) => (setting, index)).GroupBy(s => s.setting.GetType()))
         {
-            int lanes = RowWidth.Lanes(RowWidth.Padded(rule.Count()), widestLanes);
             SettingOptions[] settings = [.. rule.Select(s => s.setting)];
-            groups.Add(new LearnerGroup(CreateLearner(settings, blocks, lanes), [.. rule.Select(s => s.index)], bank.Length));
+            ILearner learner = RowWidth.Lanes(RowWidth.Padded(settings.Length), widestLanes) switch
+            {
+                8 => CreateLearner<Lanes8>(settings, blocks, firstDenseSlot),
+                4 => CreateLearner<Lanes4>(settings, blocks, firstDenseSlot),
+                2 => CreateLearner<Lanes2>(settings, blocks, firstDenseSlot),
+                _ => CreateLearner<Lanes1>(settings, blocks, firstDenseSlot),
+            };
+            groups.Add(new LearnerGroup(rule.Key.Name, learner, [.. rule.Select(s => s.index)], bank.Length));
         }
         return groups.ToImmutable();
     }
 
     /// <summary>What a slot of that bank takes.</summary>
     public static int DoublesPerSlot(ImmutableArray<SettingOptions> bank) =>
-        bank.GroupBy(setting => setting.GetType()).Sum(rule => RowWidth.Padded(rule.Count()));
-
-    /// <summary>The learner of a setting of the bank, and its lane there.</summary>
-    public static ILearner Find(ImmutableArray<LearnerGroup> groups, int setting, out int lane)
-    {
-        foreach (LearnerGroup group in groups)
-        {
-            lane = group._settings.IndexOf(setting);
-            if (lane >= 0) return group.Learner;
-        }
-        throw new ArgumentOutOfRangeException(nameof(setting));
-    }
+        bank.GroupBy(setting => setting.GetType()).Sum(rule => RowWidth.Padded(rule.Count()) * RowsPerSlot(rule.First()));
 
     /// <summary>Copies the group's row to the places of its settings in the bank.</summary>
     public void Scatter(ReadOnlySpan<double> row, Span<double> bank)
@@ -71,17 +71,21 @@ internal sealed class LearnerGroup
         return _row;
     }
 
-    private static ILearner CreateLearner(SettingOptions[] settings, SlotBlocks blocks, int lanes) => lanes switch
-    {
-        8 => CreateLearner<Lanes8>(settings, blocks),
-        4 => CreateLearner<Lanes4>(settings, blocks),
-        2 => CreateLearner<Lanes2>(settings, blocks),
-        _ => CreateLearner<Lanes1>(settings, blocks),
-    };
-
-    private static SgdLearner<T> CreateLearner<T>(SettingOptions[] settings, SlotBlocks blocks) where T : struct, ILanes<T> => settings[0] switch
+    private static ILearner CreateLearner<T>(SettingOptions[] settings, SlotBlocks blocks, int firstDenseSlot)
+        where T : struct, ILanes<T> => settings[0] switch
     {
         SgdSetting => new SgdLearner<T>([.. settings.Cast<SgdSetting>()], blocks),
+        AdagradSetting => new AdagradLearner<T>([.. settings.Cast<AdagradSetting>()], blocks),
+        FtrlSetting => new FtrlLearner<T>([.. settings.Cast<FtrlSetting>()], blocks),
+        NewtonSetting => new NewtonLearner<T>([.. settings.Cast<NewtonSetting>()], firstDenseSlot, blocks.SlotCount),
         var other => throw new ArgumentException($"No update rule is known for {other.GetType().Name}."),
+    };
+
+    private static int RowsPerSlot(SettingOptions setting) => setting switch
+    {
+        AdagradSetting => AdagradLearner<Lanes1>.SlotRows,
+        FtrlSetting => FtrlLearner<Lanes1>.SlotRows,
+        NewtonSetting => 0,
+        _ => 1,
     };
 }

@@ -15,7 +15,7 @@ internal sealed class SlotBlocks
         SlotCount = slotCount;
 
         // 8 to 16 KiB: large enough for few writes, small enough that a commit writes little that has not changed.
-        while (_shift < 10 && (2L << _shift) * doublesPerSlot * sizeof(double) <= 16 * 1024) _shift++;
+        while (_shift < 10 && (2L << _shift) * Math.Max(doublesPerSlot, 1) * sizeof(double) <= 16 * 1024) _shift++;
         _flags = new byte[((slotCount - 1) >> _shift) + 1];
     }
 
@@ -58,6 +58,12 @@ internal sealed class SlotBlocks
 
     /// <summary>Notes that a block stands in the saved state.</summary>
     public void MarkSaved(int block) => _flags[block] = Touched;
+
+    /// <summary>Notes that every block that was ever written stands in the saved state.</summary>
+    public void MarkAllSaved()
+    {
+        for (int block = 0; block < _flags.Length; block++) _flags[block] &= Touched;
+    }
 
     public bool IsTouched(int block) => _flags[block] != 0;
 

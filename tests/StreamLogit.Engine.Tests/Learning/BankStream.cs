@@ -19,6 +19,9 @@ internal sealed class BankStream
 
     public Bank Bank { get; }
 
+    /// <summary>What every setting gave for the last event.</summary>
+    public IReadOnlyList<double> LogOdds => _logOdds;
+
     /// <summary>The log-loss of what was published, added up with the weights.</summary>
     public double PublishedLoss { get; private set; }
 

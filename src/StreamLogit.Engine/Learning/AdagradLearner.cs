@@ -1,0 +1,93 @@
+using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
+using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Numerics;
+
+namespace StreamLogit.Engine.Learning;
+
+/// <summary>AdaGrad, with or without forgetting, see <see cref="AdagradSetting"/>. A slot has a row of coefficients and one of sums of squares.</summary>
+/// <remarks>Where a slot stands twice in an event, each entry is a gradient of its own.</remarks>
+internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
+{
+    /// <summary>Rows of settings that a slot has.</summary>
+    public const int SlotRows = 2;
+
+    // The delta of the published form: it only keeps 0 / 0 away.
+    private const double SmallestRoot = 1e-8;
+    private const double Ln2 = 0.693147180559945309;
+
+    private readonly double[] _step;
+    private readonly double[] _sumFactor;
+    private readonly double[] _interceptSum;
+    private readonly LazyScale<T> _sumScale;
+    private readonly bool _sumsForget;
+
+    public AdagradLearner(ReadOnlySpan<AdagradSetting> settings, SlotBlocks blocks)
+        : base(ReadOnlySpan<SettingOptions>.CastUp(settings), blocks, SlotRows)
+    {
+        _step = new double[RowLength];
+        _sumFactor = new double[RowLength];
+        _interceptSum = new double[RowLength];
+        _sumScale = new LazyScale<T>(Table, blocks, RowLength, row: 1);
+        Array.Fill(_sumFactor, 1);
+        for (int lane = 0; lane < settings.Length; lane++)
+        {
+            _step[lane] = settings[lane].Step;
+            double halfLife = settings[lane].SumHalfLifeLabels;
+            if (halfLife == 0) continue;
+            _sumFactor[lane] = Elementary.Exp(-Ln2 / halfLife);
+            _sumsForget = true;
+        }
+    }
+
+    public override int NumbersPerSetting => 4;
+
+    public override void Learn(in EncodedVector x, in Lesson lesson)
+    {
+        if (lesson.MissProbability.IsEmpty) Score(in x, lesson.Offset);
+        ref double table = ref Table.First;
+        ref int slots = ref MemoryMarshal.GetReference(x.Slots);
+        ref double values = ref MemoryMarshal.GetReference(x.Values);
+        int count = x.Slots.Length;
+        nuint length = (nuint)RowLength;
+        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        {
+            // The negative gradient of the intercept; that of a coefficient is x times as much.
+            T gradient = T.Of(lesson.SignedWeight) * MissProbability(in lesson, lane);
+            T step = T.Load(in _step[0], lane);
+            T sumFactor = T.Load(in _sumFactor[0], lane);
+
+            T sum = T.Load(in _interceptSum[0], lane) * sumFactor + gradient * gradient;
+            sum.Store(ref _interceptSum[0], lane);
+            (T.Load(in Intercepts[0], lane) + step * gradient / (T.Of(SmallestRoot) + T.Sqrt(sum))).Store(ref Intercepts[0], lane);
+
+            T scale = Forgetting.IsNeeded ? Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds)) : T.Of(1);
+            T sumScale = _sumsForget ? _sumScale.Multiply(lane, sumFactor) : T.Of(1);
+            T scaledStep = step / scale;
+            for (int i = 0; i < count; i++)
+            {
+                nuint place = (nuint)(uint)Unsafe.Add(ref slots, i) * (SlotRows * length) + lane;
+                T g = gradient * T.Of(Unsafe.Add(ref values, i));
+                T row = T.Load(in table, place + length) + g * g / sumScale;
+                row.Store(ref table, place + length);
+                T root = T.Of(SmallestRoot) + T.Sqrt(sumScale * row);
+                (T.Load(in table, place) + scaledStep * g / root).Store(ref table, place);
+            }
+        }
+    }
+
+    public override void SaveSetting(int lane, Span<double> numbers)
+    {
+        base.SaveSetting(lane, numbers);
+        numbers[2] = _interceptSum[lane];
+        numbers[3] = _sumScale[lane];
+    }
+
+    public override void LoadSetting(int lane, ReadOnlySpan<double> numbers)
+    {
+        base.LoadSetting(lane, numbers);
+        _interceptSum[lane] = numbers[2];
+        _sumScale[lane] = numbers[3];
+    }
+}

@@ -1,0 +1,135 @@
+using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
+using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Numerics;
+
+namespace StreamLogit.Engine.Learning;
+
+/// <summary>FTRL-Proximal, see <see cref="FtrlSetting"/>. A slot has rows of coefficients w, of z and of n.</summary>
+/// <remarks>
+/// A setting that forgets has its coefficients pulled by the common scale; z then follows from w wherever w is not 0, by the definition of w.
+/// Where a slot stands twice in an event, each entry is a gradient of its own.
+/// </remarks>
+internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
+{
+    /// <summary>Rows of settings that a slot has.</summary>
+    public const int SlotRows = 3;
+
+    private readonly double[] _step;
+    private readonly double[] _beta;
+    private readonly double[] _l1;
+    private readonly double[] _l2;
+    private readonly double[] _interceptZ;
+    private readonly double[] _interceptN;
+
+    public FtrlLearner(ReadOnlySpan<FtrlSetting> settings, SlotBlocks blocks)
+        : base(ReadOnlySpan<SettingOptions>.CastUp(settings), blocks, SlotRows)
+    {
+        _step = new double[RowLength];
+        _beta = new double[RowLength];
+        _l1 = new double[RowLength];
+        _l2 = new double[RowLength];
+        _interceptZ = new double[RowLength];
+        _interceptN = new double[RowLength];
+        Array.Fill(_step, 1);
+        Array.Fill(_beta, 1);
+        for (int lane = 0; lane < settings.Length; lane++)
+            (_step[lane], _beta[lane], _l1[lane], _l2[lane]) = settings[lane];
+    }
+
+    public override int NumbersPerSetting => 4;
+
+    public override void Learn(in EncodedVector x, in Lesson lesson)
+    {
+        if (lesson.MissProbability.IsEmpty) Score(in x, lesson.Offset);
+        ref double table = ref Table.First;
+        ref int slots = ref MemoryMarshal.GetReference(x.Slots);
+        ref double values = ref MemoryMarshal.GetReference(x.Values);
+        int count = x.Slots.Length;
+        nuint length = (nuint)RowLength;
+        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        {
+            var rule = new Rule(T.Load(in _step[0], lane), T.Load(in _beta[0], lane), T.Load(in _l1[0], lane), T.Load(in _l2[0], lane));
+
+            // The gradient of the intercept; that of a coefficient is x times as much.
+            T gradient = T.Of(-lesson.SignedWeight) * MissProbability(in lesson, lane);
+            LearnIntercept(lane, rule, gradient);
+            T scale = Forgetting.IsNeeded ? Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds)) : T.Of(1);
+            for (int i = 0; i < count; i++)
+            {
+                nuint place = (nuint)(uint)Unsafe.Add(ref slots, i) * (SlotRows * length) + lane;
+                T w = scale * T.Load(in table, place);
+                T z = T.Load(in table, place + length);
+                T n = T.Load(in table, place + 2 * length);
+                if (Forgetting.IsNeeded) z = T.Select(Forgetting.Mask(lane) & T.Greater(T.Abs(w), T.Of(0)), rule.ZOf(w, n), z);
+                w = rule.Move(ref z, ref n, w, gradient * T.Of(Unsafe.Add(ref values, i)));
+                (w / scale).Store(ref table, place);
+                z.Store(ref table, place + length);
+                n.Store(ref table, place + 2 * length);
+            }
+        }
+    }
+
+    public override void StartIntercept(int lane, double intercept)
+    {
+        base.StartIntercept(lane, intercept);
+        _interceptZ[lane] = -intercept * (_beta[lane] / _step[lane]);
+    }
+
+    public override void StartCoefficient(int slot, int lane, double coefficient)
+    {
+        base.StartCoefficient(slot, lane, coefficient);
+        Table.Rows(slot, 1)[RowLength + lane] =
+            -coefficient * (_beta[lane] / _step[lane] + _l2[lane]) - Math.Sign(coefficient) * _l1[lane];
+    }
+
+    public override void SaveSetting(int lane, Span<double> numbers)
+    {
+        base.SaveSetting(lane, numbers);
+        numbers[2] = _interceptZ[lane];
+        numbers[3] = _interceptN[lane];
+    }
+
+    public override void LoadSetting(int lane, ReadOnlySpan<double> numbers)
+    {
+        base.LoadSetting(lane, numbers);
+        _interceptZ[lane] = numbers[2];
+        _interceptN[lane] = numbers[3];
+    }
+
+    private void LearnIntercept(nuint lane, Rule rule, T gradient)
+    {
+        T z = T.Load(in _interceptZ[0], lane);
+        T n = T.Load(in _interceptN[0], lane);
+        var free = new Rule(rule.Step, rule.Beta, T.Of(0), T.Of(0));
+        free.Move(ref z, ref n, T.Load(in Intercepts[0], lane), gradient).Store(ref Intercepts[0], lane);
+        z.Store(ref _interceptZ[0], lane);
+        n.Store(ref _interceptN[0], lane);
+    }
+
+    private readonly struct Rule(T step, T beta, T l1, T l2)
+    {
+        public readonly T Step = step;
+        public readonly T Beta = beta;
+
+        /// <summary>Takes in a gradient and returns the new coefficient.</summary>
+        [MethodImpl(MethodImplOptions.AggressiveInlining)]
+        public T Move(ref T z, ref T n, T w, T g)
+        {
+            T sum = n + g * g;
+            T root = T.Sqrt(sum);
+            z = z + g - (root - T.Sqrt(n)) / Step * w;
+            n = sum;
+            T penalty = T.Select(T.Greater(z, T.Of(0)), l1, T.Of(0) - l1);
+            return T.Select(T.Greater(T.Abs(z), l1), (penalty - z) / Curvature(root), T.Of(0));
+        }
+
+        /// <summary>The z that belongs to a coefficient that is not 0.</summary>
+        [MethodImpl(MethodImplOptions.AggressiveInlining)]
+        public T ZOf(T w, T n) =>
+            T.Select(T.Greater(w, T.Of(0)), T.Of(0) - l1, l1) - w * Curvature(T.Sqrt(n));
+
+        private T Curvature(T rootOfN) => (Beta + rootOfN) / Step + l2;
+    }
+}

@@ -1,0 +1,261 @@
+using System.Runtime.InteropServices;
+using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Numerics;
+
+namespace StreamLogit.Engine.Learning;
+
+/// <summary>
+/// The recursive second-order rule, see <see cref="NewtonSetting"/>. The covariance is kept as P = U D U' with U unit upper triangular and
+/// D diagonal, and updated in that form (Bierman, Factorization Methods for Discrete Sequential Estimation, 1977, chapter V), so that rounding
+/// can never make it indefinite.
+/// </summary>
+/// <remarks>
+/// Coefficient i of the rule is slot FirstDenseSlot + i; the intercept is the last. Each number is a row of settings. Column j of U is stored
+/// above its diagonal, from row j (j - 1) / 2 on. An update takes time and memory in proportion to the square of the coefficients.
+/// </remarks>
+internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
+{
+    private const double PiOver8 = Math.PI / 8;
+
+    // No variance becomes 0, from which nothing could be learned any more.
+    private const double SmallestVariance = 1e-40;
+
+    private readonly int _firstSlot;
+    private readonly int _size;
+    private readonly double[] _priorVariance;
+    private readonly double[] _inverseFactor;
+    private readonly double[] _mean;
+    private readonly double[] _variance;
+    private readonly double[] _upper;
+    private readonly double[] _projection; // U'x
+    private readonly double[] _gain; // Px
+    private readonly double[] _logOdds;
+    private readonly Forgetting<T> _forgetting;
+
+    /// <exception cref="ArgumentException">There are no dense slots, or too many.</exception>
+    public NewtonLearner(ReadOnlySpan<NewtonSetting> settings, int firstDenseSlot, int slotCount)
+    {
+        int dense = slotCount - firstDenseSlot;
+        if (dense is < 1 or > NewtonSetting.MostDenseCoefficients)
+            throw new ArgumentException(
+                $"The update rule newton needs 1 to {NewtonSetting.MostDenseCoefficients} dense coefficients (of numbers and cycles), and there are {dense}.");
+        _firstSlot = firstDenseSlot;
+        _size = dense + 1;
+        RowLength = RowWidth.Padded(settings.Length);
+        _priorVariance = new double[RowLength];
+        _inverseFactor = new double[RowLength];
+        _mean = new double[_size * RowLength];
+        _variance = new double[_size * RowLength];
+        _upper = new double[_size * (_size - 1) / 2 * RowLength];
+        _projection = new double[_size * RowLength];
+        _gain = new double[_size * RowLength];
+        _logOdds = new double[RowLength];
+        _forgetting = new Forgetting<T>(RowLength, ReadOnlySpan<SettingOptions>.CastUp(settings));
+        Array.Fill(_priorVariance, 1);
+        Array.Fill(_inverseFactor, 1);
+        for (int lane = 0; lane < settings.Length; lane++)
+        {
+            _priorVariance[lane] = settings[lane].PriorVariance;
+            _inverseFactor[lane] = 1 / settings[lane].ForgettingFactor;
+        }
+        for (int i = 0; i < _variance.Length; i++) _variance[i] = _priorVariance[i % RowLength];
+    }
+
+    public int RowLength { get; }
+
+    public ReadOnlySpan<double> LogOdds => _logOdds;
+
+    public int RowsPerSlot => 0;
+
+    public int NumbersPerSetting => 2 + 2 * _size - 1 + _size * (_size - 1) / 2;
+
+    public void Score(in EncodedVector x, double offset)
+    {
+        for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
+        {
+            T z = Project(in x, lane, offset, out T variance, out _);
+            (z / T.Sqrt(T.Of(1) + T.Of(PiOver8) * variance)).Store(ref _logOdds[0], lane);
+        }
+    }
+
+    public void Learn(in EncodedVector x, in Lesson lesson)
+    {
+        for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
+        {
+            Forget(lane, lesson.ElapsedMicroseconds);
+            T z = Project(in x, lane, lesson.Offset, out T variance, out int first);
+            T margin = lesson.Label == 1 ? z : T.Of(0) - z;
+            T atMode = margin + MarginMove.ByProximalStep(margin, variance * T.Of(lesson.Weight));
+            T miss = LaneMath.Sigmoid(T.Of(0) - atMode);
+            T precision = T.Of(lesson.Weight) * miss * LaneMath.Sigmoid(atMode);
+            UpdateCovariance(lane, first, precision);
+            MoveMean(lane, T.Of(lesson.SignedWeight) * miss);
+        }
+    }
+
+    public void AddCoefficients(in EncodedVector x, ReadOnlySpan<double> settingWeights, Span<double> coefficients)
+    {
+        for (int i = 0; i < x.Slots.Length; i++)
+        {
+            if (!TryIndex(x.Slots[i], out int index)) continue;
+            coefficients[i] += LaneSum.OfProducts<T>(
+                in MemoryMarshal.GetReference(settingWeights), in _mean[index * RowLength], (nuint)RowLength);
+        }
+    }
+
+    public double Intercept(int lane) => _mean[(_size - 1) * RowLength + lane];
+
+    public double Coefficient(int slot, int lane) => TryIndex(slot, out int index) ? _mean[index * RowLength + lane] : 0;
+
+    public long NonZeroCount(int lane)
+    {
+        long count = 0;
+        for (int i = 0; i < _size - 1; i++)
+            if (_mean[i * RowLength + lane] != 0) count++;
+        return count;
+    }
+
+    public void StartIntercept(int lane, double intercept) => _mean[(_size - 1) * RowLength + lane] = intercept;
+
+    public void StartCoefficient(int slot, int lane, double coefficient)
+    {
+        if (TryIndex(slot, out int index)) _mean[index * RowLength + lane] = coefficient;
+    }
+
+    public Span<double> Rows(int slot, int count) => [];
+
+    public void SaveSetting(int lane, Span<double> numbers)
+    {
+        numbers[0] = Intercept(lane);
+        numbers[1] = 1;
+        numbers = numbers[2..];
+        for (int i = 0; i < _size - 1; i++) numbers[i] = _mean[i * RowLength + lane];
+        numbers = numbers[(_size - 1)..];
+        for (int i = 0; i < _size; i++) numbers[i] = _variance[i * RowLength + lane];
+        numbers = numbers[_size..];
+        for (int i = 0; i < numbers.Length; i++) numbers[i] = _upper[i * RowLength + lane];
+    }
+
+    public void LoadSetting(int lane, ReadOnlySpan<double> numbers)
+    {
+        StartIntercept(lane, numbers[0]);
+        numbers = numbers[2..];
+        for (int i = 0; i < _size - 1; i++) _mean[i * RowLength + lane] = numbers[i];
+        numbers = numbers[(_size - 1)..];
+        for (int i = 0; i < _size; i++) _variance[i * RowLength + lane] = numbers[i];
+        numbers = numbers[_size..];
+        for (int i = 0; i < numbers.Length; i++) _upper[i * RowLength + lane] = numbers[i];
+    }
+
+    private bool TryIndex(int slot, out int index)
+    {
+        index = slot - _firstSlot;
+        return (uint)index < (uint)(_size - 1);
+    }
+
+    private nuint Place(int index, nuint lane) => (nuint)(index * RowLength) + lane;
+
+    private static int Column(int j) => j * (j - 1) / 2;
+
+    // Computes U'x and returns the log-odds with their variance x'Px. Before the first index x and U'x are 0.
+    private T Project(in EncodedVector x, nuint lane, double offset, out T variance, out int first)
+    {
+        int last = _size - 1;
+        first = last;
+        foreach (int slot in x.Slots)
+            if (TryIndex(slot, out int index)) first = Math.Min(first, index);
+        for (int j = first; j < last; j++) T.Of(0).Store(ref _projection[0], Place(j, lane));
+        T.Of(1).Store(ref _projection[0], Place(last, lane));
+
+        T z = T.Load(in _mean[0], Place(last, lane)) + T.Of(offset);
+        for (int entry = 0; entry < x.Slots.Length; entry++)
+        {
+            if (!TryIndex(x.Slots[entry], out int i)) continue;
+            T value = T.Of(x.Values[entry]);
+            z += T.Load(in _mean[0], Place(i, lane)) * value;
+            (T.Load(in _projection[0], Place(i, lane)) + value).Store(ref _projection[0], Place(i, lane));
+            for (int j = i + 1; j < _size; j++)
+            {
+                T sum = T.Load(in _projection[0], Place(j, lane)) + T.Load(in _upper[0], Place(Column(j) + i, lane)) * value;
+                sum.Store(ref _projection[0], Place(j, lane));
+            }
+        }
+
+        variance = T.Of(0);
+        for (int j = first; j < _size; j++)
+        {
+            T f = T.Load(in _projection[0], Place(j, lane));
+            variance += T.Load(in _variance[0], Place(j, lane)) * f * f;
+        }
+        return z;
+    }
+
+    // P^-1 <- P^-1 + precision x x', and into _gain the product of the P before and x.
+    private void UpdateCovariance(nuint lane, int first, T precision)
+    {
+        for (int i = 0; i < first; i++) T.Of(0).Store(ref _gain[0], Place(i, lane));
+        T alpha = T.Of(1);
+        for (int j = first; j < _size; j++)
+        {
+            nuint place = Place(j, lane);
+            T f = T.Load(in _projection[0], place);
+            T variance = T.Load(in _variance[0], place);
+            T v = variance * f;
+            T scaled = precision * f;
+            T nextAlpha = alpha + scaled * v;
+            T reduced = variance * (alpha / nextAlpha);
+            T.Select(T.Greater(reduced, T.Of(SmallestVariance)), reduced, T.Of(SmallestVariance)).Store(ref _variance[0], place);
+            UpdateColumn(lane, j, T.Of(0) - scaled / alpha, v);
+            v.Store(ref _gain[0], place);
+            alpha = nextAlpha;
+        }
+    }
+
+    private void UpdateColumn(nuint lane, int j, T factor, T v)
+    {
+        ref double upper = ref MemoryMarshal.GetArrayDataReference(_upper);
+        ref double gain = ref MemoryMarshal.GetArrayDataReference(_gain);
+        nuint stride = (nuint)RowLength;
+        nuint upperPlace = Place(Column(j), lane);
+        nuint gainPlace = lane;
+        for (int i = 0; i < j; i++, upperPlace += stride, gainPlace += stride)
+        {
+            T u = T.Load(in upper, upperPlace);
+            T b = T.Load(in gain, gainPlace);
+            (u + factor * b).Store(ref upper, upperPlace);
+            (b + u * v).Store(ref gain, gainPlace);
+        }
+    }
+
+    private void MoveMean(nuint lane, T gradient)
+    {
+        for (int i = 0; i < _size; i++)
+        {
+            nuint place = Place(i, lane);
+            (T.Load(in _mean[0], place) + gradient * T.Load(in _gain[0], place)).Store(ref _mean[0], place);
+        }
+    }
+
+    private void Forget(nuint lane, double elapsedMicroseconds)
+    {
+        T inverse = T.Load(in _inverseFactor[0], lane);
+        if (_forgetting.IsNeeded)
+        {
+            T factor = _forgetting.Factor(lane, elapsedMicroseconds);
+            for (int i = 0; i < _size - 1; i++)
+            {
+                nuint place = Place(i, lane);
+                (T.Load(in _mean[0], place) * factor).Store(ref _mean[0], place);
+            }
+            inverse = inverse / factor / factor;
+        }
+        T prior = T.Load(in _priorVariance[0], lane);
+        for (int i = 0; i < _size; i++)
+        {
+            nuint place = Place(i, lane);
+            T variance = T.Load(in _variance[0], place) * inverse;
+            T.Select(T.Greater(variance, prior), prior, variance).Store(ref _variance[0], place);
+        }
+    }
+}
