@@ -1,0 +1,48 @@
+using StreamLogit.Engine.Features;
+
+namespace StreamLogit.Engine.Fitting;
+
+/// <summary>
+/// Labelled sparse rows for <see cref="PenalisedLikelihood"/>, in compact arrays: 4 bytes for an entry of value 1, 12 for any other, and 9 for the row
+/// (17 from the first weight other than 1 on).
+/// </summary>
+public sealed class SparseRows(SparseColumns columns)
+{
+    private readonly List<SparseChunk> _chunks = [];
+
+    /// <summary>The columns, shared with the rows that are fitted together with these.</summary>
+    public SparseColumns Columns { get; } = columns;
+
+    /// <summary>Rows, without those of weight 0.</summary>
+    public long Count { get; private set; }
+
+    internal IReadOnlyList<SparseChunk> Chunks => _chunks;
+
+    /// <summary>Adds a row.</summary>
+    /// <param name="x">Its entries. The values are finite; of a slot that stands there twice the values add up.</param>
+    /// <param name="label">0 or 1.</param>
+    /// <param name="weight">0 or more and finite.</param>
+    /// <exception cref="ArgumentException">A value is out of its range.</exception>
+    public void Add(in EncodedVector x, int label, double weight = 1)
+    {
+        foreach (double value in x.Values)
+            if (!double.IsFinite(value)) throw new ArgumentException("a value is not finite", nameof(x));
+        if (label is not (0 or 1)) throw new ArgumentException("a label is not 0 or 1", nameof(label));
+        if (!(weight >= 0 && double.IsFinite(weight))) throw new ArgumentException("a weight is negative or not finite", nameof(weight));
+        if (weight == 0) return;
+
+        if (_chunks.Count == 0 || _chunks[^1].IsFull)
+        {
+            Trim();
+            _chunks.Add(new SparseChunk());
+        }
+        _chunks[^1].Add(in x, Columns, label, weight);
+        Count++;
+    }
+
+    /// <summary>Gives back the memory that was reserved for further rows.</summary>
+    public void Trim()
+    {
+        if (_chunks.Count > 0) _chunks[^1].Trim();
+    }
+}
