@@ -1,55 +1,41 @@
+using System.Buffers.Binary;
 using System.Globalization;
+using System.Numerics;
 using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
 
 namespace StreamLogit.Engine.Records;
 
 /// <summary>JSON numbers: their grammar (RFC 8259, section 6) and the double nearest to them, in one pass.</summary>
 internal static unsafe class JsonNumber
 {
-    /// <summary>Up to here whole numbers are exact in a double: 2^53.</summary>
-    private const ulong LargestExact = 1UL << 53;
-
-    /// <summary>Up to this many digits a number cannot overflow 64 bits.</summary>
+    /// <summary>So many digits always fit into 64 bits.</summary>
     private const int SafeDigits = 19;
 
-    /// <summary>The powers of ten that are exact in a double.</summary>
-    private static readonly double[] PowersOfTen =
-    [
-        1e0, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11, 1e12, 1e13, 1e14, 1e15, 1e16, 1e17, 1e18, 1e19, 1e20, 1e21, 1e22,
-    ];
+    private static ReadOnlySpan<ulong> PowersOfTen => [1, 10, 100, 1_000, 10_000, 100_000, 1_000_000, 10_000_000, 100_000_000];
 
     /// <summary>Reads a number. Returns the place behind it, or null if there is none.</summary>
     /// <param name="start">Its first byte; a byte that fits in no number must follow it.</param>
     /// <param name="fault">Told what is wrong.</param>
     /// <param name="value">The nearest double, infinite if it is too large for one.</param>
-    /// <remarks>
-    /// A mantissa of at most 2^53 times or divided by an exact power of ten is rounded once, so it is the nearest double
-    /// (W. D. Clinger, How to read floating point numbers accurately, 1990). All others go the long way.
-    /// </remarks>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static byte* Read(byte* start, JsonFault fault, out double value)
     {
         byte* at = start;
         bool isNegative = *at == '-';
         if (isNegative) at++;
         byte* digits = at;
-        ulong mantissa = (uint)(*at - '0');
+        ulong mantissa = 0;
+        at = ReadDigits(at, ref mantissa);
+        int count = (int)(at - digits);
         value = 0;
-        if (mantissa > 9) return fault.Stop(at, isNegative ? "a digit" : "a JSON value");
-        at++;
-        if (mantissa == 0)
-        {
-            if (IsDigit(*at)) return fault.Stop(at, "a number without leading zeros");
-        }
-        else
-        {
-            while (IsDigit(*at)) mantissa = mantissa * 10 + (uint)(*at++ - '0');
-        }
-        long count = at - digits;
+        if (count == 0) return fault.Stop(at, isNegative ? "a digit" : "a JSON value");
+        if (count > 1 && *digits == '0') return fault.Stop(digits + 1, "a number without leading zeros");
         int exponent = 0;
         if (*at == '.')
         {
-            byte* fraction = ++at;
-            while (IsDigit(*at)) mantissa = mantissa * 10 + (uint)(*at++ - '0');
+            byte* fraction = at + 1;
+            at = ReadDigits(fraction, ref mantissa);
             int fractionDigits = (int)(at - fraction);
             if (fractionDigits == 0) return fault.Stop(at, "a digit");
             exponent = -fractionDigits;
@@ -60,17 +46,20 @@ internal static unsafe class JsonNumber
             at = ReadExponent(at + 1, fault, ref exponent);
             if (at == null) return null;
         }
-        if (count <= SafeDigits && mantissa <= LargestExact && (uint)(exponent + 22) <= 44)
-        {
-            double exact = mantissa;
-            exact = exponent < 0 ? exact / PowersOfTen[-exponent] : exact * PowersOfTen[exponent];
-            value = isNegative ? -exact : exact;
-        }
-        else
-        {
-            value = double.Parse(new ReadOnlySpan<byte>(start, (int)(at - start)), NumberStyles.Float, CultureInfo.InvariantCulture);
-        }
+        value = count <= SafeDigits && NearestDouble.IsExact(mantissa, exponent)
+            ? NearestDouble.FromExact(mantissa, exponent)
+            : SlowValue(digits, (int)(at - digits), count, mantissa, exponent);
+        if (isNegative) value = -value;
         return at;
+    }
+
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private static double SlowValue(byte* digits, int length, int count, ulong mantissa, int exponent)
+    {
+        bool isMantissaWhole = count <= SafeDigits || SignificantDigits(digits, count) <= SafeDigits;
+        return isMantissaWhole && NearestDouble.TryFind(mantissa, exponent, out double value)
+            ? value
+            : double.Parse(new ReadOnlySpan<byte>(digits, length), NumberStyles.Float, CultureInfo.InvariantCulture);
     }
 
     /// <summary>Whether a text is a JSON number and nothing else.</summary>
@@ -99,6 +88,38 @@ internal static unsafe class JsonNumber
         int start = at;
         while (at < text.Length && IsDigit(text[at])) at++;
         return at - start;
+    }
+
+    /// <summary>Appends digits to a number, modulo 2^64, eight at a time and so without a branch for each.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static byte* ReadDigits(byte* at, ref ulong number)
+    {
+        while (true)
+        {
+            ulong word = Unsafe.ReadUnaligned<ulong>(at);
+            if (!BitConverter.IsLittleEndian) word = BinaryPrimitives.ReverseEndianness(word);
+            // The top bit of every byte below '0' or above '9'. Carries and borrows come from such bytes and run upwards, so the lowest is right.
+            ulong others = (word + 0x4646464646464646 | word - 0x3030303030303030) & 0x8080808080808080;
+            int count = BitOperations.TrailingZeroCount(others) >> 3;
+            if (count == 0) return at;
+            // Zeros shifted in below are leading zeros. Then pairs, fours and all eight digits are put together.
+            word = (word << 64 - count * 8 & 0x0F0F0F0F0F0F0F0F) * (10 << 8 | 1) >> 8;
+            word = (word & 0x00FF00FF00FF00FF) * (100 << 16 | 1) >> 16;
+            word = (word & 0x0000FFFF0000FFFF) * (10_000UL << 32 | 1) >> 32;
+            number = number * Unsafe.Add(ref MemoryMarshal.GetReference(PowersOfTen), count) + word;
+            at += count;
+            if (count < 8) return at;
+        }
+    }
+
+    /// <summary>How many digits there are from the first one that is not 0.</summary>
+    private static int SignificantDigits(byte* digits, int count)
+    {
+        for (; *digits is (byte)'0' or (byte)'.'; digits++)
+        {
+            if (*digits == '0') count--;
+        }
+        return count;
     }
 
     private static byte* ReadExponent(byte* at, JsonFault fault, ref int exponent)

@@ -19,9 +19,12 @@ internal static unsafe class JsonSyntax
 
     /// <summary>The first byte that is not white space.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public static byte* SkipSpace(byte* at)
+    public static byte* SkipSpace(byte* at) => *at > ' ' ? at : SlowSkipSpace(at);
+
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private static byte* SlowSkipSpace(byte* at)
     {
-        while (*at <= ' ' && *at is (byte)' ' or (byte)'\n' or (byte)'\r' or (byte)'\t') at++;
+        while (*at is (byte)' ' or (byte)'\n' or (byte)'\r' or (byte)'\t') at++;
         return at;
     }
 
@@ -39,7 +42,7 @@ internal static unsafe class JsonSyntax
 
     /// <summary>The first quote, backslash or control character.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private static byte* FindSpecial(byte* at)
+    public static byte* FindSpecial(byte* at)
     {
         while (true)
         {

@@ -49,6 +49,7 @@ internal sealed class KnownObject
             nested.Twin = flat;
             flat.Twin = nested;
         }
+        root.Settle();
         return root;
     }
 
@@ -66,9 +67,18 @@ internal sealed class KnownObject
     /// <summary>Remembers a key that nobody reads, or returns null where there is no room for it.</summary>
     public KnownKey? TryLearn(ReadOnlySpan<byte> name)
     {
-        if (_learned == MostLearned || name.Length + 2 > KnownKey.LongestQuoted) return null;
+        if (_learned == MostLearned || name.Length + 3 > KnownKey.LongestText) return null;
         _learned++;
         return Add(new KnownKey(name));
+    }
+
+    private void Settle()
+    {
+        foreach (var key in _table)
+        {
+            key?.Settle();
+            key?.Inner?.Settle();
+        }
     }
 
     private KnownKey GetOrAdd(string name)

@@ -1,3 +1,5 @@
+using System.Runtime.CompilerServices;
+
 namespace StreamLogit.Engine.Records;
 
 /// <summary>Reads an object whose keys are known, and hands the values to the parts that they are read for.</summary>
@@ -38,19 +40,20 @@ internal sealed unsafe class ObjectReader(
         int firstStray = keys.Count;
         at = JsonSyntax.SkipSpace(at + 1);
         if (*at == '}') return at + 1;
+        long record = _record;
         var previous = known.Start;
         while (true)
         {
             var key = previous.Next;
             if (key.Matches(at))
             {
-                at += key.QuotedLength;
+                at += key.Length;
             }
             else if (key.Next.Matches(at))
             {
                 // An optional key is left out.
                 key = key.Next;
-                at += key.QuotedLength;
+                at += key.Length;
             }
             else
             {
@@ -58,28 +61,64 @@ internal sealed unsafe class ObjectReader(
                 if (at == null) return null;
                 previous.Next = key;
             }
-            if (key.SeenIn == _record || key.Twin is not null && key.Twin.SeenIn == _record) fault.AddDuplicate(key.Name);
-            key.SeenIn = _record;
+            if (key.SeenIn == record) fault.AddDuplicate(key.Name);
+            key.SeenIn = record;
 
             at = JsonSyntax.SkipSpace(at);
-            if (*at != ':') return fault.Stop(at, "':'");
-            at = JsonSyntax.SkipSpace(at + 1);
-            at = key.IsRead ? Value(at, key, depth + 1) : skipped.Skip(at, depth + 1);
+            at = Value(at, key, depth + 1);
             if (at == null) return null;
-            at = JsonSyntax.SkipSpace(at);
-            if (*at == ',')
+            if (*at != ',')
             {
-                at = JsonSyntax.SkipSpace(at + 1);
-                previous = key;
-                continue;
+                at = JsonSyntax.SkipSpace(at);
+                if (*at == '}')
+                {
+                    keys.Close(firstStray);
+                    return at + 1;
+                }
+                if (*at != ',') return fault.Stop(at, "',' or '}'");
             }
-            if (*at != '}') return fault.Stop(at, "',' or '}'");
-            keys.Close(firstStray);
-            return at + 1;
+            at = JsonSyntax.SkipSpace(at + 1);
+            previous = key;
         }
     }
 
-    /// <summary>Reads a key that is not where it was in the last record, or that has escapes.</summary>
+    /// <summary>Reads a value for what its key is for.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private byte* Value(byte* at, KnownKey key, int depth)
+    {
+        switch (key.Use)
+        {
+            case KeyUse.Number when *at is >= (byte)'0' and <= (byte)'9' or (byte)'-': return Number(at, key, depth);
+            case KeyUse.Category when *at == '"': return Text(at, key, depth);
+            case KeyUse.Id or KeyUse.Time when *at == '"': return Text(at, key, depth);
+            case KeyUse.Unread: return skipped.Skip(at, depth);
+            default: return GeneralValue(at, key, depth);
+        }
+    }
+
+    // Not inlined, as the loop over the keys then keeps all it needs in registers.
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private byte* Number(byte* at, KnownKey key, int depth)
+    {
+        byte* behind = JsonNumber.Read(at, fault, out double number);
+        return behind == null || parts.TryTakeNumber(key.Field, number) ? behind : GeneralValue(at, key, depth);
+    }
+
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private byte* Text(byte* at, KnownKey key, int depth)
+    {
+        byte* end = JsonSyntax.FindSpecial(at + 1);
+        if (*end != '"') return GeneralValue(at, key, depth);
+        int length = (int)(end - at - 1);
+        bool isTaken = true;
+        if (key.Use == KeyUse.Category) parts.TakeCategory(key.Field, at + 1, length);
+        else if (key.Use == KeyUse.Time) isTaken = parts.TryTakeTime(at + 1, length);
+        else isTaken = parts.TryTakeId(at + 1, length);
+        return isTaken ? end + 1 : GeneralValue(at, key, depth);
+    }
+
+    /// <summary>Reads a key, and its colon, that is not where it was in the last record, or that has escapes or a blank behind it.</summary>
+    [MethodImpl(MethodImplOptions.NoInlining)]
     private byte* Find(byte* at, KnownObject known, out KnownKey key)
     {
         key = known.Stray;
@@ -99,11 +138,14 @@ internal sealed unsafe class ObjectReader(
             key.SeenIn = 0;
             keys.Add(start, raw.Length, isEscaped);
         }
-        return end + 1;
+        at = JsonSyntax.SkipSpace(end + 1);
+        return *at == ':' ? at + 1 : fault.Stop(at, "':'");
     }
 
-    private byte* Value(byte* at, KnownKey key, int depth)
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private byte* GeneralValue(byte* at, KnownKey key, int depth)
     {
+        if (key.Twin is not null && key.Twin.SeenIn == _record) fault.AddDuplicate(key.Name);
         JsonToken token = default;
         token.Start = at;
         byte first = *at;

@@ -1,3 +1,4 @@
+using System.Text;
 using System.Text.Unicode;
 
 namespace StreamLogit.Engine.Records;
@@ -45,15 +46,17 @@ public sealed unsafe class RecordDecoder
     /// <summary>Decodes every record of the batch that is not a reject yet. What cannot be used becomes a reject with its reason.</summary>
     public void Decode(RecordBatch batch)
     {
-        for (int i = 0; i < batch.Count; i++)
+        // Found out for all records at once, as it nearly always is so and then says that all are UTF-8. What is put behind them needs no check.
+        bool isAscii = Ascii.IsValid(batch.Bytes);
+        var records = batch.Records;
+        for (int i = 0; i < records.Length; i++)
         {
-            if (batch.Records[i].Reason == RejectReason.None) Decode(batch, i);
+            if (records[i].Reason == RejectReason.None) Decode(batch, i, ref records[i], isAscii);
         }
     }
 
-    private void Decode(RecordBatch batch, int index)
+    private void Decode(RecordBatch batch, int index, ref DecodedRecord record, bool isUtf8)
     {
-        ref var record = ref batch.Records[index];
         var fields = batch.Fields(index);
         fields.Clear();
         if (record.Length > _maximumBytes)
@@ -61,7 +64,7 @@ public sealed unsafe class RecordDecoder
             batch.Reject(index, RejectReason.TooLong, $"the record has {record.Length} bytes; at most {_maximumBytes} are wanted");
             return;
         }
-        if (!Utf8.IsValid(batch.RecordBytes(index)))
+        if (!isUtf8 && !Utf8.IsValid(batch.RecordBytes(index)))
         {
             batch.Reject(index, RejectReason.NotUtf8, "the bytes are not UTF-8");
             return;

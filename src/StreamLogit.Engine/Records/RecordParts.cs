@@ -1,4 +1,5 @@
 using System.Globalization;
+using System.Runtime.CompilerServices;
 using StreamLogit.Engine.Definition;
 
 namespace StreamLogit.Engine.Records;
@@ -18,6 +19,7 @@ internal sealed unsafe class RecordParts
     private readonly LabelMapping _labels;
     private readonly RecordFault _fault;
     private readonly TimeFormat _timeFormat;
+    private readonly Rfc3339Time _rfc3339 = new();
     private readonly string _timeWanted;
     private readonly RecordPart _id;
     private readonly RecordPart _time;
@@ -77,6 +79,51 @@ internal sealed unsafe class RecordParts
         _hasId = _hasTime = _hasLabel = _hasFieldKey = false;
     }
 
+    /// <summary>Takes a number for a field that is only a number. Returns false, having done nothing, if it is out of range.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public bool TryTakeNumber(int field, double number)
+    {
+        if (!(Math.Abs(number) <= LargestNumber)) return false;
+        FieldValue* value = _fields + field;
+        value->Number = number;
+        value->IsPresent = true;
+        _hasFieldKey = true;
+        return true;
+    }
+
+    /// <summary>Takes a text without escapes for a field that is only a category.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public void TakeCategory(int field, byte* start, int length)
+    {
+        FieldValue* value = _fields + field;
+        value->Hash = FieldHash.Of(new ReadOnlySpan<byte>(start, length));
+        value->TextStart = (int)(start - _bytes);
+        value->TextLength = length;
+        value->IsPresent = true;
+        _hasFieldKey = true;
+    }
+
+    /// <summary>Takes a text without escapes for the id. Returns false, having done nothing, if it is empty.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public bool TryTakeId(byte* start, int length)
+    {
+        if (length == 0) return false;
+        _hasId = true;
+        _record.IdHash = FieldHash.Of(new ReadOnlySpan<byte>(start, length));
+        _record.IdStart = (int)(start - _bytes);
+        _record.IdLength = length;
+        return true;
+    }
+
+    /// <summary>Takes a text without escapes for the time. Returns false, having done nothing, if it is not one.</summary>
+    public bool TryTakeTime(byte* start, int length)
+    {
+        if (ReadTime(new ReadOnlySpan<byte>(start, length), out long microseconds) != TimeFault.None) return false;
+        _record.TimeMicroseconds = microseconds;
+        _hasTime = true;
+        return true;
+    }
+
     /// <summary>Reads a value for a part.</summary>
     public void Read(RecordPart part, in JsonToken token)
     {
@@ -128,13 +175,7 @@ internal sealed unsafe class RecordParts
             _fault.Add(part, RejectReason.TimeUnreadable, token, _timeWanted);
             return;
         }
-        var text = Text(token);
-        var fault = _timeFormat switch
-        {
-            TimeFormat.Rfc3339 => Rfc3339Time.Read(text, out _record.TimeMicroseconds),
-            TimeFormat.UnixSeconds => UnixTime.Read(text, 6, out _record.TimeMicroseconds),
-            _ => UnixTime.Read(text, 3, out _record.TimeMicroseconds),
-        };
+        var fault = ReadTime(Text(token), out _record.TimeMicroseconds);
         if (fault == TimeFault.None) return;
         _fault.Add(part, RejectReason.TimeUnreadable, token, fault switch
         {
@@ -144,6 +185,13 @@ internal sealed unsafe class RecordParts
             _ => _timeWanted,
         });
     }
+
+    private TimeFault ReadTime(ReadOnlySpan<byte> text, out long microseconds) => _timeFormat switch
+    {
+        TimeFormat.Rfc3339 => _rfc3339.Read(text, out microseconds),
+        TimeFormat.UnixSeconds => UnixTime.Read(text, 6, out microseconds),
+        _ => UnixTime.Read(text, 3, out microseconds),
+    };
 
     private void ReadLabel(RecordPart part, in JsonToken token)
     {

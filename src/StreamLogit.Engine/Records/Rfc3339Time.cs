@@ -1,3 +1,5 @@
+using System.Runtime.InteropServices;
+
 namespace StreamLogit.Engine.Records;
 
 /// <summary>Reads a date-time of RFC 3339 (section 5.6), which always has an offset, to the microsecond.</summary>
@@ -6,27 +8,38 @@ namespace StreamLogit.Engine.Records;
 /// as the moment at which the next minute starts, whatever its fraction, since the count of microseconds has no room for it.
 /// <c>T</c> and <c>Z</c> may be lower case; no blank may stand for <c>T</c>.
 /// </remarks>
-internal static class Rfc3339Time
+internal sealed class Rfc3339Time
 {
-    private const int DateTimeLength = 19;
+    private const int MinuteLength = 16;
+    private const int SecondLength = 19;
     private const long MicrosecondsPerMinute = 60_000_000;
     private const long MinutesPerDay = 1440;
+
+    /// <summary>The last minute read, as it was written, and its minutes since 1970: the next time is mostly in the same. At first no UTF-8.</summary>
+    private UInt128 _minuteText = UInt128.MaxValue;
+    private long _minutes;
 
     private static ReadOnlySpan<byte> DaysOfMonth => [31, 28, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31];
 
     /// <summary>Reads a time.</summary>
     /// <param name="text">All of it, without blanks around it.</param>
     /// <param name="microseconds">Microseconds since 1970-01-01T00:00:00Z.</param>
-    public static TimeFault Read(ReadOnlySpan<byte> text, out long microseconds)
+    public TimeFault Read(ReadOnlySpan<byte> text, out long microseconds)
     {
         microseconds = 0;
-        if (text.Length < DateTimeLength || text[4] != '-' || text[7] != '-' || (text[10] | 0x20) != 't' || text[13] != ':' || text[16] != ':')
-            return TimeFault.Form;
-        int century = TwoDigits(text, 0), yearOfCentury = TwoDigits(text, 2), month = TwoDigits(text, 5), day = TwoDigits(text, 8);
-        int hour = TwoDigits(text, 11), minute = TwoDigits(text, 14), second = TwoDigits(text, 17);
-        if ((century | yearOfCentury | month | day | hour | minute | second) < 0) return TimeFault.Form;
+        if (text.Length < SecondLength || text[16] != ':') return TimeFault.Form;
+        int second = TwoDigits(text, 17);
+        if (second < 0) return TimeFault.Form;
+        var minuteText = MemoryMarshal.Read<UInt128>(text);
+        var minuteFault = TimeFault.None;
+        long minutes = _minutes;
+        if (minuteText != _minuteText)
+        {
+            minuteFault = ReadMinute(text, out minutes);
+            if (minuteFault == TimeFault.Form) return TimeFault.Form;
+        }
 
-        int at = DateTimeLength;
+        int at = SecondLength;
         int fraction = 0;
         if (at < text.Length && text[at] == '.')
         {
@@ -34,12 +47,17 @@ internal static class Rfc3339Time
             if (!TryFraction(text, ref at, out fraction)) return TimeFault.Form;
         }
         if (at == text.Length) return TimeFault.NoOffset;
-        var offsetFault = ReadOffset(text[at..], out int offsetMinutes);
-        if (offsetFault != TimeFault.None) return offsetFault;
+        int offsetMinutes = 0;
+        if (text.Length != at + 1 || (text[at] | 0x20) != 'z')
+        {
+            var offsetFault = ReadOffset(text[at..], out offsetMinutes);
+            if (offsetFault != TimeFault.None) return offsetFault;
+        }
+        if (minuteFault != TimeFault.None || second > 60) return minuteFault == TimeFault.None ? TimeFault.Calendar : minuteFault;
+        _minuteText = minuteText;
+        _minutes = minutes;
 
-        int year = century * 100 + yearOfCentury;
-        if ((uint)(month - 1) > 11 || day < 1 || day > DaysIn(year, month) || hour > 23 || minute > 59 || second > 60) return TimeFault.Calendar;
-        long minutes = DaysSince1970(year, month, day) * MinutesPerDay + hour * 60 + minute - offsetMinutes;
+        minutes -= offsetMinutes;
         if (second == 60)
         {
             // The next minute must be the first of a month in UTC. 1440 divides it evenly only at midnight.
@@ -47,7 +65,21 @@ internal static class Rfc3339Time
             fraction = 0;
         }
         microseconds = minutes * MicrosecondsPerMinute + second * 1_000_000L + fraction;
-        return year > 0 && TimeRange.Contains(microseconds) ? TimeFault.None : TimeFault.Range;
+        return TimeRange.Contains(microseconds) ? TimeFault.None : TimeFault.Range;
+    }
+
+    /// <summary>Reads all before the seconds.</summary>
+    private static TimeFault ReadMinute(ReadOnlySpan<byte> text, out long minutes)
+    {
+        minutes = 0;
+        if (text[4] != '-' || text[7] != '-' || (text[10] | 0x20) != 't' || text[13] != ':') return TimeFault.Form;
+        int century = TwoDigits(text, 0), yearOfCentury = TwoDigits(text, 2), month = TwoDigits(text, 5), day = TwoDigits(text, 8);
+        int hour = TwoDigits(text, 11), minute = TwoDigits(text, 14);
+        if ((century | yearOfCentury | month | day | hour | minute) < 0) return TimeFault.Form;
+        int year = century * 100 + yearOfCentury;
+        if ((uint)(month - 1) > 11 || day < 1 || day > DaysIn(year, month) || hour > 23 || minute > 59) return TimeFault.Calendar;
+        minutes = DaysSince1970(year, month, day) * MinutesPerDay + hour * 60 + minute;
+        return year == 0 ? TimeFault.Range : TimeFault.None;
     }
 
     /// <summary>Days from 1970-01-01 to a day of the proleptic Gregorian calendar.</summary>
@@ -79,7 +111,6 @@ internal static class Rfc3339Time
     private static TimeFault ReadOffset(ReadOnlySpan<byte> text, out int minutes)
     {
         minutes = 0;
-        if (text.Length == 1 && (text[0] | 0x20) == 'z') return TimeFault.None;
         if (text.Length != 6 || text[0] is not ((byte)'+' or (byte)'-') || text[3] != ':') return TimeFault.Form;
         int hours = TwoDigits(text, 1), minutesOfHour = TwoDigits(text, 4);
         if ((hours | minutesOfHour) < 0) return TimeFault.Form;

@@ -11,7 +11,9 @@ internal sealed unsafe class SkippedValues(int maximumDepth, JsonFault fault, Op
     /// <summary>Passes over one value. Returns the place behind it, or null after telling the fault.</summary>
     /// <param name="at">Its first byte.</param>
     /// <param name="depth">How many objects and arrays are open around it.</param>
-    public byte* Skip(byte* at, int depth)
+    public byte* Skip(byte* at, int depth) => *at is (byte)'{' or (byte)'[' ? SkipNested(at, depth) : Scalar(at);
+
+    private byte* SkipNested(byte* at, int depth)
     {
         int open = 0;
         while (true)
