@@ -12,8 +12,8 @@ public sealed class RecordBatch
     /// </summary>
     internal const int Padding = 256;
 
-    private byte[] _bytes = new byte[1 << 16];
-    private DecodedRecord[] _records = new DecodedRecord[1024];
+    private byte[] _bytes = new byte[1 << 12];
+    private DecodedRecord[] _records = new DecodedRecord[16];
     private FieldValue[] _fields;
     private readonly int _fieldCount;
 

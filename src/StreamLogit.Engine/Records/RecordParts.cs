@@ -1,4 +1,3 @@
-using System.Globalization;
 using System.Runtime.CompilerServices;
 using StreamLogit.Engine.Definition;
 
@@ -13,8 +12,8 @@ internal sealed unsafe class RecordParts
     /// <summary>The largest weight.</summary>
     public const double LargestWeight = 1e6;
 
-    private static readonly string NumberWanted = string.Create(CultureInfo.InvariantCulture, $"a number within -{LargestNumber} to {LargestNumber}");
-    private static readonly string WeightWanted = string.Create(CultureInfo.InvariantCulture, $"a number from 0 to {LargestWeight}");
+    private const string NumberWanted = "a number within -1e15 to 1e15";
+    private const string WeightWanted = "a number from 0 to 1000000";
 
     private readonly LabelMapping _labels;
     private readonly RecordFault _fault;

@@ -14,15 +14,15 @@ public class RecordDecoderFuzzTests
 
     [Fact]
     public void Decode_WellFormedRecords_AgreesWithOracle() =>
-        RecordTexts.WellFormed.Array[1, 20].Check(4000, 1, records => Compare(records, Rfc3339));
+        RecordTexts.WellFormed.Array[1, 20].Check(1500, 1, records => Compare(records, Rfc3339));
 
     [Fact]
     public void Decode_MutatedRecords_AgreesWithOracle() =>
-        RecordTexts.Mutated.Array[1, 20].Check(8000, 2, records => Compare(records, Rfc3339));
+        RecordTexts.Mutated.Array[1, 20].Check(3000, 2, records => Compare(records, Rfc3339));
 
     [Fact]
     public void Decode_UnixTimes_AgreesWithOracle() =>
-        Gen.Frequency((2, RecordTexts.WellFormed), (1, RecordTexts.Mutated)).Array[1, 20].Check(2000, 3, records =>
+        Gen.Frequency((2, RecordTexts.WellFormed), (1, RecordTexts.Mutated)).Array[1, 20].Check(700, 3, records =>
         {
             Compare(records, Seconds);
             Compare(records, Milliseconds);
@@ -30,13 +30,13 @@ public class RecordDecoderFuzzTests
 
     [Fact]
     public void Decode_RandomBytes_AgreesWithOracle() =>
-        Gen.Byte.Array[0, 60].Array[1, 20].Check(1000, 4, records => Compare(records, Rfc3339));
+        Gen.Byte.Array[0, 60].Array[1, 20].Check(500, 4, records => Compare(records, Rfc3339));
 
     [Fact]
     public void WellFormed_Samples_HaveAllOutcomes()
     {
         var outcomes = new HashSet<string>();
-        RecordTexts.WellFormed.Check(20_000, 5, record =>
+        RecordTexts.WellFormed.Check(8_000, 5, record =>
         {
             var decoded = DecodedText.Of(record);
             outcomes.Add($"{decoded.Record.Kind} {decoded.Reason}");
