@@ -31,7 +31,7 @@ public sealed class BankTests
     public void Bank_SixtyFourSettings_AreTheMost()
     {
         Assert.Equal(64, Read(Steps(64)).Length);
-        Assert.Equal("learning.bank[0].step: expected at most 64 numbers, found 65", Error(Steps(65)));
+        Assert.Equal("learning.bank[0].step: expected at most 64 values, found 65", Error(Steps(65)));
         Assert.Equal("learning.bank: makes 65 settings; a bank has at most 64", Error(Steps(64)[..^1] + ", { \"update\": \"sgd\", \"step\": 1 } ]"));
     }
 
@@ -54,7 +54,7 @@ public sealed class BankTests
     [InlineData("[ { \"update\": \"sdg\", \"step\": 0.1 } ]", "learning.bank[0].update: expected one of ", "; did you mean \"sgd\"?")]
     [InlineData("[ { \"update\": true } ]", "learning.bank[0].update: expected one of ", ", found true")]
     [InlineData("[ { \"update\": \"sgd\" } ]", "learning.bank[0]: the key \"step\" is missing: a number above 0, or a list of them")]
-    [InlineData("[ { \"update\": \"sgd\", \"step\": [] } ]", "learning.bank[0].step: expected a list of numbers, at least one, found a list")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": [] } ]", "learning.bank[0].step: expected a list of values, at least one, found a list")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": 0 } ]", "learning.bank[0].step: expected a number above 0, found the number 0")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": 1e309 } ]", "learning.bank[0].step: expected a number above 0 that a double can hold, at most 1.7976931348623157E+308, found the number 1e309")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": [ 0.1, \"0.2\" ] } ]", "learning.bank[0].step[1]: expected a number above 0, found the string \"0.2\"")]

@@ -27,6 +27,7 @@ public sealed class SchemaRefusalTests
     [InlineData("\"learning\": { \"bank\": [ { \"step\": 0.1 } ] }")]
     [InlineData("\"learning\": { \"publish\": \"\" }")]
     [InlineData("\"learning\": { \"switchRate\": 2 }")]
+    [InlineData("\"learning\": { \"startProbability\": 1 }")]
     [InlineData("\"labels\": { \"wait\": \"30 days\" }")]
     [InlineData("\"labels\": { \"unlabelled\": true }")]
     [InlineData("\"decision\": { \"cutoff\": \"0.5\" }")]

@@ -56,9 +56,9 @@ internal sealed class BankEntry
 
     private static double[]? ReadValues(ObjectReader entry, RuleNumber number)
     {
-        var value = number.Default is null ? entry.Required(number.Key, number.Range.InWords + ", or a list of them") : entry.Optional(number.Key);
+        var value = number.Default is null ? entry.Required(number.Key, $"{number.InWords}, or a list of them") : entry.Optional(number.Key);
         if (value is null) return number.Default is { } absent ? [absent] : null;
-        if (value.OneOrList("numbers", BankSection.MostSettings) is not { } items) return null;
+        if (value.OneOrList("values", BankSection.MostSettings) is not { } items) return null;
         var values = new List<double>();
         foreach (var item in items)
         {

@@ -9,9 +9,9 @@ internal static class UpdateRules
     [
         new("sgd",
             [
-                new("step", null, NumberRange.Positive),
-                new("stepDecay", 0, NumberRange.ZeroToOne),
-                new("weightDecay", 0, NumberRange.NotNegative),
+                RuleNumber.Number("step", NumberRange.Positive),
+                RuleNumber.Number("stepDecay", NumberRange.ZeroToOne, absent: 0),
+                RuleNumber.Number("weightDecay", NumberRange.NotNegative, absent: 0),
             ],
             numbers => new SgdSetting(numbers[0], numbers[1], numbers[2])),
     ];
