@@ -8,4 +8,7 @@ public sealed record CategoryFeature(ImmutableArray<string> Fields) : FeatureOpt
 {
     /// <inheritdoc/>
     public override string Name => string.Join(" & ", Fields);
+
+    /// <summary>None.</summary>
+    public override int DenseCoefficients => 0;
 }

@@ -7,4 +7,7 @@ public abstract record FeatureOptions
 
     /// <summary>The name under which the feature stands in reasons and reports.</summary>
     public abstract string Name { get; }
+
+    /// <summary>How many coefficients of its own it has, apart from the hashed slots that values of categories share.</summary>
+    public abstract int DenseCoefficients { get; }
 }

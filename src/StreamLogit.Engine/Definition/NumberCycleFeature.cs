@@ -7,4 +7,7 @@ public sealed record NumberCycleFeature(string Field, double Period) : FeatureOp
 {
     /// <inheritdoc/>
     public override string Name => FormattableString.Invariant($"{Field} of {Period}");
+
+    /// <summary>One for the sine, one for the cosine and one for the absence of the value.</summary>
+    public override int DenseCoefficients => 3;
 }

@@ -7,4 +7,7 @@ public sealed record NumberFeature(string Field, NumberScale Scale) : FeatureOpt
 {
     /// <inheritdoc/>
     public override string Name => Field;
+
+    /// <summary>One for the value and one for its absence.</summary>
+    public override int DenseCoefficients => 2;
 }

@@ -7,4 +7,7 @@ public sealed record TimeCycleFeature(long PeriodMicroseconds, string Label) : F
 {
     /// <inheritdoc/>
     public override string Name => $"time of {Label}";
+
+    /// <summary>One for the sine and one for the cosine.</summary>
+    public override int DenseCoefficients => 2;
 }

@@ -7,7 +7,7 @@ namespace StreamLogit.Engine.Features;
 /// <summary>Sine and cosine of a number over a period, or 1 at a third slot where it is missing.</summary>
 internal sealed class NumberCycleEncoding(NumberCycleFeature options, int field, int firstSlot) : Feature(firstSlot)
 {
-    public override int DenseSlots => 3;
+    public override int DenseSlots => options.DenseCoefficients;
 
     public override int MaximumEntries => 2;
 

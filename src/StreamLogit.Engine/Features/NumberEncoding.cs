@@ -12,7 +12,7 @@ internal sealed class NumberEncoding(NumberFeature options, int field, int first
 
     private RunningMoments _moments;
 
-    public override int DenseSlots => 2;
+    public override int DenseSlots => options.DenseCoefficients;
 
     public override int MaximumEntries => 1;
 

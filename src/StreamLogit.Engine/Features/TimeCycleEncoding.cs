@@ -7,7 +7,7 @@ namespace StreamLogit.Engine.Features;
 /// <summary>Sine and cosine of the event's time over a period that starts at 1970-01-01T00:00:00Z.</summary>
 internal sealed class TimeCycleEncoding(TimeCycleFeature options, int firstSlot) : Feature(firstSlot)
 {
-    public override int DenseSlots => 2;
+    public override int DenseSlots => options.DenseCoefficients;
 
     public override int MaximumEntries => 2;
 

@@ -10,6 +10,10 @@ internal sealed record NumberRange(double Minimum, double Maximum, string InWord
 
     public static NumberRange NotNegative { get; } = new(0, double.MaxValue, "a number, 0 or more");
 
+    public static NumberRange PositiveToMillion { get; } = new(double.Epsilon, 1e6, "a number above 0, at most 1000000");
+
+    public static NumberRange PositiveToOne { get; } = new(double.Epsilon, 1, "a number above 0, at most 1");
+
     public static NumberRange ZeroToOne { get; } = new(0, 1, "a number from 0 to 1");
 
     public static NumberRange BetweenZeroAndOne { get; } = new(double.Epsilon, double.BitDecrement(1), "a number above 0 and below 1");

@@ -1,4 +1,5 @@
 using System.Collections.Immutable;
+using StreamLogit.Engine;
 using StreamLogit.Engine.Definition;
 
 namespace StreamLogit.Pipeline.Tests.Definition;
@@ -23,6 +24,71 @@ public sealed class BankTests
         Assert.Equal(
             [new SgdSetting(0.2, 0, 0), new SgdSetting(0.1, 0, 0)],
             Read("""[ { "update": "sgd", "step": 0.2 }, { "update": "sgd", "step": 0.1 } ]"""));
+
+    [Fact]
+    public void Bank_EveryRuleWithEveryNumber_IsThatSetting() =>
+        Assert.Equal<SettingOptions>(
+            [
+                new SgdSetting(0.1, 0.25, 1e-6) { IsOvershootProof = true, ForgetHalfLifeMicroseconds = 86_400_000_000 },
+                new AdagradSetting(0.2, 5000) { ForgetHalfLifeMicroseconds = 2 * 86_400_000_000 },
+                new FtrlSetting(0.3, 2, 0.5, 0.25) { ForgetHalfLifeMicroseconds = 3 * 86_400_000_000 },
+                new NewtonSetting(0.999, 10) { ForgetHalfLifeMicroseconds = 4 * 86_400_000_000 },
+            ],
+            Read("""
+                [
+                  { "update": "sgd", "step": 0.1, "stepDecay": 0.25, "weightDecay": 1e-6, "overshootProof": true, "forget": "1d" },
+                  { "update": "adagrad", "step": 0.2, "sumHalfLife": 5000, "forget": "2d" },
+                  { "update": "ftrl", "step": 0.3, "beta": 2, "l1": 0.5, "l2": 0.25, "forget": "3d" },
+                  { "update": "newton", "forgetting": 0.999, "prior": 10, "forget": "4d" },
+                ]
+                """));
+
+    [Fact]
+    public void Bank_EveryRuleWithoutNumbers_HasTheDefaults() =>
+        Assert.Equal<SettingOptions>(
+            [new SgdSetting(0.1, 0, 0), new AdagradSetting(0.1, 0), new FtrlSetting(0.1, 1, 0, 0), new NewtonSetting(1, 1)],
+            Read("""
+                [ { "update": "sgd", "step": 0.1 }, { "update": "adagrad", "step": 0.1 }, { "update": "ftrl", "step": 0.1 }, { "update": "newton" } ]
+                """));
+
+    [Fact]
+    public void Bank_ListsOfDurationsAndFlags_GiveTheirProduct() =>
+        Assert.Equal(
+            ["sgd step=0.1 stepDecay=0 weightDecay=0 forget=1d", "sgd step=0.1 stepDecay=0 weightDecay=0 overshootProof forget=1d",
+                "sgd step=0.1 stepDecay=0 weightDecay=0 forget=1w", "sgd step=0.1 stepDecay=0 weightDecay=0 overshootProof forget=1w"],
+            Read("""[ { "update": "sgd", "step": 0.1, "forget": [ "1d", "7d" ], "overshootProof": [ false, true ] } ]""").Select(setting => setting.Name));
+
+    [Theory]
+    [InlineData("", 0, true)]
+    [InlineData("n", 2, false)]
+    [InlineData("nt", 4, false)]
+    [InlineData("nc", 5, false)]
+    [InlineData("256 numbers", 512, false)]
+    [InlineData("256 numbers and t", 514, true)]
+    public void Newton_NeedsFittingFeatures(string features, int coefficients, bool isWrong)
+    {
+        var list = new List<string> { """{ "category": "k" }""" };
+        if (features.Contains('n', StringComparison.Ordinal)) list.Add("""{ "number": "x" }""");
+        if (features.EndsWith('t')) list.Add("""{ "cycle": "time", "period": "1d" }""");
+        if (features.EndsWith('c')) list.Add("""{ "cycle": "angle", "period": 360 }""");
+        if (features.StartsWith("256", StringComparison.Ordinal)) list.AddRange(Enumerable.Range(1, 255).Select(i => $$"""{ "number": "x{{i}}" }"""));
+        string definition = $$"""{ "stream": "q", "features": [ {{string.Join(", ", list)}} ], "learning": { "slots": 16 } }""";
+        string[] newton = ["learning.bank=[{\"update\":\"newton\"}]"];
+        var engine = Definitions.Read(definition).Engine;
+        engine = engine with { Learning = engine.Learning with { Bank = [new NewtonSetting(1, 1)] } };
+
+        // The engine is the judge of what it can take.
+        if (!isWrong)
+        {
+            _ = new ScoringEngine(engine);
+            Assert.Equal(engine.Learning.Bank, Definitions.Read(definition, newton).Engine.Learning.Bank);
+            return;
+        }
+        Assert.Throws<ArgumentException>(() => new ScoringEngine(engine));
+        var error = Assert.Single(Definitions.Errors(definition, newton));
+        Assert.Equal("learning.bank[0].update", error.Path);
+        Assert.Equal($"newton learns only the coefficients of numbers and cycles, from 1 to 512 of them, and these features have {coefficients}: choose another rule", error.Message);
+    }
 
     [Fact]
     public void Bank_Default_IsTheDefaultBank() => Assert.Equal(DefaultBank.Settings, Read("\"default\""));
@@ -53,16 +119,28 @@ public sealed class BankTests
     [InlineData("[ { \"step\": 0.1 } ]", "learning.bank[0]: the key \"update\" is missing: it names the update rule, one of ")]
     [InlineData("[ { \"update\": \"sdg\", \"step\": 0.1 } ]", "learning.bank[0].update: expected one of ", "; did you mean \"sgd\"?")]
     [InlineData("[ { \"update\": true } ]", "learning.bank[0].update: expected one of ", ", found true")]
-    [InlineData("[ { \"update\": \"sgd\" } ]", "learning.bank[0]: the key \"step\" is missing: a number above 0, or a list of them")]
+    [InlineData("[ { \"update\": \"sgd\" } ]", "learning.bank[0]: the key \"step\" is missing: a number above 0, at most 1000000, or a list of them")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": [] } ]", "learning.bank[0].step: expected a list of values, at least one, found a list")]
-    [InlineData("[ { \"update\": \"sgd\", \"step\": 0 } ]", "learning.bank[0].step: expected a number above 0, found the number 0")]
-    [InlineData("[ { \"update\": \"sgd\", \"step\": 1e309 } ]", "learning.bank[0].step: expected a number above 0 that a double can hold, at most 1.7976931348623157E+308, found the number 1e309")]
-    [InlineData("[ { \"update\": \"sgd\", \"step\": [ 0.1, \"0.2\" ] } ]", "learning.bank[0].step[1]: expected a number above 0, found the string \"0.2\"")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 0 } ]", "learning.bank[0].step: expected a number above 0, at most 1000000, found the number 0")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 1e309 } ]", "learning.bank[0].step: expected a number above 0, at most 1000000 that a double can hold, at most 1.7976931348623157E+308, found the number 1e309")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": [ 0.1, \"0.2\" ] } ]", "learning.bank[0].step[1]: expected a number above 0, at most 1000000, found the string \"0.2\"")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": [ 0.1, 1e-1 ] } ]", "learning.bank[0].step[1]: the number 1e-1 is there twice: keep one")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"stepDecay\": 1.1 } ]", "learning.bank[0].stepDecay: expected a number from 0 to 1, found the number 1.1")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"weightDecay\": -1e-6 } ]", "learning.bank[0].weightDecay: expected a number, 0 or more, found the number -1e-6")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"weightDecay\": [ 0, -0 ] } ]", "learning.bank[0].weightDecay[1]: the number -0 is there twice: keep one")]
-    [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"momentum\": 0.9 } ]", "learning.bank[0].momentum: unknown key. Known here: \"update\", \"step\", \"stepDecay\", \"weightDecay\"")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 1000001 } ]", "learning.bank[0].step: expected a number above 0, at most 1000000, found the number 1000001")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"overshootProof\": 1 } ]", "learning.bank[0].overshootProof: expected true or false, found the number 1")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"forget\": \"0s\" } ]", "learning.bank[0].forget: expected a duration from 1s to 36525d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"0s\"")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"forget\": [ \"1d\", \"24h\" ] } ]", "learning.bank[0].forget[1]: the string \"24h\" is there twice: keep one")]
+    [InlineData("[ { \"update\": \"adagrad\" } ]", "learning.bank[0]: the key \"step\" is missing: a number above 0, at most 1000000, or a list of them")]
+    [InlineData("[ { \"update\": \"adagrad\", \"step\": 0.1, \"sumHalfLife\": -1 } ]", "learning.bank[0].sumHalfLife: expected a number, 0 or more, found the number -1")]
+    [InlineData("[ { \"update\": \"adagrad\", \"step\": 0.1, \"weightDecay\": 0 } ]", "learning.bank[0].weightDecay: unknown key. Known here: \"update\", \"step\", \"sumHalfLife\", \"forget\"")]
+    [InlineData("[ { \"update\": \"ftrl\", \"step\": 0.1, \"beta\": 0 } ]", "learning.bank[0].beta: expected a number above 0, found the number 0")]
+    [InlineData("[ { \"update\": \"ftrl\", \"step\": 0.1, \"l1\": -1 } ]", "learning.bank[0].l1: expected a number, 0 or more, found the number -1")]
+    [InlineData("[ { \"update\": \"ftrl\", \"step\": 0.1, \"l2\": -1 } ]", "learning.bank[0].l2: expected a number, 0 or more, found the number -1")]
+    [InlineData("[ { \"update\": \"newton\", \"forgetting\": 1.01 } ]", "learning.bank[0].forgetting: expected a number above 0, at most 1, found the number 1.01")]
+    [InlineData("[ { \"update\": \"newton\", \"prior\": 0 } ]", "learning.bank[0].prior: expected a number above 0, at most 1000000, found the number 0")]
+    [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1, \"momentum\": 0.9 } ]", "learning.bank[0].momentum: unknown key. Known here: \"update\", \"step\", \"stepDecay\", \"weightDecay\", \"overshootProof\", \"forget\"")]
     [InlineData("[ { \"update\": \"sgd\", \"step\": 0.1 }, { \"update\": \"sgd\", \"step\": [ 0.2, 0.1 ] } ]", "learning.bank[1]: the setting \"sgd step=0.1 stepDecay=0 weightDecay=0\" is already made by learning.bank[0]: settings must differ")]
     public void Bank_Wrong_IsRefused(string bank, string start, string end = "")
     {

@@ -8,7 +8,7 @@ namespace StreamLogit.Pipeline.Tests.Definition;
 /// <summary>Whatever comes in, the reader gives a definition or says what is wrong.</summary>
 public sealed class FuzzTests
 {
-    private const int Samples = 20_000;
+    private const int Samples = 10_000;
 
     private static readonly string Complete = File.ReadAllText(Path.Combine(RepositoryFiles.Root, "docs/stream-definition.md"))
         .Split("```jsonc\n")[1].Split("```")[0];
@@ -69,7 +69,7 @@ public sealed class FuzzTests
     public void Schema_OfChangedDefinitions_TakesAllThatTheReaderTakes()
     {
         int read = 0, refused = 0, refusedByBoth = 0;
-        Gen.Select(Gen.Int[0, 1_000_000], Values).Array[1, 2].Check(3_000, seed: 5, changes =>
+        Gen.Select(Gen.Int[0, 1_000_000], Values).Array[1, 2].Check(1_500, seed: 5, changes =>
         {
             var definition = JsonNode.Parse(Complete, null, new() { CommentHandling = System.Text.Json.JsonCommentHandling.Skip, AllowTrailingCommas = true })!;
             foreach (var (place, value) in changes) Replace(definition, place, value?.DeepClone());
@@ -82,7 +82,7 @@ public sealed class FuzzTests
             if (!taken && !fits) refusedByBoth++;
         });
 
-        Assert.True(read > 100, $"{read} were read");
+        Assert.True(read > 50, $"{read} were read");
         Assert.True(refusedByBoth > 0.9 * refused, $"{refusedByBoth} of {refused} were refused by both");
     }
 

@@ -129,6 +129,22 @@ public sealed partial class SchemaTests
         Assert.Equal((absent.Source, absent.State), (read.Source, read.State));
     }
 
+    [Fact]
+    public void Defaults_OfUpdateRules_AreThoseOfTheReader()
+    {
+        foreach (string rule in UpdateRules())
+        {
+            var absent = new JsonObject { ["update"] = rule };
+            if (SchemaFile.Root["$defs"]![rule]!["properties"]!["step"] is not null) absent["step"] = 0.1;
+            var written = absent.DeepClone().AsObject();
+            foreach (var (key, schema) in SchemaFile.Root["$defs"]![rule]!["properties"]!.AsObject()) if (schema!["default"] is { } standard) written[key] = standard.DeepClone();
+
+            Assert.Equal(
+                Definitions.ReadWith($"\"learning\": {{ \"bank\": [ {absent.ToJsonString()} ] }}").Engine.Learning.Bank,
+                Definitions.ReadWith($"\"learning\": {{ \"bank\": [ {written.ToJsonString()} ] }}").Engine.Learning.Bank);
+        }
+    }
+
     private static IEnumerable<string> FeatureKinds() => SchemaFile.Choices(SchemaFile.Root["properties"]!["features"]!["items"]!);
 
     private static IEnumerable<string> UpdateRules() =>

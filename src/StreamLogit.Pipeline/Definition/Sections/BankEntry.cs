@@ -20,7 +20,9 @@ internal sealed class BankEntry
     public long Count => _values.Aggregate(1L, (product, values) => Math.Min(product * values.Length, int.MaxValue));
 
     /// <summary>Reads an entry, or adds errors and gives null.</summary>
-    public static BankEntry? Read(ValueReader value)
+    /// <param name="value">The entry.</param>
+    /// <param name="denseCoefficients">How many coefficients the features have beside hashed ones, or null where the features are wrong.</param>
+    public static BankEntry? Read(ValueReader value, int? denseCoefficients)
     {
         if (value.Object() is not { } entry) return null;
         var update = entry.Required("update", $"it names the update rule, one of {Quoted.List(UpdateRules.All.Select(rule => rule.Name))}");
@@ -30,6 +32,10 @@ internal sealed class BankEntry
         {
             update.UnknownName([.. UpdateRules.All.Select(known => known.Name)]);
             return null;
+        }
+        if (rule.MostDenseCoefficients is { } most && denseCoefficients is { } dense && (dense < 1 || dense > most))
+        {
+            update.Error($"{rule.Name} learns only the coefficients of numbers and cycles, from 1 to {most} of them, and these features have {dense}: choose another rule");
         }
         var read = rule.Numbers.Select(number => ReadValues(entry, number)).ToList();
         entry.End();

@@ -25,6 +25,7 @@ internal static class DefinitionSection
 
         var files = new FilePaths(folder);
         var recordOptions = RecordSection.Read(record, labels);
+        var featureOptions = FeaturesSection.Read(features, recordOptions);
         var sourceOptions = SourceSection.Read(source, files);
         var (output, decisionOptions) = ScoresSection.Read(scores, decision, files, use);
         return new StreamDefinition
@@ -33,8 +34,8 @@ internal static class DefinitionSection
             {
                 Stream = stream ?? "",
                 Record = recordOptions,
-                Features = FeaturesSection.Read(features, recordOptions),
-                Learning = LearningSection.Read(learning),
+                Features = featureOptions ?? [],
+                Learning = LearningSection.Read(learning, featureOptions?.Sum(feature => feature.DenseCoefficients)),
                 Labels = labels,
                 Decision = decisionOptions,
                 Health = HealthSection.Read(health),

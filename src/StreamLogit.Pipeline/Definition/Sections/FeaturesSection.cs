@@ -12,9 +12,10 @@ internal static class FeaturesSection
     private const long ShortestPeriodMicroseconds = 1_000;
     private const long LongestPeriodMicroseconds = 36_525L * 24 * 3600 * 1_000_000;
 
-    public static ImmutableArray<FeatureOptions> Read(ValueReader? value, RecordOptions record)
+    /// <summary>The features, or null and errors.</summary>
+    public static ImmutableArray<FeatureOptions>? Read(ValueReader? value, RecordOptions record)
     {
-        if (value?.List("features", MostFeatures) is not { } items) return [];
+        if (value?.List("features", MostFeatures) is not { } items) return null;
         var features = ImmutableArray.CreateBuilder<FeatureOptions>();
         var paths = new Dictionary<string, string>(StringComparer.Ordinal);
         foreach (var item in items)
@@ -24,7 +25,7 @@ internal static class FeaturesSection
             if (paths.TryAdd(identity, item.Path)) features.Add(feature);
             else item.Error($"is the same feature as {paths[identity]}: keep one");
         }
-        return features.ToImmutable();
+        return features.Count == items.Length ? features.ToImmutable() : null;
     }
 
     // What two features share when their coefficients would have the same names, or always the same values.

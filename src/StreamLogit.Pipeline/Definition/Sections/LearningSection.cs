@@ -10,13 +10,13 @@ internal static class LearningSection
     private const int MostSlotsExponent = 26;
     private const string Blend = "blend";
 
-    public static LearningOptions Read(ValueReader? value)
+    public static LearningOptions Read(ValueReader? value, int? denseCoefficients)
     {
         var defaults = new LearningOptions();
         if (value?.Object() is not { } section) return defaults;
         int? slots = section.Optional("slots")?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
         ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
-        var bank = section.Optional("bank") is { } written ? BankSection.Read(written) : defaults.Bank;
+        var bank = section.Optional("bank") is { } written ? BankSection.Read(written, denseCoefficients) : defaults.Bank;
         double? startProbability = section.Optional("startProbability")?.Number(NumberRange.BetweenZeroAndOne);
         string? publish = ReadPublish(section.Optional("publish"), bank);
         double? switchRate = section.Optional("switchRate")?.Number(NumberRange.ZeroToOne);
