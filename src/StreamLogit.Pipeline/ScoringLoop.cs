@@ -2,7 +2,7 @@ using System.Collections.Immutable;
 using StreamLogit.Engine;
 using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Records;
-using StreamLogit.Pipeline.Loop;
+using StreamLogit.Pipeline.Stages;
 using StreamLogit.Pipeline.State;
 
 namespace StreamLogit.Pipeline;

@@ -54,6 +54,12 @@ public sealed class StreamRun : IDisposable
     /// <summary>Whether it goes on from an earlier run.</summary>
     public bool IsResumed { get; private set; }
 
+    /// <summary>Called within each commit of the loop, when all is written and nothing counts yet; tests die here.</summary>
+    internal Action? BeforeCommit
+    {
+        init => _state?.BeforeCommit = value;
+    }
+
     /// <summary>The latest health snapshot. Any thread may ask.</summary>
     public HealthSnapshot Health => _loop.Health;
 

@@ -2,7 +2,7 @@ using System.Collections.Immutable;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Pipeline.State;
 
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Writes what came of batches, and commits: first the outputs are made durable, then the state that counts them.</summary>
 internal sealed class WriteStage(ImmutableArray<IScoreSink> sinks, StateStore? state, Conveyor conveyor)

@@ -1,6 +1,6 @@
 using StreamLogit.Engine.Records;
 
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Reads and decodes batches, and decides after which of them a commit follows. The last thing it sends is always a commit.</summary>
 internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Conveyor conveyor, LoopOptions options, TimeProvider time)
@@ -14,9 +14,10 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
     public async Task RunAsync(CancellationToken stop)
     {
         SourcePosition? held = null;
-        var batch = await TakeEmptyAsync().ConfigureAwait(false);
+        var batch = await TakeEmpty().ConfigureAwait(false);
         while (!stop.IsCancellationRequested)
         {
+            batch.Clear();
             // A batch that is still held back when the run is stopped was never given: the next run reads it again.
             held = _pacer is null ? null : source.Position;
             var outcome = await source.FillAsync(batch.Records, _pacer?.BatchSize ?? options.BatchSize, stop).ConfigureAwait(false);
@@ -33,7 +34,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
                 await SendAsync(batch).ConfigureAwait(false);
                 held = null;
             }
-            batch = await TakeEmptyAsync().ConfigureAwait(false);
+            batch = await TakeEmpty().ConfigureAwait(false);
         }
 
         batch.Clear();
@@ -43,12 +44,8 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
         conveyor.Read.Writer.Complete();
     }
 
-    private async ValueTask<BatchInFlight> TakeEmptyAsync()
-    {
-        var batch = await conveyor.Empty.Reader.ReadAsync(CancellationToken.None).ConfigureAwait(false);
-        batch.Clear();
-        return batch;
-    }
+    // Not an async method of its own, which would allocate at every wait.
+    private ValueTask<BatchInFlight> TakeEmpty() => conveyor.Empty.Reader.ReadAsync(CancellationToken.None);
 
     private ValueTask SendAsync(BatchInFlight batch)
     {
@@ -79,7 +76,10 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
         while (!await _pacer.WaitAsync(stop).ConfigureAwait(false))
         {
             if (stop.IsCancellationRequested) return false;
-            if (IsPauseDue) await SendPauseAsync(await TakeEmptyAsync().ConfigureAwait(false), held).ConfigureAwait(false);
+            if (!IsPauseDue) continue;
+            var pause = await TakeEmpty().ConfigureAwait(false);
+            pause.Clear();
+            await SendPauseAsync(pause, held).ConfigureAwait(false);
         }
         return true;
     }

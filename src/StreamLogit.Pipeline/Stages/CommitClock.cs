@@ -1,4 +1,4 @@
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Says when a commit is due: after so many records or so much wall time, whichever comes first, if there is anything to commit.</summary>
 internal sealed class CommitClock(int everyEvents, TimeSpan everyTime, TimeProvider time)

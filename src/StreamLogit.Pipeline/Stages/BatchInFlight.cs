@@ -2,7 +2,7 @@ using StreamLogit.Engine.Decisions;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
 
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>A batch on its way through the stages: records, and later their scores. Used again and again.</summary>
 internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)

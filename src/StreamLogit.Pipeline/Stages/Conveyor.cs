@@ -1,7 +1,7 @@
 using System.Runtime.ExceptionServices;
 using System.Threading.Channels;
 
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>
 /// The channels between the stages, and a fixed number of batches that go round in them: from the empty ones to the reader, the

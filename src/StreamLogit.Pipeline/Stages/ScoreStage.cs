@@ -2,7 +2,7 @@ using StreamLogit.Engine;
 using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Persistence;
 
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Owns the engine: runs batches through it, captures its state where a commit follows, and publishes its health.</summary>
 internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, bool keepsState, TimeSpan healthEvery, TimeProvider time)

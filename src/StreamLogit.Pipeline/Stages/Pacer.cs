@@ -1,6 +1,6 @@
 using StreamLogit.Engine.Records;
 
-namespace StreamLogit.Pipeline.Loop;
+namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>
 /// Lets records pass when they are due by their own times. While the records are behind, batches grow; as soon as one must wait,

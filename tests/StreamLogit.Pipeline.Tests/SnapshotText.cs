@@ -1,0 +1,16 @@
+using System.Text.Json;
+using System.Text.Json.Serialization;
+
+namespace StreamLogit.Pipeline.Tests;
+
+/// <summary>Snapshots as text, with every digit, to be compared.</summary>
+internal static class SnapshotText
+{
+    private static readonly JsonSerializerOptions Options = new()
+    {
+        WriteIndented = true,
+        NumberHandling = JsonNumberHandling.AllowNamedFloatingPointLiterals,
+    };
+
+    public static string Of<T>(T snapshot) => JsonSerializer.Serialize(snapshot, Options);
+}

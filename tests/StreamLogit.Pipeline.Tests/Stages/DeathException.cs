@@ -1,0 +1,4 @@
+namespace StreamLogit.Pipeline.Tests.Stages;
+
+/// <summary>What a test throws to have a worker die.</summary>
+internal sealed class DeathException : Exception;
