@@ -44,7 +44,8 @@ internal sealed class AppendFile(string path, string name) : IDisposable
         {
             File.Write(Buffer.WrittenSpan);
         }
-        catch (IOException e)
+        // A file that grows beyond what its file system, or a limit of the process, allows is said to be an argument out of range.
+        catch (Exception e) when (e is IOException or ArgumentOutOfRangeException)
         {
             throw StorageFault.OfFile(path, e);
         }

@@ -12,6 +12,8 @@ namespace StreamLogit.Worker.Commands;
 /// <summary><c>run</c>: the worker.</summary>
 internal static class RunCommand
 {
+    private const string Unlimited = "max";
+
     public static Command Create()
     {
         var command = new ExampleCommand(
@@ -29,16 +31,16 @@ internal static class RunCommand
         };
         command.Add(untilEnd);
         command.Add(speed);
-        command.SetAction((result, _) => RunAsync(input.Read(result, DefinitionUse.Run), result.GetValue(untilEnd), result.GetValue(speed)));
+        command.SetAction((result, _) => RunAsync(input.Read(result, DefinitionUse.Run), result.GetValue(untilEnd), result.GetValue(speed) ?? double.PositiveInfinity));
         return command;
     }
 
-    private static async Task<int> RunAsync(StreamDefinition definition, bool untilEnd, double? speed)
+    private static async Task<int> RunAsync(StreamDefinition definition, bool untilEnd, double speed)
     {
         if (untilEnd && definition.Source is FileSourceOptions file) definition = definition with { Source = file with { Follow = false } };
         foreach (string caution in Cautions.Lines) Console.Error.WriteLine($"Caution: {caution}");
 
-        using var run = StreamRun.Open(definition, new LoopOptions { Speed = speed }, TimeProvider.System);
+        using var run = StreamRun.Open(definition, new LoopOptions { Speed = double.IsFinite(speed) ? speed : null }, TimeProvider.System);
         await WorkProgress.ShowAsync(
             $"scoring {definition.Engine.Stream}", "records",
             () => (run.Progress.Source.Share(), run.Progress.Records),
@@ -56,7 +58,7 @@ internal static class RunCommand
     private static double? ReadSpeed(ArgumentResult result)
     {
         string text = result.Tokens[0].Value;
-        if (text == "max") return null;
+        if (text == Unlimited) return double.PositiveInfinity;
         bool isFactor = double.TryParse(text.AsSpan().TrimEnd('x'), NumberStyles.AllowDecimalPoint, CultureInfo.InvariantCulture, out double factor);
         if (isFactor && text.EndsWith('x') && factor > 0 && double.IsFinite(factor)) return factor;
         result.AddError($"--speed takes a factor above 0 and an x, as 60x, or max, not '{text}'.");

@@ -20,7 +20,7 @@ internal static class ShowCommand
             CustomParser = WholeNumber.Between("--top", 0, int.MaxValue),
         };
         var command = new ExampleCommand(
-            "show", "Shows the coefficients and the blend of a saved model", "streamlogit show demo-streams/out/pump-stations.state --top 10")
+            "show", "Shows the coefficients and the blend of a saved model", "streamlogit show demo-streams/out/pump-stations/state --top 10")
         {
             path, json, top,
         };
