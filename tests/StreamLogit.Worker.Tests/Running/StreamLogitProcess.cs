@@ -1,40 +1,48 @@
+using System.Collections.Concurrent;
 using System.Diagnostics;
+using System.Globalization;
 
 namespace StreamLogit.Worker.Tests.Running;
 
 /// <summary>The built program, as a process of its own.</summary>
 internal sealed class StreamLogitProcess : IDisposable
 {
-    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(60);
-    private static readonly string Program = Path.Combine(AppContext.BaseDirectory, "streamlogit.dll");
+    public static readonly string Program = Path.Combine(AppContext.BaseDirectory, "streamlogit.dll");
+    private static readonly TimeSpan Patience = TimeSpan.FromMinutes(3);
 
     private readonly Process _process;
     private readonly Task<byte[]> _output;
-    private readonly Task<string> _errors;
+    private readonly Task _errors;
+    private readonly BlockingCollection<string> _errorLines = [];
+    private readonly List<string> _errorLinesSeen = [];
 
-    private StreamLogitProcess(Process process)
+    private StreamLogitProcess(Process process, byte[] input)
     {
         _process = process;
         _output = ReadAsync(process.StandardOutput.BaseStream);
-        _errors = process.StandardError.ReadToEndAsync();
+        _errors = Task.Run(() =>
+        {
+            while (process.StandardError.ReadLine() is { } line) _errorLines.Add(line);
+            _errorLines.CompleteAdding();
+        });
+        process.StandardInput.BaseStream.Write(input);
+        process.StandardInput.Close();
     }
-
-    public int Id => _process.Id;
 
     public bool HasExited => _process.HasExited;
 
-    public static StreamLogitProcess Start(string[] arguments, params (string Name, string Value)[] environment)
+    public static StreamLogitProcess Start(params string[] arguments) => Start("dotnet", [Program, .. arguments], [], []);
+
+    public static StreamLogitProcess Start(string file, string[] arguments, (string Name, string Value)[] environment, byte[] input)
     {
-        var info = new ProcessStartInfo("dotnet", [Program, .. arguments])
+        var info = new ProcessStartInfo(file, arguments)
         {
             RedirectStandardInput = true,
             RedirectStandardOutput = true,
             RedirectStandardError = true,
         };
         foreach (var (name, value) in environment) info.Environment[name] = value;
-        var process = Process.Start(info)!;
-        process.StandardInput.Close();
-        return new StreamLogitProcess(process);
+        return new StreamLogitProcess(Process.Start(info)!, input);
     }
 
     /// <summary>Runs the program to its end.</summary>
@@ -43,7 +51,14 @@ internal sealed class StreamLogitProcess : IDisposable
     /// <summary>Runs the program to its end with environment variables.</summary>
     public static ProgramResult RunWith((string Name, string Value)[] environment, params string[] arguments)
     {
-        using var process = Start(arguments, environment);
+        using var process = Start("dotnet", [Program, .. arguments], environment, []);
+        return process.WaitForEnd();
+    }
+
+    /// <summary>Runs the program to its end with these bytes as its standard input.</summary>
+    public static ProgramResult RunOn(byte[] input, params string[] arguments)
+    {
+        using var process = Start("dotnet", [Program, .. arguments], [], input);
         return process.WaitForEnd();
     }
 
@@ -52,9 +67,29 @@ internal sealed class StreamLogitProcess : IDisposable
         if (!_process.WaitForExit(Patience))
         {
             _process.Kill();
-            throw new TimeoutException("The program did not end. It said: " + _errors.Result);
+            throw new TimeoutException("The program did not end. It said: " + string.Join('\n', _errorLines));
         }
-        return new ProgramResult(_process.ExitCode, _output.Result, _errors.Result);
+        _errors.Wait();
+        _errorLinesSeen.AddRange(_errorLines);
+        return new ProgramResult(_process.ExitCode, _output.Result, string.Concat(_errorLinesSeen.Select(line => line + "\n")));
+    }
+
+    /// <summary>Waits until the program says something on standard error.</summary>
+    public void WaitForMessage(string part)
+    {
+        foreach (string line in _errorLines.GetConsumingEnumerable(new CancellationTokenSource(Patience).Token))
+        {
+            _errorLinesSeen.Add(line);
+            if (line.Contains(part, StringComparison.Ordinal)) return;
+        }
+        throw new InvalidOperationException($"The program ended without saying '{part}': " + string.Join('\n', _errorLinesSeen));
+    }
+
+    /// <summary>Waits until a file has so many bytes, or the program has ended.</summary>
+    public void WaitForLength(string path, long bytes)
+    {
+        var wait = new SpinWait();
+        while (!HasExited && !(File.Exists(path) && new FileInfo(path).Length >= bytes)) wait.SpinOnce();
     }
 
     /// <summary>Ends the process without giving it a chance to do anything: SIGKILL.</summary>
@@ -63,14 +98,19 @@ internal sealed class StreamLogitProcess : IDisposable
     /// <summary>Asks the process to end: SIGTERM.</summary>
     public void Terminate()
     {
-        using var kill = Process.Start("kill", ["-TERM", _process.Id.ToString(System.Globalization.CultureInfo.InvariantCulture)]);
+        using var kill = Process.Start("kill", ["-TERM", _process.Id.ToString(CultureInfo.InvariantCulture)]);
         kill.WaitForExit();
     }
 
     public void Dispose()
     {
-        if (!_process.HasExited) _process.Kill();
+        if (!_process.HasExited)
+        {
+            _process.Kill();
+            _process.WaitForExit();
+        }
         _process.Dispose();
+        _errorLines.Dispose();
     }
 
     private static async Task<byte[]> ReadAsync(Stream stream)

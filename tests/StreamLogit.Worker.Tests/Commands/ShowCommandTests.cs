@@ -1,0 +1,74 @@
+using StreamLogit.Worker.Tests.Running;
+
+namespace StreamLogit.Worker.Tests.Commands;
+
+public sealed class ShowCommandTests : IDisposable
+{
+    private readonly WorkerFolder _folder = new();
+
+    public void Dispose() => _folder.Dispose();
+
+    [Fact]
+    public void Show_Json_HasTheseMembersAndTheModel()
+    {
+        RunDemo();
+
+        var json = StreamLogitProcess.Run("show", _folder.State, "--json").Json;
+
+        Assert.Equal(["version", "settings", "blend"], json.EnumerateObject().Select(member => member.Name));
+        Assert.Equal(9_920, json.GetProperty("version").GetInt64());
+        var settings = json.GetProperty("settings").EnumerateArray().ToList();
+        Assert.Equal(4, settings.Count);
+        Assert.All(settings, setting =>
+        {
+            Assert.Equal(["name", "intercept", "coefficients"], setting.EnumerateObject().Select(member => member.Name));
+            var coefficients = setting.GetProperty("coefficients").EnumerateArray().ToList();
+            Assert.All(coefficients, coefficient => Assert.Equal(["feature", "value"], coefficient.EnumerateObject().Select(member => member.Name)));
+            var values = coefficients.ToDictionary(c => c.GetProperty("feature").GetString()!, c => c.GetProperty("value").GetDouble());
+            // Worn bearings shake and run hot; that sensor reads too high since midway.
+            Assert.InRange(values["bearing.vibration"], 0.3, 3);
+            Assert.InRange(values["bearing.temperature"], 0.3, 3);
+            Assert.Contains("station=dunmoor", values.Keys);
+            Assert.Contains("flow missing", values.Keys);
+        });
+        Assert.Equal(settings.Select(s => s.GetProperty("name").GetString()), json.GetProperty("blend").EnumerateArray().Select(b => b.GetProperty("name").GetString()));
+        Assert.Equal(1, json.GetProperty("blend").EnumerateArray().Sum(b => b.GetProperty("weight").GetDouble()), 1e-12);
+    }
+
+    [Fact]
+    public void Show_Table_HasTheLargestCoefficientsFirst()
+    {
+        RunDemo();
+
+        var result = StreamLogitProcess.Run("show", _folder.State, "--top", "3");
+        var byFile = StreamLogitProcess.Run("show", Path.Combine(_folder.State, "state.db"), "--top", "3");
+
+        Assert.Equal(0, result.ExitCode);
+        Assert.DoesNotContain('\u001b', result.Output);
+        Assert.Equal(5, result.Table("setting").Count);
+        var coefficients = result.Table("feature").Skip(1).ToList();
+        Assert.Equal(3, coefficients.Count);
+        Assert.Equal("bearing.vibration", coefficients[0][0]);
+        Assert.Equal(coefficients, coefficients.OrderByDescending(row => Math.Abs(double.Parse(row[1]))));
+        Assert.Equal(result.Output, byFile.Output);
+    }
+
+    [Fact]
+    public void Show_NoState_ExitsWith2()
+    {
+        Directory.CreateDirectory(_folder["empty"]);
+        Directory.CreateDirectory(_folder["garbage"]);
+        File.WriteAllText(Path.Combine(_folder["garbage"], "state.db"), "this is no database, but it is long enough to be read as one");
+
+        Assert.All([_folder["nowhere"], _folder["empty"], _folder["garbage"]], path =>
+        {
+            var result = StreamLogitProcess.Run("show", path);
+            Assert.Equal(2, result.ExitCode);
+            Assert.StartsWith("streamlogit: ", result.Errors, StringComparison.Ordinal);
+            Assert.DoesNotContain("   at ", result.Errors, StringComparison.Ordinal);
+            Assert.Empty(result.Output);
+        });
+    }
+
+    private void RunDemo() => Assert.Equal(0, StreamLogitProcess.Run(_folder.Demo().RunArguments(100_000)).ExitCode);
+}

@@ -1,0 +1,28 @@
+using StreamLogit.Worker.Tests.Running;
+
+namespace StreamLogit.Worker.Tests.Crashes;
+
+/// <summary>A run from beginning to end over a recording of which every hundredth line is spoilt, with which disturbed runs are compared.</summary>
+public sealed class UndisturbedRun : IDisposable
+{
+    private const int Records = 60_000;
+
+    public UndisturbedRun()
+    {
+        Folder.Synthesize(Records, seed: 77);
+        string[] lines = File.ReadAllLines(Folder.Recording);
+        for (int i = 50; i < lines.Length; i += 100) lines[i] = lines[i][..^5];
+        File.WriteAllLines(Folder.Recording, lines);
+
+        Assert.Equal(0, StreamLogitProcess.Run(Folder.RunArguments(Records)).ExitCode);
+        Assert.InRange(File.ReadLines(Folder.Rejects).Count(), Records / 100, Records / 50);
+        Model = StreamLogitProcess.Run("show", Folder.State, "--json").Output;
+    }
+
+    internal WorkerFolder Folder { get; } = new();
+
+    /// <summary>The model at its end, as <c>show --json</c> writes it.</summary>
+    internal string Model { get; }
+
+    public void Dispose() => Folder.Dispose();
+}
