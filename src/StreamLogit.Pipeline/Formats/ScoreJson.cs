@@ -7,12 +7,12 @@ using StreamLogit.Engine.Records;
 namespace StreamLogit.Pipeline.Formats;
 
 /// <summary>
-/// Writes scores as JSON objects. Doubles stand there with the fewest digits that give the same bits when they are read again.
+/// Writes scores as JSON objects. Probability and log-odds have the fewest digits that give the same bits when they are read again;
+/// contributions are rounded to millionths.
 /// </summary>
 public sealed class ScoreJson
 {
-    // -1.2345678901234567E-308 has 24 characters; 32 leaves room.
-    private const int NumberLength = 32;
+    // The names and punctuation of a score, and numbers of at most 26 characters.
     private const int FixedLength = 256;
 
     private readonly byte[][] _features;
@@ -24,7 +24,7 @@ public sealed class ScoreJson
     {
         _features = [.. definition.Features.Select(feature => JsonText.Escape(feature.Name))];
         _cutoff = JsonText.Escape(definition.Decision.Cutoff.ToString("R", CultureInfo.InvariantCulture));
-        _reasonLength = _features.Select(feature => feature.Length).DefaultIfEmpty().Max() + NumberLength + 32;
+        _reasonLength = _features.Select(feature => feature.Length).DefaultIfEmpty().Max() + RoundedNumber.MaximumLength + 32;
     }
 
     /// <summary>Adds a score to a buffer, without a line end.</summary>
@@ -55,7 +55,7 @@ public sealed class ScoreJson
             Text(i == 0 ? "{\"feature\":\""u8 : ",{\"feature\":\""u8, room, ref at);
             Text(_features[reasons[i].Feature], room, ref at);
             Text("\",\"contribution\":"u8, room, ref at);
-            Number(reasons[i].Contribution, room, ref at);
+            at += RoundedNumber.Write(reasons[i].Contribution, room[at..]);
             room[at++] = (byte)'}';
         }
         Text("]}"u8, room, ref at);

@@ -39,7 +39,7 @@ public sealed class ScoreJsonTests
     [Fact]
     public void Write_Alert_HasAllParts()
     {
-        var score = Write("t\"1\n", 0.25, -1.5, isAlert: true, new Reason(1, -0.1), new Reason(0, 1e-20));
+        var score = Write("t\"1\n", 0.25, -1.5, isAlert: true, new Reason(1, -0.1), new Reason(0, 0.0500004));
 
         Assert.Equal(
             ["id", "time", "probability", "logOdds", "decision", "cutoff", "version", "reasons"], score.EnumerateObject().Select(p => p.Name));
@@ -49,25 +49,24 @@ public sealed class ScoreJsonTests
         Assert.Equal(1e-7, score.GetProperty("cutoff").GetDouble());
         Assert.Equal(long.MaxValue, score.GetProperty("version").GetInt64());
         Assert.Equal(
-            [("x & y", -0.1), ("a \"quoted\" näme", 1e-20)],
+            [("x & y", -0.1), ("a \"quoted\" näme", 0.05)],
             score.GetProperty("reasons").EnumerateArray().Select(r => (r.GetProperty("feature").GetString()!, r.GetProperty("contribution").GetDouble())));
     }
 
     [Fact]
-    public void Write_AnyDoubles_ReadBackToTheSameBits() => Gen.Double.Where(double.IsFinite).Array[3].Sample(values =>
+    public void Write_AnyDoubles_ReadBackToTheSameBits() => Gen.Double.Where(double.IsFinite).Array[2].Sample(values =>
     {
-        var score = Write("t", values[0], values[1], false, new Reason(0, values[2]));
+        var score = Write("t", values[0], values[1]);
 
         Assert.Equal(BitConverter.DoubleToInt64Bits(values[0]), BitConverter.DoubleToInt64Bits(score.GetProperty("probability").GetDouble()));
         Assert.Equal(BitConverter.DoubleToInt64Bits(values[1]), BitConverter.DoubleToInt64Bits(score.GetProperty("logOdds").GetDouble()));
-        Assert.Equal(values[2], score.GetProperty("reasons")[0].GetProperty("contribution").GetDouble());
     }, seed: "0000000000000", iter: 2000);
 
     [Fact]
     public void Write_LongestEverything_FitsIntoItsRoom()
     {
         string id = new('\u0001', 5000);
-        var longest = new Reason(0, -double.Epsilon * 1e10);
+        var longest = new Reason(0, -1.2345678901234567e+308);
 
         Assert.Equal(id, Write(id, double.Epsilon, -1.2345678901234567e-308, false, longest, longest).GetProperty("id").GetString());
     }
