@@ -38,42 +38,35 @@ internal sealed class CsvHeader
     /// </summary>
     public void WriteObject(ReadOnlySpan<byte> row, ReadOnlySpan<CsvCell> cells, ArrayBufferWriter<byte> json)
     {
-        byte before = (byte)'{';
+        bool isFirst = true;
         for (int column = 0; column < cells.Length; column++)
         {
             var cell = cells[column];
             if (cell.Length == 0) continue;
             var text = row.Slice(cell.Start, cell.Length);
-            byte[] key = _keys[column];
-            var room = json.GetSpan(1 + key.Length + 2 + JsonText.MaximumLength(text.Length));
-            room[0] = before;
-            key.CopyTo(room[1..]);
-            int written = 1 + key.Length;
+            json.Write(isFirst ? "{"u8 : ","u8);
+            json.Write(_keys[column]);
+            isFirst = false;
             if (JsonText.IsNumber(text))
             {
-                text.CopyTo(room[written..]);
-                written += text.Length;
+                json.Write(text);
+                continue;
             }
-            else
-            {
-                room[written++] = (byte)'"';
-                written += cell.HasDoubledQuotes ? WriteUndoubled(text, room[written..]) : JsonText.Write(text, room[written..]);
-                room[written++] = (byte)'"';
-            }
-            json.Advance(written);
-            before = (byte)',';
+            json.Write("\""u8);
+            if (cell.HasDoubledQuotes) WriteUndoubled(text, json);
+            else JsonText.Write(text, json);
+            json.Write("\""u8);
         }
-        json.Write(before == '{' ? "{}"u8 : "}"u8);
+        json.Write(isFirst ? "{}"u8 : "}"u8);
     }
 
-    private static int WriteUndoubled(ReadOnlySpan<byte> text, Span<byte> room)
+    private static void WriteUndoubled(ReadOnlySpan<byte> text, ArrayBufferWriter<byte> json)
     {
-        int written = 0;
         while (text.IndexOf((byte)'"') is >= 0 and int quote)
         {
-            written += JsonText.Write(text[..(quote + 1)], room[written..]);
+            JsonText.Write(text[..(quote + 1)], json);
             text = text[(quote + 2)..];
         }
-        return written + JsonText.Write(text, room[written..]);
+        JsonText.Write(text, json);
     }
 }

@@ -6,6 +6,8 @@ namespace StreamLogit.Pipeline.Formats;
 /// <summary>Text within JSON (RFC 8259), as UTF-8: what must be escaped is, and nothing else.</summary>
 public static class JsonText
 {
+    private const int PieceLength = 1 << 14;
+
     private static readonly SearchValues<byte> Escaped = SearchValues.Create(
         [.. Enumerable.Range(0, 0x20).Select(i => (byte)i), (byte)'"', (byte)'\\']);
 
@@ -37,20 +39,30 @@ public static class JsonText
         }
     }
 
-    /// <summary>
-    /// Writes bytes that need not be UTF-8: each longest piece that cannot begin a character (Unicode 16, section 3.9.6) becomes the escape <c>\ufffd</c>.
-    /// </summary>
-    /// <returns>How many bytes were written.</returns>
-    public static int WriteBytes(ReadOnlySpan<byte> bytes, Span<byte> room)
+    /// <summary>Adds UTF-8 text escaped, without quotes around it, to a buffer, which grows no more than it must.</summary>
+    public static void Write(ReadOnlySpan<byte> text, ArrayBufferWriter<byte> buffer)
     {
-        int written = 0;
+        do
+        {
+            var piece = text[..Math.Min(text.Length, PieceLength)];
+            buffer.Advance(Write(piece, buffer.GetSpan(MaximumLength(piece.Length) + 1)));
+            text = text[piece.Length..];
+        }
+        while (text.Length > 0);
+    }
+
+    /// <summary>
+    /// Adds bytes that need not be UTF-8: for each longest piece that cannot begin a character (Unicode 16, section 3.9.6) stands the
+    /// escape <c>\ufffd</c>.
+    /// </summary>
+    public static void WriteBytes(ReadOnlySpan<byte> bytes, ArrayBufferWriter<byte> buffer)
+    {
         while (true)
         {
             int valid = ValidPrefix(bytes, out int invalid);
-            written += Write(bytes[..valid], room[written..]);
-            if (valid == bytes.Length) return written;
-            "\\ufffd"u8.CopyTo(room[written..]);
-            written += 6;
+            Write(bytes[..valid], buffer);
+            if (valid == bytes.Length) return;
+            buffer.Write("\\ufffd"u8);
             bytes = bytes[(valid + invalid)..];
         }
     }

@@ -31,8 +31,7 @@ public static class RejectJson
             WriteText(record.Detail, buffer);
             buffer.Write("\",\"record\":\""u8);
         }
-        var bytes = records.RecordBytes(index);
-        buffer.Advance(JsonText.WriteBytes(bytes, buffer.GetSpan(JsonText.MaximumLength(bytes.Length))));
+        JsonText.WriteBytes(records.RecordBytes(index), buffer);
         buffer.Write("\"}"u8);
     }
 

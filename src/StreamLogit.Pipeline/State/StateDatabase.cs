@@ -15,10 +15,6 @@ internal sealed class StateDatabase : IDisposable
     /// <summary>The file in the state folder.</summary>
     public const string FileName = "state.db";
 
-    // "SLgt", so that the program file(1) and a stray open tell a state from another SQLite database.
-    private const int ApplicationId = 0x534c6774;
-    private const int FormatVersion = 1;
-
     private readonly SqliteConnection _connection;
     private readonly SqliteCommand _putBlock;
     private readonly SqliteCommand _removeBlock;
@@ -49,7 +45,7 @@ internal sealed class StateDatabase : IDisposable
         try
         {
             connection.Open();
-            Prepare(connection, path, mode);
+            StateSchema.Prepare(connection, path, mode);
             return new StateDatabase(path, connection);
         }
         catch
@@ -155,47 +151,6 @@ internal sealed class StateDatabase : IDisposable
         _putBlock.Dispose();
         _removeBlock.Dispose();
         _connection.Dispose();
-    }
-
-    private static void Prepare(SqliteConnection connection, string path, SqliteOpenMode mode)
-    {
-        using var command = connection.CreateCommand();
-        int applicationId = (int)Pragma("application_id");
-        int version = (int)Pragma("user_version");
-        bool isNew = applicationId == 0 && version == 0 && Pragma("schema_version") == 0;
-        if (!isNew && applicationId != ApplicationId)
-            throw StorageFault.Damaged(path, "it is a database of another program");
-        if (version > FormatVersion)
-            throw new PipelineException($"The state {path} was written by a later version of this program (format {version}; this one reads up to {FormatVersion}).");
-        if (mode == SqliteOpenMode.ReadOnly)
-        {
-            if (isNew) throw new PipelineException($"The state {path} is empty.");
-            return;
-        }
-
-        // FULL has a commit on the disk before it counts; in WAL mode that is one fsync a commit.
-        command.CommandText = "PRAGMA journal_mode = WAL; PRAGMA synchronous = FULL; PRAGMA journal_size_limit = 67108864;";
-        command.ExecuteNonQuery();
-        if (!isNew) return;
-        command.CommandText = $"""
-            BEGIN IMMEDIATE;
-            CREATE TABLE meta(key TEXT PRIMARY KEY, value TEXT NOT NULL) WITHOUT ROWID;
-            CREATE TABLE positions(place INTEGER PRIMARY KEY, origin TEXT NOT NULL, offset INTEGER NOT NULL,
-                number INTEGER NOT NULL, fingerprint INTEGER NOT NULL);
-            CREATE TABLE outputs(name TEXT PRIMARY KEY, mark INTEGER NOT NULL) WITHOUT ROWID;
-            CREATE TABLE blocks(part TEXT NOT NULL, number INTEGER NOT NULL, hash INTEGER NOT NULL, bytes BLOB NOT NULL,
-                PRIMARY KEY(part, number)) WITHOUT ROWID;
-            PRAGMA application_id = {ApplicationId};
-            PRAGMA user_version = {FormatVersion};
-            COMMIT;
-            """;
-        command.ExecuteNonQuery();
-
-        long Pragma(string name)
-        {
-            command.CommandText = $"PRAGMA {name}";
-            return (long)(command.ExecuteScalar() ?? 0L);
-        }
     }
 
     private static long Hash(byte[] bytes) => unchecked((long)XxHash3.HashToUInt64(bytes));

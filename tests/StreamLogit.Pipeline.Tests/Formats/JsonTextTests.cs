@@ -1,3 +1,4 @@
+using System.Buffers;
 using System.Text;
 using System.Text.Json;
 using CsCheck;
@@ -9,8 +10,9 @@ public sealed class JsonTextTests
 {
     private static string WriteBytes(byte[] bytes)
     {
-        byte[] room = new byte[JsonText.MaximumLength(bytes.Length)];
-        return Encoding.UTF8.GetString(room.AsSpan(0, JsonText.WriteBytes(bytes, room)));
+        var buffer = new ArrayBufferWriter<byte>();
+        JsonText.WriteBytes(bytes, buffer);
+        return Encoding.UTF8.GetString(buffer.WrittenSpan);
     }
 
     [Fact]
@@ -39,6 +41,17 @@ public sealed class JsonTextTests
         string expected = Encoding.UTF8.GetString(bytes);
         Assert.Equal(expected, JsonSerializer.Deserialize<string>($"\"{WriteBytes(bytes)}\""));
     }, seed: "0000000000000");
+
+    [Fact]
+    public void WriteBytes_LongText_IsWholeInABufferOfItsSize()
+    {
+        byte[] bytes = Encoding.UTF8.GetBytes(string.Concat(Enumerable.Repeat("aé€\n", 100_000)));
+        var buffer = new ArrayBufferWriter<byte>();
+        JsonText.WriteBytes(bytes, buffer);
+
+        Assert.Equal(Encoding.UTF8.GetString(bytes), JsonSerializer.Deserialize<string>($"\"{Encoding.UTF8.GetString(buffer.WrittenSpan)}\""));
+        Assert.InRange(buffer.Capacity, 0, bytes.Length * 3);
+    }
 
     [Fact]
     public void IsNumber_AnyText_IsWhatAJsonReaderSays() => Gen.String[Gen.Char["-+.eE0012"], 0, 8].Sample(text =>

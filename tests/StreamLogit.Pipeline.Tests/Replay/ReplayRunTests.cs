@@ -59,6 +59,22 @@ public sealed class ReplayRunTests : IDisposable
         Assert.Equal(replay.ScoreHash, ScoreFileHash.Of(_folder["scores.jsonl"]));
     }
 
+    [Theory]
+    [InlineData(RecordingFormat.JsonLines)]
+    [InlineData(RecordingFormat.Csv)]
+    public async Task Run_Noise_RejectsEveryRecord(RecordingFormat format)
+    {
+        byte[] noise = new byte[1_000_000];
+        new Random(3).NextBytes(noise);
+        string path = _folder.Write("noise", [.. "id,time\n"u8, .. noise]);
+        using var replay = new ReplayRun(LoopStream.Engine, [new FileSourceOptions(path, format)], new LoopOptions(), TimeProvider.System);
+        var result = await replay.RunAsync(TestContext.Current.CancellationToken);
+
+        Assert.True(result.Health.Records > 3000);
+        Assert.Equal(result.Health.Records, result.Health.Rejected);
+        Assert.Equal(replay.Progress.Source.TotalBytes, replay.Progress.Source.Bytes);
+    }
+
     [Fact]
     public async Task Run_Stopped_Throws()
     {
