@@ -52,6 +52,9 @@ public sealed class ScoringEngine
     /// <summary>Whether scores are given their reasons, which costs time and changes nothing else. Default true.</summary>
     public bool GiveReasons { get; set; } = true;
 
+    /// <summary>Is shown every event whose label becomes known, before the engine learns from it; for fits, baselines and comparisons. Changes nothing.</summary>
+    public LabelledEventTaker? Labelled { get; set; }
+
     private long? Clock => _clockMicroseconds == long.MinValue ? null : _clockMicroseconds;
 
     /// <summary>An empty batch for the scores of this engine.</summary>
@@ -150,7 +153,7 @@ public sealed class ScoringEngine
 
         if (isLabelled)
         {
-            Learn(encoded, _logOdds, logOdds, isFresh: true, record.Label, double.IsNaN(record.Weight) ? 1 : record.Weight);
+            Learn(encoded, _logOdds, logOdds, isFresh: true, record.Label, double.IsNaN(record.Weight) ? 1 : record.Weight, _clockMicroseconds);
             return;
         }
         var header = new AwaitingHeader
@@ -194,13 +197,24 @@ public sealed class ScoringEngine
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
         if (double.IsNaN(weight)) weight = double.IsNaN(header.Weight) ? 1 : header.Weight;
-        Learn(scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, weight);
+        Learn(scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, weight, header.ScoredAtMicroseconds);
         _awaiting.Remove(place);
     }
 
     private void Learn(
-        in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, double publishedLogOdds, bool isFresh, int label, double weight)
+        in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, double publishedLogOdds, bool isFresh, int label, double weight,
+        long scoredAtMicroseconds)
     {
+        Labelled?.Invoke(new LabelledEvent
+        {
+            Vector = vector,
+            SettingLogOdds = scoredLogOdds,
+            LogOdds = publishedLogOdds,
+            Label = label,
+            Weight = weight,
+            ScoredAtMicroseconds = scoredAtMicroseconds,
+            KnownAtMicroseconds = _clockMicroseconds,
+        });
         _bank.Learn(vector, scoredLogOdds, isFresh, label, weight, _clockMicroseconds);
         _health.CountLabel(_clockMicroseconds, publishedLogOdds, label, weight);
     }
