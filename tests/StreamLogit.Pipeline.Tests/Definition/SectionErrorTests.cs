@@ -59,6 +59,7 @@ public sealed class SectionErrorTests
     [InlineData("\"learning\": { \"slots\": 134217728 }", "2:24: learning.slots: expected a power of two from 16 to 67108864, found the number 134217728")]
     [InlineData("\"learning\": { \"slots\": \"1024\" }", "2:24: learning.slots: expected a power of two from 16 to 67108864, found the string \"1024\"")]
     [InlineData("\"learning\": { \"slots\": 1e999 }", "2:24: learning.slots: expected a power of two from 16 to 67108864, found the number 1e999")]
+    [InlineData("\"learning\": { \"slots\": 67108864, \"bank\": [ { \"update\": \"ftrl\", \"step\": [ 1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11 ] } ] }", "2:24: learning.slots: 67108864 slots are too many for 11 settings: one array cannot hold what they keep. Take fewer of either")]
     [InlineData("\"learning\": { \"hashSeed\": -1 }", "2:27: learning.hashSeed: expected a whole number from 0 to 18446744073709551615, found the number -1")]
     [InlineData("\"learning\": { \"hashSeed\": 18446744073709551616 }", "2:27: learning.hashSeed: expected a whole number from 0 to 18446744073709551615, found the number 18446744073709551616")]
     [InlineData("\"learning\": { \"startProbability\": 0 }", "2:35: learning.startProbability: expected a number above 0 and below 1, found the number 0")]
