@@ -1,5 +1,4 @@
 using StreamLogit.Engine.Definition;
-using StreamLogit.Engine.Learning;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Worker.Output;
@@ -84,7 +83,8 @@ internal static class DefinitionInWords
 
     private static string Memory(EngineDefinition engine)
     {
+        double coefficients = (double)engine.Learning.Slots * engine.Learning.Bank.Length * sizeof(double);
         return FormattableString.Invariant(
-            $"{FigureText.Bytes(CoefficientTables.Bytes(engine.Learning))} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), and room for every event that awaits its label");
+            $"{FigureText.Bytes(coefficients)} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), and room for every event that awaits its label");
     }
 }

@@ -1,4 +1,0 @@
-namespace StreamLogit.Engine;
-
-/// <summary>Takes a labelled event.</summary>
-public delegate void LabelledEventTaker(in LabelledEvent labelled);
