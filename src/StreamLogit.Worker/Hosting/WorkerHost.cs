@@ -1,3 +1,4 @@
+using Microsoft.Extensions.Configuration;
 using Microsoft.Extensions.DependencyInjection;
 using Microsoft.Extensions.Hosting;
 using Microsoft.Extensions.Logging;
@@ -17,7 +18,10 @@ internal static class WorkerHost
     /// <exception cref="PipelineException">What surrounds the engine is broken.</exception>
     public static async Task RunAsync(StreamRun run)
     {
-        var builder = Host.CreateApplicationBuilder();
+        // Configuration is read once: to watch its files is to watch every folder below the one that the program was started in.
+        var once = new ConfigurationManager();
+        once.AddInMemoryCollection([new("hostBuilder:reloadConfigOnChange", "false")]);
+        var builder = Host.CreateApplicationBuilder(new HostApplicationBuilderSettings { Configuration = once });
         builder.Logging.ClearProviders();
         builder.Logging.AddSimpleConsole(options =>
         {
