@@ -32,6 +32,10 @@ catch (Exception exception) when (exception is PipelineException or IOException 
 {
     return Fail(exception.Message, ExitCode.Failed);
 }
+catch (OutOfMemoryException)
+{
+    return Fail("there is not enough memory for this; check says what a definition needs", ExitCode.Failed);
+}
 catch (Exception exception)
 {
     // Nothing that is expected: what happened, in full, for a report.

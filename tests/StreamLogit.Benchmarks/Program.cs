@@ -1,7 +1,11 @@
+using System.Globalization;
 using BenchmarkDotNet.Running;
+using StreamLogit.Benchmarks;
 using StreamLogit.Benchmarks.Ratios;
 
-// "ratios" prints the table of speed goals, measured side by side in this run; everything else goes to BenchmarkDotNet.
+// "ratios" prints the table of speed goals, measured side by side in this run; "nightly FLIGHTS.jsonl DAYS" the log-loss of a nightly refit;
+// everything else goes to BenchmarkDotNet.
 if (args is ["ratios", .. var names]) return RatioTable.Print(names);
+if (args is ["nightly", var flights, var days]) return NightlyRefitOfFlights.Print(flights, int.Parse(days, CultureInfo.InvariantCulture));
 BenchmarkSwitcher.FromAssembly(typeof(Program).Assembly).Run(args);
 return 0;

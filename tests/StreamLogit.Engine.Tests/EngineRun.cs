@@ -43,7 +43,8 @@ internal sealed class EngineRun
                 ref readonly var score = ref scores.Scores[i];
                 Scores.Add((Encoding.UTF8.GetString(batch.Id(score.Record)), score.Probability, score.LogOdds, score.Version, scores.Reasons(i).ToArray()));
             }
-            foreach (int reject in batch.Rejects) Rejects.Add((batch.Record(reject).Position, batch.Record(reject).Reason));
+            foreach (ref readonly var record in batch.Records)
+                if (record.Kind == RecordKind.Reject) Rejects.Add((record.Position, record.Reason));
         }
         return this;
     }

@@ -11,26 +11,13 @@ internal sealed class MinuteRing(int minutes)
     private readonly Bucket[] _buckets = new Bucket[minutes];
     private readonly DirtyBlocks _dirty = new(minutes, slotsPerBlock: 64);
 
-    /// <returns>The minute.</returns>
-    public int Add(long clockMicroseconds, in LabelSums sums)
+    public void Add(long clockMicroseconds, in LabelSums sums)
     {
-        int minute = MinuteOf(clockMicroseconds);
+        long minute = MinuteOf(clockMicroseconds);
         int place = PlaceOf(minute);
         ref var bucket = ref _buckets[place];
         if (bucket.Minute != minute || bucket.Sums.Count == 0) bucket = new Bucket { Minute = minute };
         bucket.Sums.Add(sums);
-        _dirty.Mark(place);
-        return minute;
-    }
-
-    /// <summary>Puts other sums in the place of some that were added in a minute, if that is still here.</summary>
-    public void Replace(int minute, in LabelSums old, in LabelSums replacement)
-    {
-        int place = PlaceOf(minute);
-        ref var bucket = ref _buckets[place];
-        if (bucket.Minute != minute || bucket.Sums.Count == 0) return;
-        bucket.Sums.Subtract(old);
-        bucket.Sums.Add(replacement);
         _dirty.Mark(place);
     }
 
@@ -65,10 +52,9 @@ internal sealed class MinuteRing(int minutes)
         _dirty.MarkAll();
     }
 
-    // The years 1 to 9999 fit into an int.
-    private static int MinuteOf(long clockMicroseconds)
+    private static long MinuteOf(long clockMicroseconds)
     {
-        int minute = (int)(clockMicroseconds / MicrosecondsPerMinute);
+        long minute = clockMicroseconds / MicrosecondsPerMinute;
         return clockMicroseconds % MicrosecondsPerMinute < 0 ? minute - 1 : minute;
     }
 

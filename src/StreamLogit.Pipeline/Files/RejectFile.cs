@@ -19,9 +19,10 @@ public sealed class RejectFile(FileOutputOptions options) : IScoreSink
     /// <inheritdoc/>
     public void Write(RecordBatch records, ScoreBatch scores)
     {
-        foreach (int reject in records.Rejects)
+        for (int i = 0; i < records.Count; i++)
         {
-            RejectJson.Write(records, reject, _file.Buffer);
+            if (records.Records[i].Kind != RecordKind.Reject) continue;
+            RejectJson.Write(records, i, _file.Buffer);
             _file.EndLine();
         }
         _file.Send();

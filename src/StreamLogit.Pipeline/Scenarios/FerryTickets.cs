@@ -50,6 +50,8 @@ internal sealed class FerryTickets : IScenario
         _cards = new (long, double)[(int)Math.Clamp(eventsPerDay * 40L, 100, 4_000_000)];
     }
 
+    public IReadOnlyList<string> Fields { get; } = ["card", "country", "channel", "route", "vehicle", "gift", "passengers", "daysAhead", "price"];
+
     public double UnlabelledShare => 0.01;
 
     public void Change() => _changed = true;

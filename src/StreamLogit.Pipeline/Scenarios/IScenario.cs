@@ -5,6 +5,9 @@ namespace StreamLogit.Pipeline.Scenarios;
 /// <summary>An invented source of events whose true probabilities are known.</summary>
 internal interface IScenario
 {
+    /// <summary>The names of the fields that its events may have, without those of nested ones.</summary>
+    IReadOnlyList<string> Fields { get; }
+
     /// <summary>The share of events whose label never comes, 0 to 1.</summary>
     double UnlabelledShare { get; }
 

@@ -41,6 +41,8 @@ internal sealed class PumpStations : IScenario
         }
     }
 
+    public IReadOnlyList<string> Fields { get; } = ["station", "pump", "speed", "flow", "pressure", "bearing"];
+
     public double UnlabelledShare => 0.01;
 
     public void Change() => _changed = true;

@@ -35,7 +35,10 @@ public static class ScenarioCatalog
             int perDay = options.EventsPerDay ?? defaultPerDay;
             if (options.Records / perDay > ScenarioCalendar.MaximumDays)
                 throw new ArgumentException("The stream would outlast the year 9999: ask for fewer records or for more events per day.");
-            return new ScenarioWriter(make(perDay, options.Seed), options, idPrefix);
+            var scenario = make(perDay, options.Seed);
+            if (options.TruthField is { } field && (field is "" or "id" or "time" or "label" || scenario.Fields.Contains(field)))
+                throw new ArgumentException($"The events have a field '{field}' already, or cannot have one: give the true probability another name.");
+            return new ScenarioWriter(scenario, options, idPrefix);
         }
     }
 }

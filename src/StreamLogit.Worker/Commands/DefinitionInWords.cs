@@ -1,4 +1,5 @@
 using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Learning;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Worker.Output;
@@ -83,8 +84,7 @@ internal static class DefinitionInWords
 
     private static string Memory(EngineDefinition engine)
     {
-        double coefficients = (double)engine.Learning.Slots * engine.Learning.Bank.Length * sizeof(double);
         return FormattableString.Invariant(
-            $"{FigureText.Bytes(coefficients)} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), and room for every event that awaits its label");
+            $"{FigureText.Bytes(CoefficientTables.Bytes(engine.Learning))} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), and room for every event that awaits its label");
     }
 }

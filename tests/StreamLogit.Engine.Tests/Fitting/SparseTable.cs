@@ -20,6 +20,13 @@ internal sealed class SparseTable
         return rows;
     }
 
+    public delegate void RowTaker(in EncodedVector x, int label);
+
+    public void Each(int from, int to, RowTaker take)
+    {
+        foreach (var (slots, values, label, _) in _rows.Take(to).Skip(from)) take(new EncodedVector(slots, values), label);
+    }
+
     public SparseFit Fit(double l2 = 1, double toleranceNats = 1e-13)
     {
         var columns = new SparseColumns();

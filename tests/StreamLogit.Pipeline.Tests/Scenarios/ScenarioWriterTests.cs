@@ -158,6 +158,18 @@ public sealed class ScenarioWriterTests
         Assert.Throws<ArgumentException>(() => ScenarioCatalog.Create("tram-tickets", new ScenarioOptions()));
 
     [Theory]
+    [InlineData("ferry-tickets")]
+    [InlineData("pump-stations")]
+    public void Create_TruthFieldThatEventsHave_Throws(string scenario)
+    {
+        var names = ScenarioRecords.Read(scenario, new ScenarioOptions { Records = 3_000 }).All
+            .SelectMany(record => record.EnumerateObject()).Select(field => field.Name).Append("").Distinct();
+
+        Assert.All(names, name =>
+            Assert.Throws<ArgumentException>(() => ScenarioCatalog.Create(scenario, new ScenarioOptions { TruthField = name })));
+    }
+
+    [Theory]
     [InlineData(-1, null)]
     [InlineData(1, 0)]
     [InlineData(1, 86_400_001)]

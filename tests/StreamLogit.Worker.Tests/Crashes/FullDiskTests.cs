@@ -7,6 +7,7 @@ public sealed class FullDiskTests(UndisturbedRun undisturbed) : IClassFixture<Un
     [Fact]
     public void Run_NoRoomForScores_SaysSoAndResumesWithRoom()
     {
+        Assert.SkipUnless(File.Exists("/dev/full"), "There is no device that is always full here.");
         using var full = new WorkerFolder();
         File.Copy(undisturbed.Folder.Recording, full.Recording);
         // The device that is always full.

@@ -41,6 +41,7 @@ public sealed class KillTests(UndisturbedRun undisturbed) : IClassFixture<Undist
         var last = StreamLogitProcess.Run(killed.RunArguments(commitEvery));
 
         Assert.Equal(0, last.ExitCode);
+        Assert.Equal(undisturbed.Output, last.Output);
         Assert.True(File.ReadAllBytes(undisturbed.Folder.Scores).AsSpan().SequenceEqual(File.ReadAllBytes(killed.Scores)));
         Assert.True(File.ReadAllBytes(undisturbed.Folder.Rejects).AsSpan().SequenceEqual(File.ReadAllBytes(killed.Rejects)));
         Assert.Equal(undisturbed.Model, StreamLogitProcess.Run("show", killed.State, "--json").Output);

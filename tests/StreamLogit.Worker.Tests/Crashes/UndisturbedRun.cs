@@ -14,12 +14,17 @@ public sealed class UndisturbedRun : IDisposable
         for (int i = 50; i < lines.Length; i += 100) lines[i] = lines[i][..^5];
         File.WriteAllLines(Folder.Recording, lines);
 
-        Assert.Equal(0, StreamLogitProcess.Run(Folder.RunArguments(Records)).ExitCode);
+        var run = StreamLogitProcess.Run(Folder.RunArguments(Records));
+        Assert.Equal(0, run.ExitCode);
+        Output = run.Output;
         Assert.InRange(File.ReadLines(Folder.Rejects).Count(), Records / 100, Records / 50);
         Model = StreamLogitProcess.Run("show", Folder.State, "--json").Output;
     }
 
     internal WorkerFolder Folder { get; } = new();
+
+    /// <summary>What it wrote to standard output: its counts and losses.</summary>
+    internal string Output { get; }
 
     /// <summary>The model at its end, as <c>show --json</c> writes it.</summary>
     internal string Model { get; }

@@ -1,5 +1,6 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Learning;
 
 namespace StreamLogit.Pipeline.Definition.Sections;
 
@@ -14,14 +15,15 @@ internal static class LearningSection
     {
         var defaults = new LearningOptions();
         if (value?.Object() is not { } section) return defaults;
-        int? slots = section.Optional("slots")?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
+        var slotsKey = section.Optional("slots");
+        int? slots = slotsKey?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
         ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
         var bank = section.Optional("bank") is { } written ? BankSection.Read(written, denseCoefficients) : defaults.Bank;
         double? startProbability = section.Optional("startProbability")?.Number(NumberRange.BetweenZeroAndOne);
         string? publish = ReadPublish(section.Optional("publish"), bank);
         double? switchRate = section.Optional("switchRate")?.Number(NumberRange.ZeroToOne);
         section.End();
-        return new LearningOptions
+        var options = new LearningOptions
         {
             Slots = slots ?? defaults.Slots,
             HashSeed = hashSeed ?? defaults.HashSeed,
@@ -30,6 +32,9 @@ internal static class LearningSection
             PublishedSetting = publish,
             SwitchRate = switchRate ?? defaults.SwitchRate,
         };
+        if (!CoefficientTables.CanBeMade(options))
+            slotsKey?.Error($"{options.Slots} slots are too many for {options.Bank.Length} settings: one array cannot hold what they keep. Take fewer of either");
+        return options;
     }
 
     private static string? ReadPublish(ValueReader? value, ImmutableArray<SettingOptions>? bank)
