@@ -3,7 +3,7 @@ namespace StreamLogit.Engine.Records;
 /// <summary>Passes over values that nobody reads, but checks them as strictly as the others.</summary>
 internal sealed unsafe class SkippedValues(int maximumDepth, JsonFault fault, OpenKeys keys)
 {
-    private const int Array = -1;
+    private const int InArray = -1;
 
     /// <summary>For every object open: how many keys there were before it. For an array -1.</summary>
     private int[] _open = new int[32];
@@ -22,8 +22,8 @@ internal sealed unsafe class SkippedValues(int maximumDepth, JsonFault fault, Op
             if (isObject || *at == '[')
             {
                 if (depth + open >= maximumDepth) return fault.StopTooDeep(at);
-                if (open == _open.Length) System.Array.Resize(ref _open, open * 2);
-                _open[open++] = isObject ? keys.Count : Array;
+                if (open == _open.Length) Array.Resize(ref _open, open * 2);
+                _open[open++] = isObject ? keys.Count : InArray;
                 at = JsonSyntax.SkipSpace(at + 1);
                 if (*at != (isObject ? '}' : ']'))
                 {
@@ -51,11 +51,11 @@ internal sealed unsafe class SkippedValues(int maximumDepth, JsonFault fault, Op
                 if (*at == ',')
                 {
                     at = JsonSyntax.SkipSpace(at + 1);
-                    if (first != Array) at = Key(at);
+                    if (first != InArray) at = Key(at);
                     if (at == null) return null;
                     isNext = true;
                 }
-                else if (first == Array)
+                else if (first == InArray)
                 {
                     if (*at != ']') return fault.Stop(at, "',' or ']'");
                     at++;

@@ -74,7 +74,7 @@ public class EncodingFaultTests
     {
         string[] surrogates =
         [
-            "\\ud800", "\\uDBFF", "\\udc00", "\\uDFFF", "\\ud800x", "x\\ud800", "\\ud800\\n", "\\ud800\\u0041", "\\ud800\\ud800", "\\udc00\\ud800", "\\ud83d\\ud83d\\ude00",
+            "\\ud800", "\\uDBFF", "\\udc00", "\\uDFFF", "\\ud800x", "x\\ud800", "\\ud800\\n", "\\ud800\\u0041", "\\ud800\\ud800", "\\udc00\\ud800", "\\udc00\\udc00", "\\ud83d\\ud83d\\ude00",
             "\\ud83d\\ude00\\ude00", "\\ud83d \\ude00", "\\ud83d\\\\ude00", "0123456789abcdef\\ud800", "\\udbff\\ue000", "\\udbff\\ud7ff",
         ];
         foreach (var place in Places)

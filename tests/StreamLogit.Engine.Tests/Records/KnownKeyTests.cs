@@ -38,7 +38,7 @@ public class KnownKeyTests
     [Fact]
     public void Decode_KeysThatBeginOrEndAlike_AreToldApart()
     {
-        string[] names = ["amount", "amount1", "amount2", "amounts", "1amount", "amount-of-the-day", "amount-of-one-day", "amount-of-the-dab", "", "q", "b", "\"", "\\", "\n", "é", "a.b"];
+        string[] names = ["amount", "amount1", "amount2", "amounts", "1amount", "amount-of-the-day", "amount-of-one-day", "amount-of-the-dab", "amount-of-the-other-day", "amount-of-any-other-day", "", "q", "b", "\"", "\\", "\n", "é", "a.b"];
         var schema = DecodedText.SchemaOf(DecodedText.Options, [.. names.Select(name => new NumberFeature(name, NumberScale.None))]);
         var batch = new RecordBatch(schema);
         for (int only = 0; only < names.Length; only++)

@@ -16,6 +16,7 @@ public class RejectReasonTests
     [InlineData(RejectReason.NotJson, Start + "}}", "at byte 41: the end of the record is wanted")]
     [InlineData(RejectReason.NotJson, Start + ",\"amount\":01}", "at byte 51: a number without leading zeros is wanted")]
     [InlineData(RejectReason.NotUtf8, Start + ",\"x\":\"\\ud800\"}", "the escape at byte 46 is half of a surrogate pair")]
+    [InlineData(RejectReason.NotUtf8, Start + ",\"x\":\"\\ud800\\ud801\"}", "the escape at byte 46 is half of a surrogate pair")]
     [InlineData(RejectReason.NotObject, "[]", "the record is an array; an object is wanted")]
     [InlineData(RejectReason.NotObject, " null", "the record is null; an object is wanted")]
     [InlineData(RejectReason.NotObject, "\"a\"", "the record is a string; an object is wanted")]
