@@ -4,7 +4,7 @@ namespace StreamLogit.Pipeline.Tests.Replay.Comparison;
 
 public sealed class IntervalCoverageTests
 {
-    private const int Pairs = 300;
+    private const int Pairs = 1000;
 
     [Theory]
     [InlineData(40, 6)]
