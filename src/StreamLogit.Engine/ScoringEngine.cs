@@ -1,3 +1,4 @@
+using System.Text;
 using StreamLogit.Engine.Awaiting;
 using StreamLogit.Engine.Decisions;
 using StreamLogit.Engine.Definition;
@@ -20,23 +21,30 @@ public sealed class ScoringEngine
 
     private readonly FeatureEncoder _encoder;
     private readonly Bank _bank;
+    private readonly StreamClock _clock;
     private readonly AwaitingStore _awaiting;
+    private readonly EarlyLabels _early;
     private readonly HealthLedger _health;
     private readonly ReasonFinder _reasons;
     private readonly double[] _logOdds; // of every setting for the event at hand
     private readonly double[] _coefficients;
-    private long _clockMicroseconds = long.MinValue;
     private long _records;
-    private long _expired;
+    private long _version; // labels learned, corrections included
+    private LabelEvents _events;
 
     /// <summary>An engine that has seen nothing.</summary>
-    public ScoringEngine(EngineDefinition definition)
+    /// <param name="definition">What it computes.</param>
+    /// <param name="archive">Where it puts what it has no room for in memory, or null where all stays in memory.</param>
+    public ScoringEngine(EngineDefinition definition, IBlockArchive? archive = null)
     {
         Definition = definition;
         Schema = new RecordSchema(definition);
         _encoder = new FeatureEncoder(definition, Schema);
         _bank = new Bank(definition.Learning, _encoder.SlotCount, _encoder.FirstDenseSlot);
-        _awaiting = new AwaitingStore(_bank.SettingCount, definition.Labels.WaitMicroseconds);
+        _clock = new StreamClock(definition.Record.AheadMicroseconds);
+        _awaiting = new AwaitingStore(
+            _bank.SettingCount, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive);
+        _early = new EarlyLabels(definition.Labels.EarlyMicroseconds);
         _health = new HealthLedger(definition.Health);
         _reasons = new ReasonFinder(definition.Features.Length);
         _logOdds = new double[_bank.SettingCount];
@@ -55,7 +63,8 @@ public sealed class ScoringEngine
     /// <summary>Is shown every event whose label becomes known, before the engine learns from it; for fits, baselines and comparisons. Changes nothing.</summary>
     public LabelledEventTaker? Labelled { get; set; }
 
-    private long? Clock => _clockMicroseconds == long.MinValue ? null : _clockMicroseconds;
+    /// <summary>The parts of the state that the engine reads from its archive, where it has one, and not from the blocks that it loads.</summary>
+    public static IReadOnlyList<string> ArchivedParts { get; } = [AwaitingStore.SegmentsPart];
 
     /// <summary>An empty batch for the scores of this engine.</summary>
     public ScoreBatch CreateScoreBatch() => new(Definition.Decision.Reasons);
@@ -66,20 +75,29 @@ public sealed class ScoringEngine
         for (int i = 0; i < records.Count; i++)
         {
             _records++;
-            ref var record = ref records.Records[i];
-            if (record.Kind == RecordKind.Label) TakeLabel(records, i, ref record);
-            else if (record.Kind != RecordKind.Reject) TakeEvent(records, i, ref record, scores);
-            if (record.Kind == RecordKind.Reject) _health.CountReject(record.Reason);
+            if (records.Records[i].Kind != RecordKind.Reject) Take(records, i, scores);
+            if (records.Records[i].Kind == RecordKind.Reject) ListReject(records, i);
         }
     }
 
+    /// <summary>
+    /// Ends a stream that is known to bring nothing more: labels that still wait for their event become rejects of <paramref name="records"/>,
+    /// a batch that the engine has processed already or an empty one.
+    /// </summary>
+    public void End(RecordBatch records) => RejectEarlyLabels(records, clockMicroseconds: long.MaxValue);
+
     /// <summary>How the published probabilities are doing.</summary>
-    public HealthSnapshot Health() => _health.Snapshot(Clock) with
+    public HealthSnapshot Health() => _health.Snapshot(_clock.Now) with
     {
         Records = _records,
         Events = _encoder.Events,
-        Awaiting = _awaiting.Count,
-        Expired = _expired,
+        Awaiting = _awaiting.Awaiting,
+        AwaitingBytes = _awaiting.MemoryBytes,
+        Early = _early.Count,
+        Expired = _events.Expired,
+        Thinned = _events.Thinned,
+        Repeated = _events.Repeated,
+        Corrected = _events.Corrected,
         CollidedEvents = _encoder.CollidedEvents,
         Settings = [.. Enumerable.Range(0, _bank.SettingCount).Select(FiguresOf)],
     };
@@ -89,7 +107,7 @@ public sealed class ScoringEngine
     {
         var slots = _encoder.UsedSlots().ToList();
         return new ModelSnapshot(
-            _health.Labelled,
+            _version,
             [.. Enumerable.Range(0, _bank.SettingCount).Select(setting => new SettingModel(
                 _bank.Names[setting],
                 _bank.Intercept(setting),
@@ -103,19 +121,34 @@ public sealed class ScoringEngine
         using var bytes = new MemoryStream();
         using var writer = new BinaryWriter(bytes);
         writer.Write(Fingerprint());
-        writer.Write(_clockMicroseconds);
         writer.Write(_records);
-        writer.Write(_expired);
+        writer.Write(_version);
+        writer.Write(_events.Expired);
+        writer.Write(_events.Thinned);
+        writer.Write(_events.Repeated);
+        writer.Write(_events.Corrected);
+        _clock.Save(writer);
         changes.Put(Part, 0, bytes.ToArray());
         _encoder.Save(changes);
         _bank.Save(changes);
         _awaiting.Save(changes);
+        _early.Save(changes);
         _health.Save(changes);
     }
 
     /// <summary>Takes up a state that was saved. Only on an engine that has seen nothing.</summary>
     /// <exception cref="InvalidStateException">The state is damaged or belongs to another definition.</exception>
     public void Load(StateBlocks state)
+    {
+        LoadModel(state);
+        _awaiting.Load(state);
+        _early.Load(state);
+        _health.Load(state);
+    }
+
+    /// <summary>Takes up of a saved state what <see cref="Model"/> tells, and no more: for looking into it.</summary>
+    /// <exception cref="InvalidStateException">The state is damaged or belongs to another definition.</exception>
+    public void LoadModel(StateBlocks state)
     {
         byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException("the state holds no engine");
         using var reader = new BinaryReader(new MemoryStream(bytes));
@@ -124,22 +157,41 @@ public sealed class ScoringEngine
             throw new InvalidStateException(
                 "the state was made with other features, slots or a hash seed, whose coefficients mean something else; "
                 + $"give the changed definition a state folder of its own\nthe state's: {saved}\nthe definition's: {Fingerprint()}");
-        _clockMicroseconds = reader.ReadInt64();
         _records = reader.ReadInt64();
-        _expired = reader.ReadInt64();
+        _version = reader.ReadInt64();
+        _events = new LabelEvents
+        {
+            Expired = reader.ReadInt64(),
+            Thinned = reader.ReadInt64(),
+            Repeated = reader.ReadInt64(),
+            Corrected = reader.ReadInt64(),
+        };
+        _clock.Load(reader);
         _encoder.Load(state);
         _bank.Load(state);
-        _awaiting.Load(state);
-        _health.Load(state);
     }
 
-    private void TakeEvent(RecordBatch records, int index, ref DecodedRecord record, ScoreBatch scores)
+    private void Take(RecordBatch records, int index, ScoreBatch scores)
     {
-        AdvanceClock(record.TimeMicroseconds);
+        // A copy: the batch may grow, and move its records, when labels that waited in vain are added to it.
+        var record = records.Records[index];
+        if (!_clock.TryTake(record.TimeMicroseconds))
+        {
+            records.Reject(index, RejectReason.TimeAhead, $"the time is too far ahead of the stream's clock; {StreamClock.RecordsThatMoveOn} such records in a row would move the clock");
+            return;
+        }
+        LetGo();
+        RejectEarlyLabels(records, _clock.Microseconds);
+        if (record.Kind == RecordKind.Label) TakeLabel(records, index, record);
+        else TakeEvent(records, index, record, scores);
+    }
+
+    private void TakeEvent(RecordBatch records, int index, in DecodedRecord record, ScoreBatch scores)
+    {
         var id = records.Id(index);
         if (_awaiting.TryFind(id, record.IdHash, out _))
         {
-            records.Reject(index, RejectReason.IdReused, "an event with this id is awaiting its label");
+            records.Reject(index, RejectReason.IdReused, "an event with this id was scored and is still kept for its label");
             return;
         }
 
@@ -147,61 +199,89 @@ public sealed class ScoringEngine
         var vector = _encoder.Encode(records, index);
         var encoded = vector.Vector;
         double logOdds = _bank.Score(encoded, record.TimeMicroseconds, _logOdds);
+        double probability = Elementary.Sigmoid(logOdds);
         bool isLabelled = record.Kind == RecordKind.LabelledEvent;
         if (!isLabelled || Definition.Decision.PublishLabelled)
-            Publish(index, logOdds, vector, eventsBefore, scores);
+            Publish(index, logOdds, probability, vector, eventsBefore, scores);
 
         if (isLabelled)
         {
-            Learn(encoded, _logOdds, logOdds, isFresh: true, record.Label, double.IsNaN(record.Weight) ? 1 : record.Weight, _clockMicroseconds);
-            return;
+            double weight = double.IsNaN(record.Weight) ? 1 : record.Weight;
+            Learn(encoded, _logOdds, logOdds, isFresh: true, record.Label, weight, _clock.Microseconds);
         }
-        var header = new AwaitingHeader
+        else if (IsKept(probability, record.IdHash, out int standsFor))
         {
-            IdHash = record.IdHash,
-            ScoredAtMicroseconds = _clockMicroseconds,
-            TimeMicroseconds = record.TimeMicroseconds,
-            LogOdds = logOdds,
-            Weight = record.Weight,
+            var header = new KeptHeader
+            {
+                IdHash = record.IdHash,
+                ScoredAtMicroseconds = _clock.Microseconds,
+                TimeMicroseconds = record.TimeMicroseconds,
+                LogOdds = logOdds,
+                Weight = record.Weight,
+                StandsFor = standsFor,
+            };
+            var place = _awaiting.Add(header, _logOdds, encoded, id);
+            while (_early.Take(id, record.IdHash) is { } early) Learn(place, early.Label, early.Weight);
+        }
+        else _events.Thinned++;
+    }
+
+    private void TakeLabel(RecordBatch records, int index, in DecodedRecord record)
+    {
+        var id = records.Id(index);
+        if (_awaiting.TryFind(id, record.IdHash, out var place)) Learn(place, record.Label, record.Weight);
+        else if (Definition.Labels.EarlyMicroseconds == 0) records.Reject(index, RejectReason.LabelUnknownEvent, "no event with this id is kept");
+        else
+        {
+            _early.Add(record.IdHash, new EarlyLabel(
+                Encoding.UTF8.GetString(id), record.Label, record.Weight, _clock.Microseconds,
+                records.OriginOf(index), record.Position, records.RecordBytes(index).ToArray()));
+        }
+    }
+
+    /// <summary>Ends the wait of the events that have waited long enough by the clock.</summary>
+    private void LetGo()
+    {
+        while (_awaiting.TryTakeExpired(_clock.Microseconds, out var place))
+        {
+            _events.Expired++;
+            if (Definition.Labels.Unlabelled == UnlabelledEvents.Negative)
+                _awaiting.Mark(place, new LabelMark(EventState.AssumedGood, LearnFirst(place, label: 0, weight: double.NaN)));
+            else
+                _awaiting.Mark(place, new LabelMark(EventState.Gone, default));
+        }
+        _awaiting.Forget(_clock.Microseconds);
+    }
+
+    /// <summary>Takes a label for a kept event: the first one, the same again, or one that corrects it.</summary>
+    private void Learn(EventPlace place, int label, double weight)
+    {
+        var mark = _awaiting.MarkOf(place);
+        var state = label == 1 ? EventState.Bad : EventState.Good;
+        int? known = mark.State switch
+        {
+            EventState.Bad => 1,
+            EventState.Good or EventState.AssumedGood => 0,
+            _ => null,
         };
-        _awaiting.Add(header, _logOdds, encoded, id);
-    }
-
-    private void TakeLabel(RecordBatch records, int index, ref DecodedRecord record)
-    {
-        AdvanceClock(record.TimeMicroseconds);
-        if (!_awaiting.TryFind(records.Id(index), record.IdHash, out var place))
+        if (known is null)
         {
-            records.Reject(index, RejectReason.LabelUnknownEvent, "no event with this id is awaiting its label");
+            _awaiting.Mark(place, new LabelMark(state, LearnFirst(place, label, weight)));
             return;
         }
-        LearnAwaiting(place, record.Label, record.Weight);
+        if (known == label) _events.Repeated++;
+        _awaiting.Mark(place, new LabelMark(state, known == label ? mark.Count : Correct(place, label, weight, mark.Count)));
     }
 
-    /// <summary>The clock is the highest time seen; whoever has waited too long by it is let go.</summary>
-    private void AdvanceClock(long timeMicroseconds)
-    {
-        if (timeMicroseconds <= _clockMicroseconds) return;
-        _clockMicroseconds = timeMicroseconds;
-        while (_awaiting.TryFindExpired(_clockMicroseconds, out var place))
-        {
-            _expired++;
-            if (Definition.Labels.Unlabelled == UnlabelledEvents.Negative) LearnAwaiting(place, label: 0, weight: double.NaN);
-            else _awaiting.Remove(place);
-        }
-    }
-
-    /// <summary>Learns from an event as it was at scoring. A weight that comes with the label goes before the event's own.</summary>
-    private void LearnAwaiting(EventPlace place, int label, double weight)
+    /// <summary>Learns from an event as it was at scoring.</summary>
+    private LabelCount LearnFirst(EventPlace place, int label, double weight)
     {
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
-        if (double.IsNaN(weight)) weight = double.IsNaN(header.Weight) ? 1 : header.Weight;
-        Learn(scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, weight, header.ScoredAtMicroseconds);
-        _awaiting.Remove(place);
+        return Learn(scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, scored.WeightOf(weight), header.ScoredAtMicroseconds);
     }
 
-    private void Learn(
+    private LabelCount Learn(
         in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, double publishedLogOdds, bool isFresh, int label, double weight,
         long scoredAtMicroseconds)
     {
@@ -213,15 +293,51 @@ public sealed class ScoringEngine
             Label = label,
             Weight = weight,
             ScoredAtMicroseconds = scoredAtMicroseconds,
-            KnownAtMicroseconds = _clockMicroseconds,
+            KnownAtMicroseconds = _clock.Microseconds,
         });
-        _bank.Learn(vector, scoredLogOdds, isFresh, label, weight, _clockMicroseconds);
-        _health.CountLabel(_clockMicroseconds, publishedLogOdds, label, weight);
+        _bank.Learn(vector, scoredLogOdds, isFresh, label, weight, _clock.Microseconds);
+        _version++;
+        return _health.CountLabel(_clock.Microseconds, publishedLogOdds, label, weight);
     }
 
-    private void Publish(int record, double logOdds, VectorBuilder vector, long eventsBefore, ScoreBatch scores)
+    /// <summary>Learns the opposite of what was learned before, from the same features; health counts the event by its final truth.</summary>
+    private LabelCount Correct(EventPlace place, int label, double weight, in LabelCount count)
     {
-        double probability = Elementary.Sigmoid(logOdds);
+        var scored = _awaiting.At(place);
+        weight = scored.WeightOf(weight);
+        _bank.TakeBack(scored.LogOdds, 1 - label, count.Weight);
+        _bank.Learn(scored.Vector, scored.LogOdds, isFresh: false, label, weight, _clock.Microseconds);
+        _version++;
+        _events.Corrected++;
+        return _health.CorrectLabel(count, scored.Header.LogOdds, label, weight);
+    }
+
+    /// <summary>Whether an event is kept for its label, and how many events like it it stands for.</summary>
+    private bool IsKept(double probability, ulong idHash, out int standsFor)
+    {
+        standsFor = 1;
+        if (Definition.Labels.Keep is not { } keep || probability >= keep.Above) return true;
+        standsFor = keep.OneIn;
+        return idHash % (uint)keep.OneIn == 0;
+    }
+
+    private void RejectEarlyLabels(RecordBatch records, long clockMicroseconds)
+    {
+        while (_early.TakeExpired(clockMicroseconds) is { } label)
+        {
+            records.ListLateReject(label.Origin, label.Position, label.Record, RejectReason.LabelUnknownEvent, "no event with this id is kept, and none came in time");
+            _health.CountReject(RejectReason.LabelUnknownEvent);
+        }
+    }
+
+    private void ListReject(RecordBatch records, int index)
+    {
+        records.ListReject(index);
+        _health.CountReject(records.Records[index].Reason);
+    }
+
+    private void Publish(int record, double logOdds, double probability, VectorBuilder vector, long eventsBefore, ScoreBatch scores)
+    {
         ref var score = ref scores.Add(out var reasons);
         score = new Score
         {
@@ -229,7 +345,7 @@ public sealed class ScoringEngine
             Probability = probability,
             LogOdds = logOdds,
             IsAlert = probability >= Definition.Decision.Cutoff,
-            Version = _health.Labelled,
+            Version = _version,
         };
         if (!GiveReasons || reasons.Length == 0) return;
         var coefficients = _coefficients.AsSpan(0, vector.Count);

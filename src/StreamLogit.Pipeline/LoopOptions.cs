@@ -21,6 +21,12 @@ public sealed record LoopOptions
     /// <summary>Wall time between two commits, above 0. Default 10 s.</summary>
     public TimeSpan CommitEveryTime { get; init; } = TimeSpan.FromSeconds(10);
 
+    /// <summary>
+    /// Whether the stream ends where the source does, so that labels that still wait for their event become rejects. Default false: a later run may
+    /// bring more.
+    /// </summary>
+    public bool EndsWithSource { get; init; }
+
     /// <summary>The least wall time between two health snapshots. Default 250 ms.</summary>
     public TimeSpan HealthEvery { get; init; } = TimeSpan.FromMilliseconds(250);
 }

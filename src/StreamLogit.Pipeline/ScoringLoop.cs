@@ -35,7 +35,7 @@ public sealed class ScoringLoop
         _source = source;
         _conveyor = new Conveyor(options.Batches, () => new BatchInFlight(new RecordBatch(engine.Schema), engine.CreateScoreBatch()));
         _read = new ReadStage(source, new RecordDecoder(engine.Schema), _conveyor, options, time);
-        _score = new ScoreStage(engine, _conveyor, state is not null, options.HealthEvery, time);
+        _score = new ScoreStage(engine, _conveyor, state?.Archive, options.HealthEvery, time);
         _write = new WriteStage(sinks, state, _conveyor);
     }
 

@@ -32,12 +32,12 @@ public sealed class StreamRun : IDisposable
         _sinks = sinks;
         try
         {
-            Engine = new ScoringEngine(definition.Engine);
             if (definition.State is { } state)
             {
                 options = options with { CommitEveryEvents = state.EveryEvents, CommitEveryTime = state.EveryTime };
                 _state = StateStore.Open(state.Folder, definition.Engine.Stream, definition.EffectiveJson);
             }
+            Engine = new ScoringEngine(definition.Engine, _state?.Archive);
             Resume();
             _loop = new ScoringLoop(Engine, _source, _sinks, _state, options, time);
         }

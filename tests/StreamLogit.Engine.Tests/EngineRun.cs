@@ -43,8 +43,7 @@ internal sealed class EngineRun
                 ref readonly var score = ref scores.Scores[i];
                 Scores.Add((Encoding.UTF8.GetString(batch.Id(score.Record)), score.Probability, score.LogOdds, score.Version, scores.Reasons(i).ToArray()));
             }
-            foreach (ref readonly var record in batch.Records)
-                if (record.Kind == RecordKind.Reject) Rejects.Add((record.Position, record.Reason));
+            foreach (int reject in batch.Rejects) Rejects.Add((batch.Record(reject).Position, batch.Record(reject).Reason));
         }
         return this;
     }

@@ -5,87 +5,127 @@ using StreamLogit.Engine.Persistence;
 namespace StreamLogit.Engine.Awaiting;
 
 /// <summary>
-/// The events that were scored and whose label is not known yet, each with its vector and its log-odds as they were at scoring, until the label
-/// comes or the wait is over. They lie in segments in the order in which they were scored, which is the order in which their waits end.
+/// The scored events that can still be taught a label: each with its vector and its log-odds as they were at scoring, from its scoring until its wait is over
+/// (and as long again where it was then learned as a 0). They lie in segments in the order in which they were scored, which is the order in which their
+/// waits end. The newest segments are in memory; older ones, beyond the memory given, in the archive.
 /// </summary>
-internal sealed class AwaitingStore(int settings, long waitMicroseconds)
+internal sealed class AwaitingStore
 {
-    private const string SegmentsPart = "awaiting/segments";
-    private const string TakenPart = "awaiting/taken";
-    private const string BoundsPart = "awaiting/bounds";
+    /// <summary>The part of the state that the engine reads from the archive, block by block, instead of loading it.</summary>
+    public const string SegmentsPart = "awaiting/segments";
+
+    private const string MarksPart = "awaiting/marks";
+    private const string CursorsPart = "awaiting/cursors";
     private const int SegmentBytes = 1 << 16;
     private const int MaximumSpares = 16;
 
+    private readonly int _settings;
+    private readonly long _waitMicroseconds;
+    private readonly long _keepMicroseconds;
+    private readonly int _hotSegments;
+    private readonly IBlockArchive? _archive;
     private readonly EventIndex _index = new();
-    private readonly Queue<AwaitingSegment> _spares = [];
-    private readonly List<AwaitingSegment> _segments = []; // oldest first; the last one takes new events
+    private readonly SegmentReader _reader;
+    private readonly Stack<byte[]> _spareBytes = [];
+    private readonly Stack<Segment> _spareSegments = [];
+    private readonly List<Segment> _segments = []; // oldest first; the last one takes new events
     private int _firstSegment; // the number of _segments[0]
+    private int _firstHot; // the number of the first segment that is in memory
     private int _savedFirstSegment;
-    private int _oldestOffset; // where in _segments[0] the oldest event lies that has not been passed yet
+    private EventPlace _waitCursor; // the first event whose wait may not be over
+    private EventPlace _keepCursor; // the first event that is still kept
 
-    public int Count => _index.Count;
+    /// <param name="settings">Settings of the bank.</param>
+    /// <param name="waitMicroseconds">How long an event waits for its label.</param>
+    /// <param name="keepsAssumed">Whether events are kept as long again when their wait is over.</param>
+    /// <param name="memoryBytes">Bytes of segments in memory, beyond which they go to the archive.</param>
+    /// <param name="archive">The archive, or null where all stays in memory.</param>
+    public AwaitingStore(int settings, long waitMicroseconds, bool keepsAssumed, long memoryBytes, IBlockArchive? archive)
+    {
+        _settings = settings;
+        _waitMicroseconds = waitMicroseconds;
+        _keepMicroseconds = keepsAssumed ? 2 * waitMicroseconds : waitMicroseconds;
+        _hotSegments = (int)Math.Clamp(memoryBytes / SegmentBytes, 2, int.MaxValue);
+        _archive = archive;
+        _reader = new SegmentReader(archive, SegmentsPart);
+    }
 
-    /// <summary>Where the awaiting event with an id lies.</summary>
+    /// <summary>Events whose label has not come and whose wait is not over.</summary>
+    public long Awaiting { get; private set; }
+
+    /// <summary>Events that are kept, those with a label included.</summary>
+    public long Kept => _index.Count;
+
+    /// <summary>Bytes of memory that the kept events and their index take.</summary>
+    public long MemoryBytes =>
+        _index.Bytes + (long)(_firstSegment + _segments.Count - _firstHot) * SegmentBytes + _reader.Bytes;
+
+    /// <summary>Where the kept event with an id lies.</summary>
     public bool TryFind(ReadOnlySpan<byte> id, ulong idHash, out EventPlace place)
     {
-        for (int cursor = _index.First(idHash); cursor >= 0; cursor = _index.Next(idHash, cursor))
+        var shard = _index.ShardOf(idHash);
+        for (int cursor = shard.First(idHash); cursor >= 0; cursor = shard.Next(idHash, cursor))
         {
-            place = _index.PlaceAt(cursor);
+            place = shard.PlaceAt(cursor);
             if (At(place).Id.SequenceEqual(id)) return true;
         }
         place = default;
         return false;
     }
 
-    /// <summary>The event that lies there.</summary>
-    public AwaitingEvent At(EventPlace place)
+    /// <summary>The event that lies there, readable until the next call that may read another one.</summary>
+    public KeptEvent At(EventPlace place)
     {
-        var segment = _segments[place.Segment - _firstSegment];
-        return new AwaitingEvent(segment.Bytes.AsSpan(place.Offset, segment.Length - place.Offset), settings);
+        var segment = SegmentOf(place);
+        byte[] bytes = segment.Bytes ?? _reader.Read(place.Segment);
+        return new KeptEvent(bytes.AsSpan(place.Offset, segment.Length - place.Offset), _settings);
     }
 
-    /// <summary>Adds an event that was scored just now and whose id is not awaiting. The lengths in the header are filled in here.</summary>
-    public void Add(AwaitingHeader header, ReadOnlySpan<double> logOdds, in EncodedVector vector, ReadOnlySpan<byte> id)
+    /// <summary>What became of the event that lies there.</summary>
+    public LabelMark MarkOf(EventPlace place) => SegmentOf(place).MarkOf(At(place).Header.Ordinal);
+
+    /// <summary>Says what became of an event.</summary>
+    public void Mark(EventPlace place, in LabelMark mark)
+    {
+        ref readonly var header = ref At(place).Header;
+        var segment = SegmentOf(place);
+        if (segment.MarkOf(header.Ordinal).State == EventState.Awaiting) Awaiting--;
+        segment.Mark(header.Ordinal, mark);
+        if (mark.State == EventState.Gone) _index.Remove(header.IdHash, place);
+    }
+
+    /// <summary>Adds an event that was scored just now and whose id is not kept. The lengths in the header are filled in here.</summary>
+    public EventPlace Add(KeptHeader header, ReadOnlySpan<double> logOdds, in EncodedVector vector, ReadOnlySpan<byte> id)
     {
         header.Entries = vector.Slots.Length;
         header.IdLength = id.Length;
-        header.TotalBytes = AwaitingEvent.SizeOf(settings, header.Entries, id.Length);
+        header.TotalBytes = KeptEvent.SizeOf(_settings, header.Entries, id.Length);
         var segment = SegmentFor(header.TotalBytes);
         header.Ordinal = segment.Count;
         int offset = segment.Append(header.TotalBytes);
-        AwaitingEvent.Write(segment.Bytes.AsSpan(offset, header.TotalBytes), header, logOdds, vector, id);
-        _index.Add(header.IdHash, new EventPlace(_firstSegment + _segments.Count - 1, offset));
+        KeptEvent.Write(segment.Bytes.AsSpan(offset, header.TotalBytes), header, logOdds, vector, id);
+        var place = new EventPlace(_firstSegment + _segments.Count - 1, offset);
+        _index.Add(header.IdHash, place);
+        Awaiting++;
+        return place;
     }
 
-    /// <summary>Takes an event out. Views of it stay readable until the next <see cref="Add"/>.</summary>
-    public void Remove(EventPlace place)
+    /// <summary>
+    /// The next event whose wait is over at a time of the stream's clock and whose label has not come. Whoever asks must mark it before asking again.
+    /// </summary>
+    public bool TryTakeExpired(long clockMicroseconds, out EventPlace place)
     {
-        ref readonly var header = ref At(place).Header;
-        int cursor = _index.First(header.IdHash);
-        while (_index.PlaceAt(cursor) != place) cursor = _index.Next(header.IdHash, cursor);
-        _index.RemoveAt(cursor);
-        _segments[place.Segment - _firstSegment].Take(header.Ordinal);
-    }
-
-    /// <summary>The oldest event whose wait is over at a time of the stream's clock. It stays until it is removed.</summary>
-    public bool TryFindExpired(long clockMicroseconds, out EventPlace place)
-    {
-        while (_segments.Count > 0)
-        {
-            var segment = _segments[0];
-            while (_oldestOffset < segment.Length)
-            {
-                place = new EventPlace(_firstSegment, _oldestOffset);
-                ref readonly var header = ref At(place).Header;
-                if (!segment.IsTaken[header.Ordinal])
-                    return clockMicroseconds - header.ScoredAtMicroseconds > waitMicroseconds;
-                _oldestOffset += header.TotalBytes;
-            }
-            if (_segments.Count == 1) break; // it still takes new events
-            DropOldestSegment();
-        }
-        place = default;
+        while (TryPass(ref _waitCursor, clockMicroseconds - _waitMicroseconds, out place))
+            if (MarkOf(place).State == EventState.Awaiting) return true;
         return false;
+    }
+
+    /// <summary>Lets go of the events that are not kept any longer. Comes after all expired ones were taken.</summary>
+    public void Forget(long clockMicroseconds)
+    {
+        while (TryPass(ref _keepCursor, clockMicroseconds - _keepMicroseconds, out var place))
+            if (MarkOf(place).State != EventState.Gone) _index.Remove(At(place).Header.IdHash, place);
+        while (_firstSegment < _keepCursor.Segment) DropOldestSegment();
     }
 
     public void Save(StateBlocks changes)
@@ -93,67 +133,110 @@ internal sealed class AwaitingStore(int settings, long waitMicroseconds)
         for (; _savedFirstSegment < _firstSegment; _savedFirstSegment++)
         {
             changes.Remove(SegmentsPart, _savedFirstSegment);
-            changes.Remove(TakenPart, _savedFirstSegment);
+            changes.Remove(MarksPart, _savedFirstSegment);
         }
         for (int i = 0; i < _segments.Count; i++)
         {
             var segment = _segments[i];
             if (segment.HasNewEvents) changes.Put(SegmentsPart, _firstSegment + i, segment.Bytes.AsSpan(0, segment.Length));
-            if (segment.HasNewlyTaken) changes.Put(TakenPart, _firstSegment + i, MemoryMarshal.AsBytes(segment.IsTaken));
-            segment.HasNewEvents = segment.HasNewlyTaken = false;
+            if (segment.HasNewMarks) changes.Put(MarksPart, _firstSegment + i, MemoryMarshal.AsBytes(segment.Marks));
+            segment.HasNewEvents = segment.HasNewMarks = false;
         }
-        ReadOnlySpan<int> bounds = [_firstSegment, _oldestOffset];
-        changes.Put(BoundsPart, 0, MemoryMarshal.AsBytes(bounds));
+        ReadOnlySpan<int> cursors = [_firstSegment, _waitCursor.Segment, _waitCursor.Offset, _keepCursor.Segment, _keepCursor.Offset];
+        changes.Put(CursorsPart, 0, MemoryMarshal.AsBytes(cursors));
     }
 
     public void Load(StateBlocks state)
     {
-        byte[] bounds = state.Find(BoundsPart, 0) ?? throw new InvalidStateException($"the state has no {BoundsPart}");
-        _firstSegment = _savedFirstSegment = MemoryMarshal.Cast<byte, int>(bounds)[0];
-        _oldestOffset = MemoryMarshal.Cast<byte, int>(bounds)[1];
-        foreach (var (number, bytes) in state.Read(SegmentsPart))
-        {
-            if (number != _firstSegment + _segments.Count) throw new InvalidStateException($"block {number} of {SegmentsPart} is out of order");
-            _segments.Add(LoadSegment((int)number, bytes, state.Find(TakenPart, number) ?? []));
-        }
+        var cursors = MemoryMarshal.Cast<byte, int>(state.Find(CursorsPart, 0) ?? throw new InvalidStateException($"the state has no {CursorsPart}"));
+        _firstSegment = _savedFirstSegment = _firstHot = cursors[0];
+        _waitCursor = new EventPlace(cursors[1], cursors[2]);
+        _keepCursor = new EventPlace(cursors[3], cursors[4]);
+        if (_archive is null)
+            foreach (var (number, bytes) in state.Read(SegmentsPart)) LoadSegment(number, bytes, bytes.Length, state.Find(MarksPart, number));
+        else
+            foreach (long number in _archive.Numbers(SegmentsPart))
+            {
+                byte[] bytes = new byte[SegmentBytes];
+                int length = _archive.Read(SegmentsPart, number, ref bytes);
+                LoadSegment(number, bytes, length, state.Find(MarksPart, number));
+            }
     }
 
-    private AwaitingSegment LoadSegment(int number, byte[] bytes, ReadOnlySpan<byte> taken)
+    private void LoadSegment(long number, byte[] bytes, int length, ReadOnlySpan<byte> marks)
     {
-        var buffer = new byte[Math.Max(SegmentBytes, bytes.Length)];
-        bytes.CopyTo(buffer, 0);
-        var segment = new AwaitingSegment(buffer);
-        while (segment.Length < bytes.Length)
+        if (number != _firstSegment + _segments.Count) throw new InvalidStateException($"block {number} of {SegmentsPart} is out of order");
+        var segment = new Segment();
+        segment.LoadMarks(MemoryMarshal.Cast<byte, LabelMark>(marks));
+        while (segment.Length < length)
         {
-            int offset = segment.Length;
-            var header = MemoryMarshal.Read<AwaitingHeader>(bytes.AsSpan(offset));
-            segment.Append(header.TotalBytes);
-            // Events that were added after the last one was taken have no mark yet.
-            if (header.Ordinal < taken.Length && taken[header.Ordinal] != 0) segment.Take(header.Ordinal);
-            else _index.Add(header.IdHash, new EventPlace(number, offset));
+            var header = MemoryMarshal.Read<KeptHeader>(bytes.AsSpan(segment.Length));
+            var place = new EventPlace((int)number, segment.Append(header.TotalBytes));
+            var state = segment.MarkOf(header.Ordinal).State;
+            if (state == EventState.Awaiting) Awaiting++;
+            bool isPassed = place.Segment < _keepCursor.Segment || (place.Segment == _keepCursor.Segment && place.Offset < _keepCursor.Offset);
+            if (state != EventState.Gone && !isPassed) _index.Add(header.IdHash, place);
         }
-        segment.HasNewEvents = segment.HasNewlyTaken = false;
-        return segment;
+        segment.HasNewEvents = false;
+        if (bytes.Length < SegmentBytes) Array.Resize(ref bytes, SegmentBytes); // the last one takes new events
+        segment.Bytes = bytes;
+        _segments.Add(segment);
+        ArchiveBeyondMemory();
     }
 
-    private AwaitingSegment SegmentFor(int size)
+    private Segment SegmentOf(EventPlace place) => _segments[place.Segment - _firstSegment];
+
+    /// <summary>Moves a cursor over the next event if that was scored before a time.</summary>
+    private bool TryPass(ref EventPlace cursor, long scoredBefore, out EventPlace place)
+    {
+        place = cursor;
+        int last = _firstSegment + _segments.Count - 1;
+        while (place.Segment < last && place.Offset >= SegmentOf(place).Length) place = new EventPlace(place.Segment + 1, 0);
+        if (place.Segment > last || place.Offset >= SegmentOf(place).Length) return false;
+        ref readonly var header = ref At(place).Header;
+        if (header.ScoredAtMicroseconds >= scoredBefore) return false;
+        cursor = place with { Offset = place.Offset + header.TotalBytes };
+        return true;
+    }
+
+    private Segment SegmentFor(int size)
     {
         if (_segments.Count > 0 && _segments[^1].HasRoom(size)) return _segments[^1];
-        var segment = size <= SegmentBytes && _spares.TryDequeue(out var spare)
-            ? spare
-            : new AwaitingSegment(new byte[Math.Max(size, SegmentBytes)]);
+        if (!_spareSegments.TryPop(out var segment)) segment = new Segment();
+        segment.Bytes = size <= SegmentBytes && _spareBytes.TryPop(out byte[]? spare) ? spare : new byte[Math.Max(size, SegmentBytes)];
         _segments.Add(segment);
+        ArchiveBeyondMemory();
         return segment;
+    }
+
+    private void ArchiveBeyondMemory()
+    {
+        if (_archive is null) return;
+        while (_firstSegment + _segments.Count - _firstHot > _hotSegments)
+        {
+            var segment = _segments[_firstHot - _firstSegment];
+            if (segment.HasNewEvents) _archive.Write(SegmentsPart, _firstHot, segment.Bytes.AsSpan(0, segment.Length));
+            segment.HasNewEvents = false;
+            Release(segment);
+            _firstHot++;
+        }
     }
 
     private void DropOldestSegment()
     {
+        if (_archive is not null && _firstSegment < _firstHot) _archive.Remove(SegmentsPart, _firstSegment);
         var segment = _segments[0];
         _segments.RemoveAt(0);
-        _firstSegment++;
-        _oldestOffset = 0;
-        if (segment.Bytes.Length > SegmentBytes || _spares.Count >= MaximumSpares) return;
+        Release(segment);
         segment.Clear();
-        _spares.Enqueue(segment);
+        if (_spareSegments.Count < MaximumSpares) _spareSegments.Push(segment);
+        _firstSegment++;
+        _firstHot = Math.Max(_firstHot, _firstSegment);
+    }
+
+    private void Release(Segment segment)
+    {
+        if (segment.Bytes is { Length: SegmentBytes } bytes && _spareBytes.Count < MaximumSpares) _spareBytes.Push(bytes);
+        segment.Bytes = null;
     }
 }

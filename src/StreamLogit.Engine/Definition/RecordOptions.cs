@@ -32,4 +32,9 @@ public sealed record RecordOptions
 
     /// <summary>The deepest nesting of objects and arrays; a deeper one is a reject. Default 32.</summary>
     public int MaximumDepth { get; init; } = 32;
+
+    /// <summary>
+    /// How far, in microseconds, the time of a record may lie beyond the stream's clock; one that lies further ahead is a reject. Default 1 day.
+    /// </summary>
+    public long AheadMicroseconds { get; init; } = 24L * 3600 * 1_000_000;
 }

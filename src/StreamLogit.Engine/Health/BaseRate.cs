@@ -11,13 +11,15 @@ internal struct BaseRate
     public double Ones;
     public double Labels;
 
-    /// <summary>-ln of the probability that it gave to this label, in nats; then it learns the label.</summary>
-    public double LogLossThenLearn(int label, double weight)
+    /// <summary>The probability of label 1.</summary>
+    public readonly double Probability => (Ones + 0.5) / (Labels + 1);
+
+    public void Learn(int label, double weight)
     {
-        double favourable = label == 1 ? Ones : Labels - Ones;
-        double loss = -Elementary.Log((favourable + 0.5) / (Labels + 1));
         Ones += weight * label;
         Labels += weight;
-        return loss;
     }
+
+    /// <summary>-ln of the probability that a base rate gave to a label, in nats.</summary>
+    public static double LogLoss(double probability, int label) => -Elementary.Log(label == 1 ? probability : 1 - probability);
 }

@@ -1,6 +1,5 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
-using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
 
@@ -35,23 +34,32 @@ internal sealed class HealthLedger
     public void CountReject(RejectReason reason) => _rejects[(int)reason]++;
 
     /// <summary>Counts a label against the log-odds that were published for its event.</summary>
-    public void CountLabel(long clockMicroseconds, double logOdds, int label, double weight)
+    public LabelCount CountLabel(long clockMicroseconds, double logOdds, int label, double weight)
     {
-        double probability = Elementary.Sigmoid(logOdds);
-        double error = probability - label;
-        var sums = new LabelSums
-        {
-            Count = 1,
-            Weight = weight,
-            LogLoss = weight * Elementary.Softplus(label == 1 ? -logOdds : logOdds),
-            BaseRateLogLoss = weight * _baseRate.LogLossThenLearn(label, weight),
-            Brier = weight * (error * error),
-            Probability = weight * probability,
-            Positive = weight * label,
-        };
+        double baseRate = _baseRate.Probability;
+        _baseRate.Learn(label, weight);
+        var sums = LabelSums.Of(logOdds, baseRate, label, weight);
         _total.Add(sums);
-        _minutes.Add(clockMicroseconds, sums);
-        _last.Add(sums);
+        return new LabelCount(_minutes.Add(clockMicroseconds, sums), _last.Add(sums), baseRate, (float)weight);
+    }
+
+    /// <summary>Counts a label as its opposite, in every window that it is still in.</summary>
+    /// <param name="counted">How it was counted.</param>
+    /// <param name="logOdds">The log-odds that were published.</param>
+    /// <param name="label">What it is now.</param>
+    /// <param name="weight">What it weighs now.</param>
+    /// <returns>How it is counted now.</returns>
+    public LabelCount CorrectLabel(in LabelCount counted, double logOdds, int label, double weight)
+    {
+        var wrong = LabelSums.Of(logOdds, counted.BaseRate, 1 - label, counted.Weight);
+        var right = LabelSums.Of(logOdds, counted.BaseRate, label, weight);
+        _baseRate.Ones += right.Positive - wrong.Positive;
+        _baseRate.Labels += right.Weight - wrong.Weight;
+        _total.Subtract(wrong);
+        _total.Add(right);
+        _minutes.Replace(counted.Minute, wrong, right);
+        _last.Replace(counted.Sequence, right);
+        return counted with { Weight = (float)weight };
     }
 
     /// <summary>The figures of now.</summary>

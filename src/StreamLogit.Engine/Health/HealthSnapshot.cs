@@ -29,6 +29,21 @@ public sealed record HealthSnapshot
     /// <summary>Events whose wait ended without a label.</summary>
     public long Expired { get; init; }
 
+    /// <summary>Events that were not kept for their label, so that the kept ones count for several.</summary>
+    public long Thinned { get; init; }
+
+    /// <summary>Labels that came again and said the same.</summary>
+    public long Repeated { get; init; }
+
+    /// <summary>Labels that said the opposite of an earlier one and were learned as corrections.</summary>
+    public long Corrected { get; init; }
+
+    /// <summary>Labels that came before their event and wait for it.</summary>
+    public long Early { get; init; }
+
+    /// <summary>Bytes of memory that the kept events take.</summary>
+    public long AwaitingBytes { get; init; }
+
     /// <summary>Events one of whose categories has its slot from another value.</summary>
     public long CollidedEvents { get; init; }
 

@@ -1,3 +1,5 @@
+using StreamLogit.Engine.Numerics;
+
 namespace StreamLogit.Engine.Health;
 
 /// <summary>Sums over labels, each weighted by its record's weight. Sums of two runs of labels add up to those of both.</summary>
@@ -11,6 +13,23 @@ internal struct LabelSums
     public double Probability;
     public double Positive;
 
+    /// <summary>The sums of one label.</summary>
+    public static LabelSums Of(double logOdds, double baseRate, int label, double weight)
+    {
+        double probability = Elementary.Sigmoid(logOdds);
+        double error = probability - label;
+        return new LabelSums
+        {
+            Count = 1,
+            Weight = weight,
+            LogLoss = weight * Elementary.Softplus(label == 1 ? -logOdds : logOdds),
+            BaseRateLogLoss = weight * BaseRate.LogLoss(baseRate, label),
+            Brier = weight * (error * error),
+            Probability = weight * probability,
+            Positive = weight * label,
+        };
+    }
+
     public void Add(in LabelSums other)
     {
         Count += other.Count;
@@ -20,6 +39,17 @@ internal struct LabelSums
         Brier += other.Brier;
         Probability += other.Probability;
         Positive += other.Positive;
+    }
+
+    public void Subtract(in LabelSums other)
+    {
+        Count -= other.Count;
+        Weight -= other.Weight;
+        LogLoss -= other.LogLoss;
+        BaseRateLogLoss -= other.BaseRateLogLoss;
+        Brier -= other.Brier;
+        Probability -= other.Probability;
+        Positive -= other.Positive;
     }
 
     public readonly HealthFigures ToFigures() => new(

@@ -11,11 +11,18 @@ internal sealed class LastLabels(int capacity)
     private readonly DirtyBlocks _dirty = new(capacity, slotsPerBlock: 512);
     private long _added;
 
-    public void Add(in LabelSums label)
+    /// <returns>The label's number among all, which wraps.</returns>
+    public uint Add(in LabelSums label)
     {
-        int place = (int)(_added++ % capacity);
-        _labels[place] = label;
-        _dirty.Mark(place);
+        Put(_added, label);
+        return (uint)_added++;
+    }
+
+    /// <summary>Puts other sums in the place of those of a label, if that is among the last.</summary>
+    public void Replace(uint sequence, in LabelSums label)
+    {
+        long ago = (uint)_added - sequence;
+        if (ago <= capacity && ago <= _added) Put(_added - ago, label);
     }
 
     public LabelSums Window()
@@ -45,5 +52,12 @@ internal sealed class LastLabels(int capacity)
         _added = MemoryMarshal.Cast<byte, long>(head)[1];
         foreach (var (number, bytes) in state.Read(Part))
             if (number >= 0) bytes.CopyTo(MemoryMarshal.AsBytes(_labels.AsSpan(_dirty.RangeOf(number))));
+    }
+
+    private void Put(long number, in LabelSums label)
+    {
+        int place = (int)(number % capacity);
+        _labels[place] = label;
+        _dirty.Mark(place);
     }
 }

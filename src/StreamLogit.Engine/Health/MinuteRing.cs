@@ -11,13 +11,26 @@ internal sealed class MinuteRing(int minutes)
     private readonly Bucket[] _buckets = new Bucket[minutes];
     private readonly DirtyBlocks _dirty = new(minutes, slotsPerBlock: 64);
 
-    public void Add(long clockMicroseconds, in LabelSums sums)
+    /// <returns>The minute.</returns>
+    public int Add(long clockMicroseconds, in LabelSums sums)
     {
-        long minute = MinuteOf(clockMicroseconds);
+        int minute = MinuteOf(clockMicroseconds);
         int place = PlaceOf(minute);
         ref var bucket = ref _buckets[place];
         if (bucket.Minute != minute || bucket.Sums.Count == 0) bucket = new Bucket { Minute = minute };
         bucket.Sums.Add(sums);
+        _dirty.Mark(place);
+        return minute;
+    }
+
+    /// <summary>Puts other sums in the place of some that were added in a minute, if that is still here.</summary>
+    public void Replace(int minute, in LabelSums old, in LabelSums replacement)
+    {
+        int place = PlaceOf(minute);
+        ref var bucket = ref _buckets[place];
+        if (bucket.Minute != minute || bucket.Sums.Count == 0) return;
+        bucket.Sums.Subtract(old);
+        bucket.Sums.Add(replacement);
         _dirty.Mark(place);
     }
 
@@ -52,9 +65,10 @@ internal sealed class MinuteRing(int minutes)
         _dirty.MarkAll();
     }
 
-    private static long MinuteOf(long clockMicroseconds)
+    // The years 1 to 9999 fit into an int.
+    private static int MinuteOf(long clockMicroseconds)
     {
-        long minute = clockMicroseconds / MicrosecondsPerMinute;
+        int minute = (int)(clockMicroseconds / MicrosecondsPerMinute);
         return clockMicroseconds % MicrosecondsPerMinute < 0 ? minute - 1 : minute;
     }
 

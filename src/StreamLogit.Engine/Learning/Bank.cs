@@ -115,6 +115,13 @@ internal sealed class Bank
         }
     }
 
+    /// <summary>Takes a label that was learned, and turned out to be wrong, back out of the loss totals of the settings.</summary>
+    public void TakeBack(ReadOnlySpan<double> scoredLogOdds, int label, double weight)
+    {
+        _isChanged = true;
+        _blend.TakeBack(scoredLogOdds[..SettingCount], label, weight);
+    }
+
     /// <summary>The coefficient of each entry of x in what is published: that of the published setting, or the mean weighted as the blend.</summary>
     public void PublishedCoefficients(in EncodedVector x, Span<double> coefficients)
     {

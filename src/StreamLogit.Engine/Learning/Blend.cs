@@ -32,6 +32,9 @@ internal abstract class Blend
     /// <summary>Adds up the losses of what was scored and moves the weights.</summary>
     public abstract void Learn(ReadOnlySpan<double> scoredLogOdds, int label, double weight);
 
+    /// <summary>Takes what a label had added to the totals back out of them. The weights have moved on and stay.</summary>
+    public abstract void TakeBack(ReadOnlySpan<double> scoredLogOdds, int label, double weight);
+
     /// <summary>The weights, which sum to 1.</summary>
     public abstract void Weights(Span<double> weights);
 

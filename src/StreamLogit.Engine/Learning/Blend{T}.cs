@@ -85,6 +85,17 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         else MoveFixedShare(hit, weight);
     }
 
+    public override void TakeBack(ReadOnlySpan<double> scoredLogOdds, int label, double weight)
+    {
+        for (int setting = 0; setting < _settingCount; setting++)
+        {
+            double against = label == 1 ? -scoredLogOdds[setting] : scoredLogOdds[setting];
+            double miss = Elementary.Sigmoid(against);
+            _logLossTotal[setting] -= weight * Elementary.Softplus(against);
+            _brierTotal[setting] -= weight * (miss * miss);
+        }
+    }
+
     public override void Weights(Span<double> weights)
     {
         double total = 0;

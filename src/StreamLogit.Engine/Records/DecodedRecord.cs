@@ -12,6 +12,9 @@ public struct DecodedRecord
     /// <summary>Its number in its origin: the line of a file from 1, the offset in a queue.</summary>
     public long Position;
 
+    /// <summary>Where it comes from, if not from the batch's origin.</summary>
+    public string? Origin;
+
     /// <summary>What it is.</summary>
     public RecordKind Kind;
 

@@ -16,6 +16,8 @@ public sealed class RecordBatch
     private DecodedRecord[] _records = new DecodedRecord[16];
     private FieldValue[] _fields;
     private readonly int _fieldCount;
+    private readonly List<int> _rejects = [];
+    private int _total; // with the records of earlier batches that are given back as rejects
 
     /// <summary>An empty batch for records of a schema.</summary>
     public RecordBatch(RecordSchema schema)
@@ -37,11 +39,23 @@ public sealed class RecordBatch
     /// <summary>The records.</summary>
     public Span<DecodedRecord> Records => _records.AsSpan(0, Count);
 
+    /// <summary>
+    /// The records that cannot be used, in the order in which that became known, once the engine has seen the batch. Some may be labels of earlier batches
+    /// that waited for their event in vain; those are beyond <see cref="Count"/>.
+    /// </summary>
+    public IReadOnlyList<int> Rejects => _rejects;
+
     /// <summary>The bytes of all records.</summary>
     public ReadOnlySpan<byte> Bytes => _bytes.AsSpan(0, ByteCount);
 
     /// <summary>The fields of a record, in the schema's order.</summary>
     public Span<FieldValue> Fields(int record) => _fields.AsSpan(record * _fieldCount, _fieldCount);
+
+    /// <summary>A record, also one beyond <see cref="Count"/>.</summary>
+    public ref readonly DecodedRecord Record(int record) => ref _records[record];
+
+    /// <summary>Where a record comes from, as positions name it.</summary>
+    public string OriginOf(int record) => _records[record].Origin ?? Origin;
 
     /// <summary>The bytes of a record as they came.</summary>
     public ReadOnlySpan<byte> RecordBytes(int record) => Bytes.Slice(_records[record].Start, _records[record].Length);
@@ -53,7 +67,9 @@ public sealed class RecordBatch
     public void Clear()
     {
         Count = 0;
+        _total = 0;
         ByteCount = 0;
+        _rejects.Clear();
     }
 
     /// <summary>Adds the bytes of a record that is still to be decoded.</summary>
@@ -61,15 +77,8 @@ public sealed class RecordBatch
     /// <param name="position">Its number in the origin.</param>
     public void Add(ReadOnlySpan<byte> record, long position)
     {
-        if (Count == _records.Length)
-        {
-            Array.Resize(ref _records, Count * 2);
-            Array.Resize(ref _fields, Count * 2 * _fieldCount);
-        }
-        _records[Count++] = new DecodedRecord { Start = ByteCount, Length = record.Length, Position = position };
-        var target = Append(record.Length + 1);
-        record.CopyTo(target);
-        target[record.Length] = 0;
+        AddRecord(record, position);
+        Count++;
     }
 
     /// <summary>Adds the first bytes of a record that is longer than the definition allows, already a reject.</summary>
@@ -87,6 +96,18 @@ public sealed class RecordBatch
         _records[record].Detail = detail;
     }
 
+    /// <summary>Lists a record among the rejects of the batch.</summary>
+    internal void ListReject(int record) => _rejects.Add(record);
+
+    /// <summary>Adds a record of an earlier batch that turned out to be unusable now, and lists it among the rejects.</summary>
+    internal void ListLateReject(string origin, long position, ReadOnlySpan<byte> record, RejectReason reason, string detail)
+    {
+        AddRecord(record, position);
+        _records[_total - 1].Origin = origin;
+        Reject(_total - 1, reason, detail);
+        ListReject(_total - 1);
+    }
+
     /// <summary>Makes room for text behind the records, where the decoder puts what it unescapes.</summary>
     internal Span<byte> Append(int length)
     {
@@ -94,5 +115,18 @@ public sealed class RecordBatch
             Array.Resize(ref _bytes, Math.Max(_bytes.Length * 2, ByteCount + length + Padding));
         ByteCount += length;
         return _bytes.AsSpan(ByteCount - length, length);
+    }
+
+    private void AddRecord(ReadOnlySpan<byte> record, long position)
+    {
+        if (_total == _records.Length)
+        {
+            Array.Resize(ref _records, _total * 2);
+            Array.Resize(ref _fields, _total * 2 * _fieldCount);
+        }
+        _records[_total++] = new DecodedRecord { Start = ByteCount, Length = record.Length, Position = position };
+        var target = Append(record.Length + 1);
+        record.CopyTo(target);
+        target[record.Length] = 0;
     }
 }

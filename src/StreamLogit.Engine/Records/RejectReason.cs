@@ -54,11 +54,14 @@ public enum RejectReason
     /// <summary>The weight is not a number, or not within 0 to 1e6.</summary>
     WeightOutOfRange,
 
-    /// <summary>A label for an event that is not awaiting one.</summary>
+    /// <summary>A label for an event that is not known, and that did not come within the time for early labels.</summary>
     LabelUnknownEvent,
 
-    /// <summary>A second event with the id of an event that is still awaiting its label.</summary>
+    /// <summary>A second event with the id of an event that is still kept for its label.</summary>
     IdReused,
+
+    /// <summary>A time further ahead of the stream's clock than the definition allows.</summary>
+    TimeAhead,
 
     /// <summary>A row of comma-separated values that is not quoted as RFC 4180 says, or whose cells are not as many as the header's.</summary>
     RowMalformed,

@@ -25,6 +25,7 @@ public static class RejectReasons
         RejectReason.WeightOutOfRange => "weight-out-of-range",
         RejectReason.LabelUnknownEvent => "label-unknown-event",
         RejectReason.IdReused => "id-reused",
+        RejectReason.TimeAhead => "time-ahead",
         RejectReason.RowMalformed => "row-malformed",
         _ => throw new ArgumentOutOfRangeException(nameof(reason), reason, null),
     };

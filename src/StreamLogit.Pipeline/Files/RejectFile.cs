@@ -19,10 +19,9 @@ public sealed class RejectFile(FileOutputOptions options) : IScoreSink
     /// <inheritdoc/>
     public void Write(RecordBatch records, ScoreBatch scores)
     {
-        for (int i = 0; i < records.Count; i++)
+        foreach (int reject in records.Rejects)
         {
-            if (records.Records[i].Kind != RecordKind.Reject) continue;
-            RejectJson.Write(records, i, _file.Buffer);
+            RejectJson.Write(records, reject, _file.Buffer);
             _file.EndLine();
         }
         _file.Send();

@@ -13,9 +13,9 @@ public static class RejectJson
     /// <summary>Adds a reject to a buffer, without a line end.</summary>
     public static void Write(RecordBatch records, int index, ArrayBufferWriter<byte> buffer)
     {
-        ref readonly var record = ref records.Records[index];
+        ref readonly var record = ref records.Record(index);
         buffer.Write("{\"position\":\""u8);
-        WriteText(records.Origin, buffer);
+        WriteText(records.OriginOf(index), buffer);
         buffer.Write(":"u8);
         record.Position.TryFormat(buffer.GetSpan(20), out int digits, provider: CultureInfo.InvariantCulture);
         buffer.Advance(digits);

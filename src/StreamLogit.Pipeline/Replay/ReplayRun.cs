@@ -15,6 +15,7 @@ public sealed class ReplayRun : IDisposable
     private readonly ScoringEngine _engine;
     private readonly RecordingSequence _source;
     private readonly ScoreHash _hash = new();
+    private readonly TemporaryArchive _archive = new();
     private readonly ScoringLoop _loop;
 
     /// <summary>Opens the recordings.</summary>
@@ -25,9 +26,9 @@ public sealed class ReplayRun : IDisposable
     /// <exception cref="InvalidRecordingException">A recording is not there.</exception>
     public ReplayRun(EngineDefinition definition, IReadOnlyList<FileSourceOptions> recordings, LoopOptions options, TimeProvider time)
     {
-        _engine = new ScoringEngine(definition) { GiveReasons = false };
+        _engine = new ScoringEngine(definition, _archive) { GiveReasons = false };
         _source = new RecordingSequence(recordings, definition.Record.MaximumBytes, time);
-        _loop = new ScoringLoop(_engine, _source, [_hash], state: null, options, time);
+        _loop = new ScoringLoop(_engine, _source, [_hash], state: null, options with { EndsWithSource = true }, time);
     }
 
     /// <summary>The latest health snapshot. Any thread may ask.</summary>
@@ -52,5 +53,6 @@ public sealed class ReplayRun : IDisposable
     {
         _source.Dispose();
         _hash.Dispose();
+        _archive.Dispose();
     }
 }

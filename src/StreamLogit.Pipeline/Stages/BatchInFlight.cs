@@ -20,6 +20,9 @@ internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)
     /// <summary>Whether nothing follows for a while, so that health is to be published now.</summary>
     public bool IsPause { get; set; }
 
+    /// <summary>Whether the stream ends here.</summary>
+    public bool IsEnd { get; set; }
+
     public void Clear()
     {
         Records.Clear();
@@ -27,5 +30,6 @@ internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)
         CommitAt = null;
         Changes = null;
         IsPause = false;
+        IsEnd = false;
     }
 }

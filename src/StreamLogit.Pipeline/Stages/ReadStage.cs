@@ -14,6 +14,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
     public async Task RunAsync(CancellationToken stop)
     {
         SourcePosition? held = null;
+        bool hasEnded = false;
         var batch = await TakeEmpty().ConfigureAwait(false);
         while (!stop.IsCancellationRequested)
         {
@@ -21,7 +22,8 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
             // A batch that is still held back when the run is stopped was never given: the next run reads it again.
             held = _pacer is null ? null : source.Position;
             var outcome = await source.FillAsync(batch.Records, _pacer?.BatchSize ?? options.BatchSize, stop).ConfigureAwait(false);
-            if (outcome == FillOutcome.Ended) break;
+            hasEnded = outcome == FillOutcome.Ended;
+            if (hasEnded) break;
             if (outcome == FillOutcome.Idle)
             {
                 if (!IsPauseDue) continue;
@@ -39,6 +41,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
 
         batch.Clear();
         batch.IsPause = true;
+        batch.IsEnd = hasEnded && options.EndsWithSource;
         batch.CommitAt = held ?? source.Position;
         await conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None).ConfigureAwait(false);
         conveyor.Read.Writer.Complete();

@@ -1,11 +1,11 @@
 using StreamLogit.Engine;
 using StreamLogit.Engine.Health;
-using StreamLogit.Engine.Persistence;
+using StreamLogit.Pipeline.State;
 
 namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Owns the engine: runs batches through it, captures its state where a commit follows, and publishes its health.</summary>
-internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, bool keepsState, TimeSpan healthEvery, TimeProvider time)
+internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, StateArchive? archive, TimeSpan healthEvery, TimeProvider time)
 {
     private HealthSnapshot _health = engine.Health();
     private long _published = time.GetTimestamp();
@@ -30,9 +30,10 @@ internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, bool k
     private void Run(BatchInFlight batch)
     {
         if (batch.Records.Count > 0) engine.Process(batch.Records, batch.Scores);
-        if (batch.CommitAt is not null && keepsState)
+        if (batch.IsEnd) engine.End(batch.Records);
+        if (batch.CommitAt is not null && archive is not null)
         {
-            batch.Changes = new StateBlocks();
+            batch.Changes = archive.Take();
             engine.Save(batch.Changes);
         }
         if (!batch.IsPause && time.GetElapsedTime(_published) < healthEvery) return;

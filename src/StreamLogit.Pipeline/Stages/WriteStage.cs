@@ -33,7 +33,7 @@ internal sealed class WriteStage(ImmutableArray<IScoreSink> sinks, StateStore? s
 
     private void Write(BatchInFlight batch)
     {
-        if (batch.Records.Count == 0) return;
+        if (batch.Records.Count == 0 && batch.Records.Rejects.Count == 0) return;
         foreach (var sink in sinks) sink.Write(batch.Records, batch.Scores);
         Volatile.Write(ref _records, _records + batch.Records.Count);
     }
@@ -44,6 +44,7 @@ internal sealed class WriteStage(ImmutableArray<IScoreSink> sinks, StateStore? s
         foreach (var sink in sinks) marks[sink.Name] = sink.Flush();
         if (state is null || changes is null) return;
         state.Commit(new Checkpoint(position, marks.ToImmutable(), changes));
+        state.Archive.Committed(changes);
         Volatile.Write(ref _commits, _commits + 1);
     }
 }

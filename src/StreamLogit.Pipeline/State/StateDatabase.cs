@@ -15,9 +15,13 @@ internal sealed class StateDatabase : IDisposable
     /// <summary>The file in the state folder.</summary>
     public const string FileName = "state.db";
 
+    private const string ReadBlockSql = "SELECT hash, bytes FROM blocks WHERE part = $part AND number = $number";
+    private const int MostFreePages = 4096;
+
     private readonly SqliteConnection _connection;
     private readonly SqliteCommand _putBlock;
     private readonly SqliteCommand _removeBlock;
+    private readonly SqliteCommand _readBlock;
 
     private StateDatabase(string path, SqliteConnection connection)
     {
@@ -25,6 +29,7 @@ internal sealed class StateDatabase : IDisposable
         _connection = connection;
         _putBlock = Command("INSERT INTO blocks(part, number, hash, bytes) VALUES ($part, $number, $hash, $bytes) "
             + "ON CONFLICT(part, number) DO UPDATE SET hash = excluded.hash, bytes = excluded.bytes", "$part", "$number", "$hash", "$bytes");
+        _readBlock = Command(ReadBlockSql, "$part", "$number");
         _removeBlock = Command("DELETE FROM blocks WHERE part = $part AND number = $number", "$part", "$number");
     }
 
@@ -112,20 +117,72 @@ internal sealed class StateDatabase : IDisposable
                 ("$name", name), ("$mark", mark));
     }
 
-    public StateBlocks ReadBlocks()
+    /// <summary>All blocks but those of the parts that an engine reads one by one.</summary>
+    public StateBlocks ReadBlocks(IReadOnlyList<string> exceptParts)
     {
-        using var command = Command("SELECT part, number, hash, bytes FROM blocks");
-        using var reader = command.ExecuteReader();
+        using var command = Command(ReadBlockSql, "$part", "$number"); // within whatever transaction is under way
         var blocks = new StateBlocks();
-        while (reader.Read())
+        foreach (string part in ReadParts().Select(p => p.Name).Except(exceptParts))
         {
-            string part = reader.GetString(0);
-            long number = reader.GetInt64(1);
-            byte[] bytes = reader.GetFieldValue<byte[]>(3);
-            if (reader.GetInt64(2) != Hash(bytes)) throw StorageFault.Damaged(Path, $"block {number} of its part '{part}' has changed since it was written");
-            blocks.Put(part, number, bytes);
+            foreach (long number in ReadNumbers(part))
+            {
+                byte[] bytes = [];
+                int length = ReadBlock(command, part, number, ref bytes) ?? 0;
+                blocks.Put(part, number, bytes.AsSpan(0, length));
+            }
         }
         return blocks;
+    }
+
+    /// <summary>The length of a block, which is read into the front of <paramref name="target"/>; null where there is no such block.</summary>
+    public int? ReadBlock(string part, long number, ref byte[] target) => ReadBlock(_readBlock, part, number, ref target);
+
+    private int? ReadBlock(SqliteCommand command, string part, long number, ref byte[] target)
+    {
+        command.Parameters[0].Value = part;
+        command.Parameters[1].Value = number;
+        using var reader = command.ExecuteReader();
+        if (!reader.Read()) return null;
+        int length = (int)reader.GetBytes(1, 0, null, 0, 0);
+        if (target.Length < length) target = new byte[length];
+        reader.GetBytes(1, 0, target, 0, length);
+        if (reader.GetInt64(0) != Hash(target.AsSpan(0, length)))
+            throw StorageFault.Damaged(Path, $"block {number} of its part '{part}' has changed since it was written");
+        return length;
+    }
+
+    /// <summary>The numbers of the blocks of a part, in their order.</summary>
+    public IReadOnlyList<long> ReadNumbers(string part)
+    {
+        using var command = Command("SELECT number FROM blocks WHERE part = $part ORDER BY number", "$part");
+        command.Parameters[0].Value = part;
+        using var reader = command.ExecuteReader();
+        var numbers = new List<long>();
+        while (reader.Read()) numbers.Add(reader.GetInt64(0));
+        return numbers;
+    }
+
+    /// <summary>The parts and how much room each takes.</summary>
+    public IReadOnlyList<StatePart> ReadParts()
+    {
+        using var command = Command("SELECT part, count(*), sum(length(bytes)) FROM blocks GROUP BY part ORDER BY part");
+        using var reader = command.ExecuteReader();
+        var parts = new List<StatePart>();
+        while (reader.Read()) parts.Add(new StatePart(reader.GetString(0), reader.GetInt64(1), reader.GetInt64(2)));
+        return parts;
+    }
+
+    /// <summary>Gives room that removed blocks have left back to the disk, a little at a time, when there is much of it.</summary>
+    public void GiveRoomBack()
+    {
+        long free = Pragma("freelist_count");
+        if (free * 4 > Pragma("page_count") && free > MostFreePages) Execute($"PRAGMA incremental_vacuum({MostFreePages})");
+
+        long Pragma(string name)
+        {
+            using var command = Command($"PRAGMA {name}");
+            return (long)(command.ExecuteScalar() ?? 0L);
+        }
     }
 
     public void WriteBlocks(StateBlocks changes, SqliteTransaction transaction)
@@ -150,10 +207,11 @@ internal sealed class StateDatabase : IDisposable
     {
         _putBlock.Dispose();
         _removeBlock.Dispose();
+        _readBlock.Dispose();
         _connection.Dispose();
     }
 
-    private static long Hash(byte[] bytes) => unchecked((long)XxHash3.HashToUInt64(bytes));
+    private static long Hash(ReadOnlySpan<byte> bytes) => unchecked((long)XxHash3.HashToUInt64(bytes));
 
     private void Execute(string sql, params ReadOnlySpan<(string Name, object Value)> parameters)
     {

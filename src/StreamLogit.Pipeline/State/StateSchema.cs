@@ -27,6 +27,12 @@ internal static class StateSchema
         }
 
         // FULL has a commit on the disk before it counts; in WAL mode that is one fsync a commit.
+        if (isNew)
+        {
+            // Only before the first table can the file be told to give room back later.
+            command.CommandText = "PRAGMA auto_vacuum = INCREMENTAL";
+            command.ExecuteNonQuery();
+        }
         command.CommandText = "PRAGMA journal_mode = WAL; PRAGMA synchronous = FULL; PRAGMA journal_size_limit = 67108864;";
         command.ExecuteNonQuery();
         if (!isNew) return;
@@ -37,7 +43,7 @@ internal static class StateSchema
                 number INTEGER NOT NULL, fingerprint INTEGER NOT NULL);
             CREATE TABLE outputs(name TEXT PRIMARY KEY, mark INTEGER NOT NULL) WITHOUT ROWID;
             CREATE TABLE blocks(part TEXT NOT NULL, number INTEGER NOT NULL, hash INTEGER NOT NULL, bytes BLOB NOT NULL,
-                PRIMARY KEY(part, number)) WITHOUT ROWID;
+                PRIMARY KEY(part, number));
             PRAGMA application_id = {ApplicationId};
             PRAGMA user_version = {FormatVersion};
             COMMIT;

@@ -1,5 +1,6 @@
 using System.Globalization;
 using Microsoft.Data.Sqlite;
+using StreamLogit.Engine;
 
 namespace StreamLogit.Pipeline.State;
 
@@ -23,7 +24,11 @@ public sealed class StateStore : IDisposable
         _stream = stream;
         _definition = definition;
         _commits = ReadCommits(database);
+        Archive = new StateArchive(new BlockReader(database.Path));
     }
+
+    /// <summary>Where the engine puts what it has no room for in memory.</summary>
+    public StateArchive Archive { get; }
 
     /// <summary>Called within a commit, when all is written and nothing counts yet; tests die here.</summary>
     internal Action? BeforeCommit { get; set; }
@@ -68,7 +73,7 @@ public sealed class StateStore : IDisposable
             using var transaction = database.BeginRead();
             long commits = ReadCommits(database);
             if (commits == 0) throw new PipelineException($"The state {path} has no commit yet.");
-            var info = new StateInfo(database.ReadMeta(StreamKey) ?? "", database.ReadMeta(DefinitionKey) ?? "", commits);
+            var info = new StateInfo(database.ReadMeta(StreamKey) ?? "", database.ReadMeta(DefinitionKey) ?? "", commits, [.. database.ReadParts()]);
             return (info, Read(database));
         });
     }
@@ -90,18 +95,20 @@ public sealed class StateStore : IDisposable
         _database.WriteMeta(CommitsKey, (_commits + 1).ToString(CultureInfo.InvariantCulture));
         BeforeCommit?.Invoke();
         transaction.Commit();
+        _database.GiveRoomBack();
         return ++_commits;
     });
 
     /// <inheritdoc/>
     public void Dispose()
     {
+        Archive.Dispose();
         _database.Dispose();
         _lock.Dispose();
     }
 
     private static Checkpoint Read(StateDatabase database) =>
-        new(database.ReadPosition(), database.ReadMarks(), database.ReadBlocks());
+        new(database.ReadPosition(), database.ReadMarks(), database.ReadBlocks(ScoringEngine.ArchivedParts));
 
     private static long ReadCommits(StateDatabase database) =>
         database.ReadMeta(CommitsKey) is { } commits ? long.Parse(commits, CultureInfo.InvariantCulture) : 0;

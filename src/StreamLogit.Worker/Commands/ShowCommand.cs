@@ -1,4 +1,5 @@
 using System.CommandLine;
+using System.Globalization;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Worker.Output;
 
@@ -83,6 +84,12 @@ internal static class ShowCommand
         foreach (var (feature, value) in model.PublishedCoefficients().OrderByDescending(c => Math.Abs(c.Value)).ThenBy(c => c.Feature, StringComparer.Ordinal).Take(top))
             coefficients.Add(feature, FigureText.Coefficient(value));
         coefficients.Write(Terminal.Output);
+        Console.Out.WriteLine();
+
+        var parts = new ResultTable("part of the state", "blocks", "bytes");
+        foreach (var part in model.Parts)
+            parts.Add(part.Name, part.Blocks.ToString(CultureInfo.InvariantCulture), part.Bytes.ToString(CultureInfo.InvariantCulture));
+        parts.Write(Terminal.Output);
         Console.Error.WriteLine(
             $"stream {model.Stream}, {model.Snapshot.Version} labels learned; coefficients of {model.PublishedSetting ?? "the blend"}, the largest of {model.Snapshot.Settings[0].Coefficients.Length}");
     }

@@ -35,6 +35,10 @@ internal static class HealthTables
         table.Add("rejected", FigureText.Count(health.Rejected));
         table.Add("awaiting", FigureText.Count(health.Awaiting));
         table.Add("expired", FigureText.Count(health.Expired));
+        table.Add("thinned", FigureText.Count(health.Thinned));
+        table.Add("labels repeated", FigureText.Count(health.Repeated));
+        table.Add("labels corrected", FigureText.Count(health.Corrected));
+        table.Add("labels before their event", FigureText.Count(health.Early));
         return table;
     }
 

@@ -14,7 +14,7 @@ public class AwaitingStoreTests
     [Fact]
     public void TryFind_AfterAdd_GivesBackEveryPart()
     {
-        var store = new AwaitingStore(Settings, Wait);
+        var store = InMemory();
         Add(store, "t-81", clock: 17, firstSlot: 5);
         Assert.True(store.TryFind("t-81"u8, 1, out var place));
         var found = store.At(place);
@@ -28,7 +28,7 @@ public class AwaitingStoreTests
     [Fact]
     public void TryFind_OtherIdWithTheSameHash_IsNotConfused()
     {
-        var store = new AwaitingStore(Settings, Wait);
+        var store = InMemory();
         Add(store, "a", clock: 1, firstSlot: 1);
         Add(store, "b", clock: 1, firstSlot: 2);
         Assert.True(store.TryFind("b"u8, 1, out var place));
@@ -37,76 +37,94 @@ public class AwaitingStoreTests
     }
 
     [Fact]
-    public void TryFindExpired_AtTheEndOfTheWait_StillWaits()
+    public void TryTakeExpired_AtTheEndOfTheWait_StillWaits()
     {
-        var store = new AwaitingStore(Settings, Wait);
+        var store = InMemory();
         Add(store, "a", clock: 10, firstSlot: 1);
-        Assert.False(store.TryFindExpired(10 + Wait, out _));
-        Assert.True(store.TryFindExpired(10 + Wait + 1, out _));
+        Assert.False(store.TryTakeExpired(10 + Wait, out _));
+        Assert.True(store.TryTakeExpired(10 + Wait + 1, out _));
     }
 
     [Fact]
     public void Add_IdLongerThanASegment_IsKept()
     {
-        var store = new AwaitingStore(Settings, Wait);
+        var store = InMemory();
         string id = new('x', 200_000);
         Add(store, id, clock: 1, firstSlot: 1);
         Add(store, "next", clock: 1, firstSlot: 2);
-        Assert.True(store.TryFind(Encoding.UTF8.GetBytes(id), 1, out var place));
-        store.Remove(place);
+        Assert.True(store.TryFind(Encoding.UTF8.GetBytes(id), 1, out _));
         Assert.True(store.TryFind("next"u8, 1, out _));
-        Assert.Equal(1, store.Count);
+        Assert.Equal(2, store.Awaiting);
     }
 
-    [Fact]
-    public void AnySequence_WithRestarts_AgreesWithADictionary()
+    [Theory]
+    [InlineData(false)]
+    [InlineData(true)]
+    public void AnySequence_WithRestarts_AgreesWithADictionary(bool isArchived)
     {
-        // 0..59 adds, 60..89 takes, 90..97 lets time pass, 98 and 99 save, load and go on with the loaded store.
+        // 0..59 adds, 60..89 labels, 90..97 lets time pass, 98 and 99 save, load and go on with the loaded store. Ids are long, so that segments fill.
         Gen.Select(Gen.Int[0, 99], Gen.Int[0, 400]).Array[0, 4000].Sample(operations =>
         {
-            var store = new AwaitingStore(Settings, Wait);
-            var kept = new StateBlocks();
-            var model = new Dictionary<string, long>(StringComparer.Ordinal);
+            var archive = isArchived ? new DictionaryArchive() : null;
+            var kept = archive?.Blocks ?? new StateBlocks();
+            var store = Store(archive);
+            var model = new Dictionary<string, (long ScoredAt, EventState State)>(StringComparer.Ordinal);
             long clock = 0;
             foreach (var (operation, number) in operations)
             {
-                string id = $"event-{number}";
+                string id = $"event-{number}-{new string('x', 900)}";
                 switch (operation)
                 {
                     case < 60 when !model.ContainsKey(id):
                         Add(store, id, clock, number);
-                        model[id] = clock;
+                        model[id] = (clock, EventState.Awaiting);
                         break;
                     case >= 60 and < 90:
-                        Assert.Equal(model.Remove(id), store.TryFind(Encoding.UTF8.GetBytes(id), 1, out var place));
-                        if (place != default || store.Count > model.Count) store.Remove(place);
+                        bool isKept = store.TryFind(Encoding.UTF8.GetBytes(id), 1, out var place);
+                        Assert.Equal(model.ContainsKey(id), isKept);
+                        if (!isKept) break;
+                        Assert.Equal(model[id].State, store.MarkOf(place).State);
+                        var state = operation % 2 == 0 ? EventState.Good : EventState.Bad;
+                        store.Mark(place, new LabelMark(state, default));
+                        model[id] = model[id] with { State = state };
                         break;
                     case >= 90 and < 98:
                         clock += number;
-                        while (store.TryFindExpired(clock, out var expired))
+                        while (store.TryTakeExpired(clock, out var expired))
                         {
                             string expiredId = Encoding.UTF8.GetString(store.At(expired).Id);
-                            Assert.True(clock - model[expiredId] > Wait);
+                            Assert.True(clock - model[expiredId].ScoredAt > Wait && model[expiredId].State == EventState.Awaiting);
+                            store.Mark(expired, new LabelMark(EventState.Gone, default));
                             model.Remove(expiredId);
-                            store.Remove(expired);
                         }
-                        Assert.DoesNotContain(model, m => clock - m.Value > Wait);
+                        store.Forget(clock);
+                        foreach (string old in model.Where(m => clock - m.Value.ScoredAt > Wait).Select(m => m.Key).ToList())
+                        {
+                            Assert.NotEqual(EventState.Awaiting, model[old].State);
+                            model.Remove(old);
+                        }
                         break;
                     case >= 98:
                         store.Save(kept);
-                        store = new AwaitingStore(Settings, Wait);
+                        store = Store(archive);
                         store.Load(kept);
                         break;
                 }
-                Assert.Equal(model.Count, store.Count);
+                Assert.Equal(model.Count, store.Kept);
+                Assert.Equal(model.Values.Count(m => m.State == EventState.Awaiting), store.Awaiting);
             }
             foreach (string id in model.Keys) Assert.True(store.TryFind(Encoding.UTF8.GetBytes(id), 1, out _));
-        }, iter: 60, seed: "0000KQZ5Nuf5");
+        }, iter: 30, seed: "0000KQZ5Nuf5");
     }
+
+    private static AwaitingStore InMemory() => Store(null);
+
+    // The archive takes what does not fit into two segments of 64 KiB.
+    private static AwaitingStore Store(IBlockArchive? archive) => new(Settings, Wait, keepsAssumed: false, memoryBytes: 1 << 17, archive);
 
     // Every id has the same hash: the worst case, and the one that shows whether ids are compared.
     private static void Add(AwaitingStore store, string id, long clock, int firstSlot) => store.Add(
-        new AwaitingHeader { IdHash = 1, ScoredAtMicroseconds = clock },
+        new KeptHeader { IdHash = 1, ScoredAtMicroseconds = clock },
         [firstSlot + 0.25, firstSlot + 1.25, firstSlot + 2.25],
         new EncodedVector([firstSlot, firstSlot + 1], [firstSlot + 0.5, -firstSlot - 0.5]),
         Encoding.UTF8.GetBytes(id));

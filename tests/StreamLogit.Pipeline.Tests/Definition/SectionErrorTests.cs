@@ -24,7 +24,7 @@ public sealed class SectionErrorTests
     [InlineData("\"record\": { \"labelValues\": { \"bad\": 1, \"good\": 2 } }", "2:48: record.labelValues.good: expected a whole number from 0 to 1, found the number 2")]
     [InlineData("\"record\": { \"labelValues\": { \"1\": 1, \"1.0\": 0 } }", "2:45: record.labelValues[\"1.0\"]: the same number as \"1\", which means 1: a number has one meaning")]
     [InlineData("\"record\": { \"labelValues\": { \"a\": 1, \"b\": 0, \"a\": 1 } }", "2:46: record.labelValues.a: the key is there twice, before at quay.json:2:30: keep one")]
-    [InlineData("\"record\": { \"ahead\": \"1d\" }", "2:13: record.ahead: unknown key. Known here: \"id\", \"time\", \"timeFormat\", \"label\", \"weight\", \"labelValues\", \"maxBytes\", \"maxDepth\"")]
+    [InlineData("\"record\": { \"zone\": \"1d\" }", "2:13: record.zone: unknown key. Known here: \"id\", \"time\", \"timeFormat\", \"label\", \"weight\", \"labelValues\", \"maxBytes\", \"maxDepth\", \"ahead\"")]
     public void Record_Wrong_IsRefused(string keys, params string[] expected) => AssertErrors(keys, expected);
 
     [Theory]
@@ -72,7 +72,7 @@ public sealed class SectionErrorTests
     [InlineData("\"labels\": { \"wait\": \"30 days\" }", "2:21: labels.wait: expected a duration from 1s to 3650d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"30 days\"")]
     [InlineData("\"labels\": { \"wait\": 30 }", "2:21: labels.wait: expected a duration from 1s to 3650d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the number 30")]
     [InlineData("\"labels\": { \"unlabelled\": \"positive\" }", "2:27: labels.unlabelled: expected one of \"drop\", \"negative\", found the string \"positive\"")]
-    [InlineData("\"labels\": { \"keep\": 1 }", "2:13: labels.keep: unknown key. Known here: \"wait\", \"unlabelled\"")]
+    [InlineData("\"labels\": { \"hold\": 1 }", "2:13: labels.hold: unknown key. Known here: \"wait\", \"unlabelled\", \"early\", \"keep\", \"memoryMiB\"")]
     [InlineData("\"decision\": { \"cutoff\": -0.1 }", "2:25: decision.cutoff: expected a number from 0 to 1, found the number -0.1")]
     [InlineData("\"decision\": { \"cutoff\": \"0.1\" }", "2:25: decision.cutoff: expected a number from 0 to 1, found the string \"0.1\"")]
     [InlineData("\"decision\": { \"cutof\": 0.1 }", "2:15: decision.cutof: unknown key; did you mean \"cutoff\"? Known here: \"cutoff\"")]

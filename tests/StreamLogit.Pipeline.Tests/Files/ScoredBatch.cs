@@ -15,7 +15,11 @@ internal sealed record ScoredBatch(RecordBatch Records, ScoreBatch Scores)
             i % 3 == 2 ? "{\"id\":" : $$"""{"id":"t-{{i}}","time":"2026-03-01T08:15:30Z"}""")]);
         for (int i = 0; i < count; i++)
         {
-            if (batch.Records.Records[i].Kind != RecordKind.Event) continue;
+            if (batch.Records.Records[i].Kind != RecordKind.Event)
+            {
+                batch.Records.ListReject(i);
+                continue;
+            }
             int number = first + i;
             ref var score = ref batch.Scores.Add(out var reasons);
             score = new Score { Record = i, Probability = 1.0 / (number + 1), LogOdds = -Math.Log(number), Version = number, ReasonCount = 1 };

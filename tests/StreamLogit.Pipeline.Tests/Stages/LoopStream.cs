@@ -23,7 +23,7 @@ internal static class LoopStream
             new TimeCycleFeature(86_400_000_000, "1d"),
         ],
         Learning = new LearningOptions { Slots = 1024 },
-        Labels = new LabelOptions { WaitMicroseconds = 3600L * 1_000_000 },
+        Labels = new LabelOptions { WaitMicroseconds = 3600L * 1_000_000, EarlyMicroseconds = 60_000_000 },
         Decision = new DecisionOptions { Cutoff = 0.3 },
     };
 

@@ -105,7 +105,8 @@ public sealed class StateStoreTests : IDisposable
         state.Commit(NewCheckpoint(200));
 
         var (info, checkpoint) = StateStore.Peek(StatePath);
-        Assert.Equal(new StateInfo("quay", "{\"a\":1}", 2), info);
+        Assert.Equal(("quay", "{\"a\":1}", 2), (info.Stream, info.Definition, info.Commits));
+        Assert.Equal([new StatePart("bank", 1, 4)], info.Parts);
         Assert.Equal([("bank", 0, "zero")], Blocks(checkpoint));
         Assert.Equal(200, checkpoint.Position.Origins[1].Offset);
     }

@@ -11,6 +11,8 @@ internal static class RecordSection
     private const int LongestLimitBytes = 1 << 26;
     private const int MostLabelValues = 1000;
     private const int DeepestLimit = 256;
+    private const long ShortestAheadMicroseconds = 1_000_000;
+    private const long LongestAheadMicroseconds = 36500L * 24 * 3600 * 1_000_000;
 
     public static RecordOptions Read(ValueReader? value, LabelOptions labels)
     {
@@ -32,6 +34,7 @@ internal static class RecordSection
             LabelValues = ReadLabelValues(section.Optional("labelValues"), labels) ?? defaults.LabelValues,
             MaximumBytes = section.Optional("maxBytes")?.Whole(ShortestLimitBytes, LongestLimitBytes) ?? defaults.MaximumBytes,
             MaximumDepth = section.Optional("maxDepth")?.Whole(1, DeepestLimit) ?? defaults.MaximumDepth,
+            AheadMicroseconds = section.Optional("ahead")?.Duration(ShortestAheadMicroseconds, LongestAheadMicroseconds) ?? defaults.AheadMicroseconds,
         };
         section.End();
         RefuseSharedFields(

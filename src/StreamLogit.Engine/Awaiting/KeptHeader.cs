@@ -2,8 +2,8 @@ using System.Runtime.CompilerServices;
 
 namespace StreamLogit.Engine.Awaiting;
 
-/// <summary>What is kept of an awaiting event besides its log-odds, its vector and its id.</summary>
-internal struct AwaitingHeader
+/// <summary>What is kept of a scored event besides its log-odds, its vector and its id.</summary>
+internal struct KeptHeader
 {
     /// <summary>The hash of its id.</summary>
     public ulong IdHash;
@@ -20,6 +20,9 @@ internal struct AwaitingHeader
     /// <summary>The importance weight that the event gave, or NaN.</summary>
     public double Weight;
 
+    /// <summary>How many events it stands for, where others like it were not kept.</summary>
+    public int StandsFor;
+
     /// <summary>Entries of its vector.</summary>
     public int Entries;
 
@@ -32,5 +35,5 @@ internal struct AwaitingHeader
     /// <summary>Bytes that it takes in the segment.</summary>
     public int TotalBytes;
 
-    public static int Size => Unsafe.SizeOf<AwaitingHeader>();
+    public static int Size => Unsafe.SizeOf<KeptHeader>();
 }

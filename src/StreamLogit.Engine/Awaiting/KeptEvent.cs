@@ -7,15 +7,15 @@ namespace StreamLogit.Engine.Awaiting;
 /// A scored event as it lies in a segment: a header, its log-odds under every setting, its vector and its id.
 /// A view of the segment's bytes, valid until the store changes.
 /// </summary>
-internal readonly ref struct AwaitingEvent(ReadOnlySpan<byte> bytes, int settings)
+internal readonly ref struct KeptEvent(ReadOnlySpan<byte> bytes, int settings)
 {
     private readonly ReadOnlySpan<byte> _bytes = bytes;
 
-    public ref readonly AwaitingHeader Header => ref MemoryMarshal.AsRef<AwaitingHeader>(_bytes);
+    public ref readonly KeptHeader Header => ref MemoryMarshal.AsRef<KeptHeader>(_bytes);
 
     /// <summary>The log-odds that each setting gave when the event was scored.</summary>
     public ReadOnlySpan<double> LogOdds =>
-        MemoryMarshal.Cast<byte, double>(_bytes.Slice(AwaitingHeader.Size, settings * sizeof(double)));
+        MemoryMarshal.Cast<byte, double>(_bytes.Slice(KeptHeader.Size, settings * sizeof(double)));
 
     /// <summary>The features as they were at scoring.</summary>
     public EncodedVector Vector
@@ -23,7 +23,7 @@ internal readonly ref struct AwaitingEvent(ReadOnlySpan<byte> bytes, int setting
         get
         {
             int entries = Header.Entries;
-            int values = AwaitingHeader.Size + settings * sizeof(double);
+            int values = KeptHeader.Size + settings * sizeof(double);
             int slots = values + entries * sizeof(double);
             return new(
                 MemoryMarshal.Cast<byte, int>(_bytes.Slice(slots, entries * sizeof(int))),
@@ -32,18 +32,26 @@ internal readonly ref struct AwaitingEvent(ReadOnlySpan<byte> bytes, int setting
     }
 
     public ReadOnlySpan<byte> Id =>
-        _bytes.Slice(AwaitingHeader.Size + settings * sizeof(double) + Header.Entries * (sizeof(double) + sizeof(int)), Header.IdLength);
+        _bytes.Slice(KeptHeader.Size + settings * sizeof(double) + Header.Entries * (sizeof(double) + sizeof(int)), Header.IdLength);
+
+    /// <summary>What its label counts: the weight that comes with the label, or else the event's own, for every event that it stands for.</summary>
+    /// <param name="labelWeight">The weight that comes with the label, or NaN.</param>
+    public double WeightOf(double labelWeight)
+    {
+        double weight = !double.IsNaN(labelWeight) ? labelWeight : double.IsNaN(Header.Weight) ? 1 : Header.Weight;
+        return weight * Header.StandsFor;
+    }
 
     /// <summary>The bytes that an event takes, a multiple of 8 so that the next one is aligned.</summary>
     public static int SizeOf(int settings, int entries, int idLength) =>
-        (AwaitingHeader.Size + settings * sizeof(double) + entries * (sizeof(double) + sizeof(int)) + idLength + 7) & ~7;
+        (KeptHeader.Size + settings * sizeof(double) + entries * (sizeof(double) + sizeof(int)) + idLength + 7) & ~7;
 
     /// <summary>Lays out an event in <paramref name="target"/>, which has the length that <see cref="SizeOf"/> gives.</summary>
     public static void Write(
-        Span<byte> target, in AwaitingHeader header, ReadOnlySpan<double> logOdds, in EncodedVector vector, ReadOnlySpan<byte> id)
+        Span<byte> target, in KeptHeader header, ReadOnlySpan<double> logOdds, in EncodedVector vector, ReadOnlySpan<byte> id)
     {
         MemoryMarshal.Write(target, header);
-        var rest = target[AwaitingHeader.Size..];
+        var rest = target[KeptHeader.Size..];
         rest = Put(rest, MemoryMarshal.AsBytes(logOdds));
         rest = Put(rest, MemoryMarshal.AsBytes(vector.Values));
         rest = Put(rest, MemoryMarshal.AsBytes(vector.Slots));

@@ -1,0 +1,17 @@
+namespace StreamLogit.Engine.Awaiting;
+
+/// <summary>How often something other than a first label happened to an event.</summary>
+internal struct LabelEvents
+{
+    /// <summary>Its wait ended without a label.</summary>
+    public long Expired;
+
+    /// <summary>It was not kept for its label.</summary>
+    public long Thinned;
+
+    /// <summary>Its label came again.</summary>
+    public long Repeated;
+
+    /// <summary>Its label was corrected.</summary>
+    public long Corrected;
+}

@@ -1,0 +1,56 @@
+namespace StreamLogit.Engine.Records;
+
+/// <summary>
+/// The clock of a stream: the highest time seen. A time too far ahead of it is refused, so that one bad clock cannot end the wait of every event;
+/// but when some records in a row come from there, the stream was silent and has moved on, and the clock follows.
+/// </summary>
+/// <param name="aheadMicroseconds">How far ahead a time may lie.</param>
+internal sealed class StreamClock(long aheadMicroseconds)
+{
+    /// <summary>So many records in a row, each near the one before, move the clock however far they lie ahead.</summary>
+    public const int RecordsThatMoveOn = 10;
+
+    private long _refusedMicroseconds;
+    private int _refusedInARow;
+
+    /// <summary>The highest time taken, or the least value before the first.</summary>
+    public long Microseconds { get; private set; } = long.MinValue;
+
+    /// <summary>The clock, or null before the first record.</summary>
+    public long? Now => Microseconds == long.MinValue ? null : Microseconds;
+
+    /// <summary>Takes the time of a record. An earlier time is taken and moves nothing back.</summary>
+    /// <returns>Whether the record can be used.</returns>
+    public bool TryTake(long timeMicroseconds)
+    {
+        if (Now is not { } now || timeMicroseconds - now <= aheadMicroseconds || MovesOn(timeMicroseconds))
+        {
+            _refusedInARow = 0;
+            Microseconds = Math.Max(Microseconds, timeMicroseconds);
+            return true;
+        }
+        return false;
+    }
+
+    public void Save(BinaryWriter writer)
+    {
+        writer.Write(Microseconds);
+        writer.Write(_refusedMicroseconds);
+        writer.Write(_refusedInARow);
+    }
+
+    public void Load(BinaryReader reader)
+    {
+        Microseconds = reader.ReadInt64();
+        _refusedMicroseconds = reader.ReadInt64();
+        _refusedInARow = reader.ReadInt32();
+    }
+
+    private bool MovesOn(long timeMicroseconds)
+    {
+        bool isNear = _refusedInARow > 0 && Math.Abs(timeMicroseconds - _refusedMicroseconds) <= aheadMicroseconds;
+        _refusedInARow = isNear ? _refusedInARow + 1 : 1;
+        _refusedMicroseconds = timeMicroseconds;
+        return _refusedInARow >= RecordsThatMoveOn;
+    }
+}

@@ -1,0 +1,65 @@
+using StreamLogit.Engine.Persistence;
+
+namespace StreamLogit.Pipeline.State;
+
+/// <summary>
+/// The archive of a worker's engine: what the engine puts here goes into the state with the next commit, and can be read before that.
+/// </summary>
+/// <remarks>The engine's task writes, reads and takes; the task that commits says so. Hence the lock, which is taken once a block.</remarks>
+public sealed class StateArchive : IBlockArchive, IDisposable
+{
+    private readonly Lock _lock = new();
+    private readonly List<StateBlocks> _taken = []; // on their way to a commit, oldest first
+    private readonly BlockReader _committed;
+    private StateBlocks _next = new();
+
+    /// <summary>The archive of a state, of which it reads what was committed.</summary>
+    internal StateArchive(BlockReader committed) => _committed = committed;
+
+    /// <summary>Hands over what was written since the last call, for the engine to add its changes and for a commit.</summary>
+    public StateBlocks Take()
+    {
+        lock (_lock)
+        {
+            var taken = _next;
+            _taken.Add(taken);
+            _next = new StateBlocks();
+            return taken;
+        }
+    }
+
+    /// <summary>Says that what <see cref="Take"/> handed over is in the state now.</summary>
+    public void Committed(StateBlocks taken)
+    {
+        lock (_lock) _taken.Remove(taken);
+    }
+
+    /// <inheritdoc/>
+    public void Write(string part, long number, ReadOnlySpan<byte> bytes) => _next.Put(part, number, bytes);
+
+    /// <inheritdoc/>
+    public void Remove(string part, long number) => _next.Remove(part, number);
+
+    /// <inheritdoc/>
+    public int Read(string part, long number, ref byte[] target)
+    {
+        byte[]? bytes = _next.Find(part, number);
+        if (bytes is null)
+        {
+            lock (_lock)
+            {
+                for (int i = _taken.Count - 1; i >= 0 && bytes is null; i--) bytes = _taken[i].Find(part, number);
+            }
+        }
+        if (bytes is null) return _committed.Read(part, number, ref target);
+        if (target.Length < bytes.Length) target = new byte[bytes.Length];
+        bytes.CopyTo(target, 0);
+        return bytes.Length;
+    }
+
+    /// <inheritdoc/>
+    public IEnumerable<long> Numbers(string part) => _committed.Numbers(part);
+
+    /// <inheritdoc/>
+    public void Dispose() => _committed.Dispose();
+}
