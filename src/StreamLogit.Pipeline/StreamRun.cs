@@ -73,7 +73,7 @@ public sealed class StreamRun : IDisposable
     {
         var source = definition.Source switch
         {
-            FileSourceOptions file => FileSource.Open(file, definition.Engine.Record.MaximumBytes, time),
+            FileSourceOptions file => RecordingSource.OpenAll(file, definition.Engine.Record.MaximumBytes, time),
             null => throw new ArgumentException("The definition names no source.", nameof(definition)),
             var other => throw new ArgumentException($"{other.GetType().Name} is no file.", nameof(definition)),
         };

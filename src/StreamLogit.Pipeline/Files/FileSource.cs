@@ -1,5 +1,6 @@
 using StreamLogit.Engine.Records;
 using StreamLogit.Pipeline.Options;
+using ZstdSharp;
 
 namespace StreamLogit.Pipeline.Files;
 
@@ -26,7 +27,7 @@ public sealed class FileSource : IRecordSource
     {
         _file = file;
         _cutter = cutter;
-        _follow = follow && !file.CanBlock;
+        _follow = follow && !file.CanBlock && !file.IsPacked;
         _time = time;
         _totalBytes = file.RawLength ?? -1;
     }
@@ -46,6 +47,7 @@ public sealed class FileSource : IRecordSource
         {
             RecordingFormat.JsonLines => new LineCutter(maximumBytes),
             RecordingFormat.Csv => new CsvCutter(options.Path, maximumBytes),
+            // Rows of Parquet are no bytes in a row: RecordingSource gives them to a source of their own.
             _ => throw new ArgumentOutOfRangeException(nameof(options), options.Format, null),
         };
         return new FileSource(file, cutter, options.Follow, time);
@@ -73,7 +75,7 @@ public sealed class FileSource : IRecordSource
             }
             SeekTo(origin);
         }
-        catch (IOException e)
+        catch (Exception e) when (IsUnreadable(e))
         {
             throw CannotRead(e);
         }
@@ -93,7 +95,7 @@ public sealed class FileSource : IRecordSource
                 if (!_file.CanBlock) Read();
                 else if (!await ReadPipeAsync(cancellation).ConfigureAwait(false)) return FillOutcome.Idle;
             }
-            catch (IOException e)
+            catch (Exception e) when (IsUnreadable(e))
             {
                 throw CannotRead(e);
             }
@@ -217,5 +219,8 @@ public sealed class FileSource : IRecordSource
         Volatile.Write(ref _bytesRead, _file.RawBytesRead ?? origin.Offset);
     }
 
-    private PipelineException CannotRead(IOException cause) => new($"{_file.Path} cannot be read: {cause.Message}", cause);
+    // What unpacks the bytes has exceptions of its own for bytes that are damaged.
+    private static bool IsUnreadable(Exception cause) => cause is IOException or InvalidDataException or ZstdException;
+
+    private PipelineException CannotRead(Exception cause) => new($"{_file.Path} cannot be read: {cause.Message}", cause);
 }

@@ -1,3 +1,7 @@
+using System.IO.Compression;
+using StreamLogit.Pipeline.Options;
+using ZstdSharp;
+
 namespace StreamLogit.Pipeline.Files;
 
 /// <summary>The bytes of a recording, opened by its name. Here, and only here, a name decides how the bytes are unpacked.</summary>
@@ -8,12 +12,20 @@ internal sealed class RecordingFile : IDisposable
 
     private readonly Stream _raw;
 
+    // Otherwise a gzip file that was cut off is taken for one that ends there.
+    static RecordingFile() => AppContext.SetSwitch("System.IO.Compression.UseStrictValidation", true);
+
     private RecordingFile(string path, string origin, Stream raw, bool canBlock)
     {
         Path = path;
         Origin = origin;
         _raw = raw;
-        Content = raw;
+        Content = RecordingFormats.PackingOfName(path) switch
+        {
+            RecordingPacking.Gzip => new GZipStream(raw, CompressionMode.Decompress),
+            RecordingPacking.Zstandard => new DecompressionStream(raw),
+            _ => raw,
+        };
         CanBlock = canBlock;
     }
 
@@ -30,6 +42,9 @@ internal sealed class RecordingFile : IDisposable
     /// Whether a read may wait for another program, as on a pipe. Such bytes come once: they cannot be read again from a position.
     /// </summary>
     public bool CanBlock { get; }
+
+    /// <summary>Whether the bytes are unpacked on the way, so that the end, once reached, is the end.</summary>
+    public bool IsPacked => Content != _raw;
 
     /// <summary>Bytes taken from the disk so far, or null for a pipe, where only the reader can count them.</summary>
     public long? RawBytesRead => _raw.CanSeek ? _raw.Position : null;

@@ -12,7 +12,7 @@ public sealed class RecordingSequence : IRecordSource
     private readonly List<OriginPosition> _finished = [];
     private readonly long? _totalBytes;
 
-    private FileSource _current;
+    private IRecordSource _current;
     private long _finishedBytes;
 
     /// <summary>Opens the first of at least one recordings.</summary>
@@ -52,7 +52,14 @@ public sealed class RecordingSequence : IRecordSource
         if (position.Origins.Length > _recordings.Count)
             throw new PipelineException(
                 $"{position.Origins.Length} recordings were begun before, and only {_recordings.Count} are given now. Give all of them, in their order.");
-        for (int i = 0; i < position.Origins.Length - 1; i++) Next(position.Origins[i]);
+        for (int i = 0; i < position.Origins.Length - 1; i++)
+        {
+            string name = Path.GetFileName(_recordings[i].Path);
+            if (position.Origins[i].Origin != name)
+                throw new PipelineException(
+                    $"{name} stands where {position.Origins[i].Origin} was read before. New recordings must come behind those that were read.");
+            Next(position.Origins[i]);
+        }
         if (position.Origins is [.., var last]) _current.Seek(new SourcePosition([last]));
     }
 
@@ -78,10 +85,10 @@ public sealed class RecordingSequence : IRecordSource
         Volatile.Write(ref _current, Open(_finished.Count));
     }
 
-    private FileSource Open(int index)
+    private IRecordSource Open(int index)
     {
         // Only the last recording can still be growing.
         var recording = _recordings[index] with { Follow = _recordings[index].Follow && index == _recordings.Count - 1 };
-        return FileSource.Open(recording, _maximumBytes, _time);
+        return RecordingSource.Open(recording, _maximumBytes, _time);
     }
 }

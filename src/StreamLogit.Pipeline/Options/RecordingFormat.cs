@@ -8,4 +8,10 @@ public enum RecordingFormat
 
     /// <summary>Comma-separated values (RFC 4180) whose first line names the columns.</summary>
     Csv,
+
+    /// <summary>Apache Parquet: every row a record, every column a field.</summary>
+    Parquet,
+
+    /// <summary>The name of each file says it. For several files.</summary>
+    ByName,
 }

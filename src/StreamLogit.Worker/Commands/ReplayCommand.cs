@@ -1,6 +1,7 @@
 using System.CommandLine;
 using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
+using StreamLogit.Pipeline.Files;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.Replay;
 using StreamLogit.Worker.Output;
@@ -19,18 +20,18 @@ internal static class ReplayCommand
         var input = new DefinitionInput(command);
         var recordings = new Argument<string[]>("RECORDING")
         {
-            Description = "Files of records, in the order in which they are to be read; - is standard input",
+            Description = "Files of records, folders of them or patterns as '2026-*.jsonl.zst', in the order in which they are to be read; - is standard input",
             Arity = ArgumentArity.OneOrMore,
         };
         var format = new Option<string?>("--format") { Description = "The format of recordings whose names do not tell it" };
-        format.AcceptOnlyFromAmong("jsonl", "csv");
+        format.AcceptOnlyFromAmong("jsonl", "csv", "parquet");
         var json = new Option<bool>("--json") { Description = "Write the result as JSON" };
         command.Add(recordings);
         command.Add(format);
         command.Add(json);
         command.SetAction((result, _) => RunAsync(
             input.Read(result, DefinitionUse.Replay),
-            [.. result.GetRequiredValue(recordings).Select(path => Recording(path, result.GetValue(format)))],
+            [.. result.GetRequiredValue(recordings).SelectMany(path => RecordingNames.Find(new FileSourceOptions(path, FormatOf(path, result.GetValue(format)))))],
             result.GetValue(json)));
         return command;
     }
@@ -48,13 +49,15 @@ internal static class ReplayCommand
         return ExitCode.Done;
     }
 
-    private static FileSourceOptions Recording(string path, string? format) => new(path, format switch
+    private static RecordingFormat FormatOf(string path, string? format) => format switch
     {
         "jsonl" => RecordingFormat.JsonLines,
         "csv" => RecordingFormat.Csv,
+        "parquet" => RecordingFormat.Parquet,
+        _ when Directory.Exists(path) || RecordingNames.IsSeveral(path) => RecordingFormat.ByName,
         _ => RecordingFormats.OfName(path) ?? throw new WrongInputException(
-            $"The name {path} does not tell the format of the recording (.jsonl, .ndjson or .csv would): add --format jsonl or --format csv."),
-    });
+            $"The name {path} does not tell the format of the recording ({RecordingFormats.KnownNames} would): add --format jsonl, csv or parquet."),
+    };
 
     private static void WriteJson(ReplayResult result) => JsonOutput.Write(json =>
     {

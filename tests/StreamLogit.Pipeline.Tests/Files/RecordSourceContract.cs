@@ -17,6 +17,21 @@ public abstract class RecordSourceContract : IDisposable
     /// <summary>The file that the last records stand in.</summary>
     private protected abstract string LastFile { get; }
 
+    /// <summary>Takes the last byte, or the last record, off the last file.</summary>
+    private protected virtual void Shorten()
+    {
+        using var file = OpenLastFile();
+        file.SetLength(file.Length - 1);
+    }
+
+    /// <summary>Puts other content of the same length in place of the last file's.</summary>
+    private protected virtual void Alter()
+    {
+        using var file = OpenLastFile();
+        file.Position = file.Length - 100;
+        file.WriteByte((byte)'#');
+    }
+
     private FileStream OpenLastFile() => new(LastFile, FileMode.Open, FileAccess.Write, FileShare.ReadWrite);
 
     private protected static string Record(int i) => $$"""{"id":"t-{{i}}","note":"{{new string((char)('a' + i % 26), i * 7919 % 301)}}"}""";
@@ -100,7 +115,7 @@ public abstract class RecordSourceContract : IDisposable
         Arrange(Records);
         using var first = Open();
         await TakenRecord.TakeAllAsync(first);
-        using (var file = OpenLastFile()) file.SetLength(file.Length - 1);
+        Shorten();
         using var second = Open();
 
         var error = Assert.Throws<PipelineException>(() => second.Seek(first.Position));
@@ -113,11 +128,7 @@ public abstract class RecordSourceContract : IDisposable
         Arrange(Records);
         using var first = Open();
         await TakenRecord.TakeAllAsync(first);
-        using (var file = OpenLastFile())
-        {
-            file.Position = file.Length - 100;
-            file.WriteByte((byte)'#');
-        }
+        Alter();
         using var second = Open();
 
         var error = Assert.Throws<PipelineException>(() => second.Seek(first.Position));
