@@ -6,8 +6,8 @@ namespace StreamLogit.Engine.Records;
 
 /// <summary>A key of an object, with what is read from its value.</summary>
 /// <remarks>
-/// Records of one stream mostly have the same keys in the same order. So every key remembers which one came behind it last, and that one
-/// is compared first, quotes, colon and all, by one or two loads: no end of string is looked for and nothing is hashed.
+/// Records of one stream mostly have the same keys in the same order. So every key remembers which came behind it last, and
+/// these are compared first, quotes, colon and all, by two loads: no end of string is looked for and nothing is hashed.
 /// This memory changes how fast records are read, never what is read.
 /// </remarks>
 internal sealed unsafe class KnownKey
@@ -34,7 +34,7 @@ internal sealed unsafe class KnownKey
     {
         Name = name.ToArray();
         Parts = [];
-        Next = None;
+        Next = OtherNext = None;
         _text = [(byte)'"', .. name, .. "\":"u8];
         Length = _text.Length;
         _isLong = Length > 16;
@@ -57,7 +57,7 @@ internal sealed unsafe class KnownKey
     {
         Name = _text = [];
         Parts = [];
-        Next = None ?? this;
+        Next = OtherNext = None ?? this;
         _head = _headMask = NoText;
     }
 
@@ -75,6 +75,9 @@ internal sealed unsafe class KnownKey
 
     /// <summary>The key that came behind it last.</summary>
     public KnownKey Next { get; set; }
+
+    /// <summary>The one that came behind it before that: events and labels by turns go on in two ways.</summary>
+    public KnownKey OtherNext { get; set; }
 
     /// <summary>The number of the record in which it was seen last.</summary>
     public long SeenIn { get; set; }

@@ -49,6 +49,11 @@ internal sealed unsafe class ObjectReader(
             {
                 at += key.Length;
             }
+            else if (previous.OtherNext.Matches(at))
+            {
+                key = previous.OtherNext;
+                at += key.Length;
+            }
             else if (key.Next.Matches(at))
             {
                 // An optional key is left out.
@@ -59,6 +64,7 @@ internal sealed unsafe class ObjectReader(
             {
                 at = Find(at, known, out key);
                 if (at == null) return null;
+                previous.OtherNext = previous.Next;
                 previous.Next = key;
             }
             if (key.SeenIn == record) fault.AddDuplicate(key.Name);
