@@ -19,6 +19,11 @@ public sealed class ScoringEngine
 {
     private const string Part = "engine";
 
+    // How many records ahead memory is asked for: far enough for it to come, near enough for it to stay.
+    private const int IndexAhead = 16;
+    private const int EventAhead = 8;
+    private const int MarkAhead = 4;
+
     private readonly FeatureEncoder _encoder;
     private readonly Bank _bank;
     private readonly StreamClock _clock;
@@ -74,6 +79,7 @@ public sealed class ScoringEngine
     {
         for (int i = 0; i < records.Count; i++)
         {
+            LookAhead(records, i);
             _records++;
             if (records.Records[i].Kind != RecordKind.Reject) Take(records, i, scores);
             if (records.Records[i].Kind == RecordKind.Reject) ListReject(records, i);
@@ -239,9 +245,18 @@ public sealed class ScoringEngine
         }
     }
 
+    private void LookAhead(RecordBatch records, int index)
+    {
+        var all = records.Records;
+        if (index + IndexAhead < all.Length) _awaiting.WantIndex(all[index + IndexAhead].IdHash);
+        if (index + EventAhead < all.Length && all[index + EventAhead].Kind == RecordKind.Label) _awaiting.WantEvent(all[index + EventAhead].IdHash);
+        if (index + MarkAhead < all.Length && all[index + MarkAhead].Kind == RecordKind.Label) _awaiting.WantMark(all[index + MarkAhead].IdHash);
+    }
+
     /// <summary>Ends the wait of the events that have waited long enough by the clock.</summary>
     private void LetGo()
     {
+        if (!_awaiting.IsDue(_clock.Microseconds)) return;
         while (_awaiting.TryTakeExpired(_clock.Microseconds, out var place))
         {
             _events.Expired++;

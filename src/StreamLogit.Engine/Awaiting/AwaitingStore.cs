@@ -18,6 +18,7 @@ internal sealed class AwaitingStore
     private const string CursorsPart = "awaiting/cursors";
     private const int SegmentBytes = 1 << 16;
     private const int MaximumSpares = 16;
+    private const int UsualEventBytes = 256;
 
     private readonly int _settings;
     private readonly long _waitMicroseconds;
@@ -34,6 +35,7 @@ internal sealed class AwaitingStore
     private int _savedFirstSegment;
     private EventPlace _waitCursor; // the first event whose wait may not be over
     private EventPlace _keepCursor; // the first event that is still kept
+    private long _nextEnd = long.MaxValue; // no wait ends and no event is let go before this time of the clock
 
     /// <param name="settings">Settings of the bank.</param>
     /// <param name="waitMicroseconds">How long an event waits for its label.</param>
@@ -59,6 +61,21 @@ internal sealed class AwaitingStore
     /// <summary>Bytes of memory that the kept events and their index take.</summary>
     public long MemoryBytes =>
         _index.Bytes + (long)(_firstSegment + _segments.Count - _firstHot) * SegmentBytes + _reader.Bytes;
+
+    /// <summary>Asks for the memory in which an id is looked up; some records later <see cref="WantEvent"/> asks for that of its event.</summary>
+    public void WantIndex(ulong idHash) => _index.ShardOf(idHash).Want(idHash);
+
+    /// <summary>Asks for the memory of the kept event with an id; some records later <see cref="WantMark"/> asks for that of its mark.</summary>
+    public void WantEvent(ulong idHash)
+    {
+        if (TryFindFirst(idHash, out var place) && SegmentOf(place).Bytes is { } bytes) CacheHint.Want(bytes, place.Offset, UsualEventBytes);
+    }
+
+    /// <summary>Asks for the memory of what is marked of the kept event with an id.</summary>
+    public void WantMark(ulong idHash)
+    {
+        if (TryFindFirst(idHash, out var place) && SegmentOf(place).Bytes is not null) SegmentOf(place).WantMark(At(place).Header.Ordinal);
+    }
 
     /// <summary>Where the kept event with an id lies.</summary>
     public bool TryFind(ReadOnlySpan<byte> id, ulong idHash, out EventPlace place)
@@ -107,8 +124,12 @@ internal sealed class AwaitingStore
         var place = new EventPlace(_firstSegment + _segments.Count - 1, offset);
         _index.Add(header.IdHash, place);
         Awaiting++;
+        _nextEnd = Math.Min(_nextEnd, header.ScoredAtMicroseconds + _waitMicroseconds);
         return place;
     }
+
+    /// <summary>Whether, at a time of the stream's clock, some wait may be over or some event may not be kept any longer.</summary>
+    public bool IsDue(long clockMicroseconds) => clockMicroseconds > _nextEnd;
 
     /// <summary>
     /// The next event whose wait is over at a time of the stream's clock and whose label has not come. Whoever asks must mark it before asking again.
@@ -126,6 +147,7 @@ internal sealed class AwaitingStore
         while (TryPass(ref _keepCursor, clockMicroseconds - _keepMicroseconds, out var place))
             if (MarkOf(place).State != EventState.Gone) _index.Remove(At(place).Header.IdHash, place);
         while (_firstSegment < _keepCursor.Segment) DropOldestSegment();
+        _nextEnd = Math.Min(EndOf(_waitCursor, _waitMicroseconds), EndOf(_keepCursor, _keepMicroseconds));
     }
 
     public void Save(StateBlocks changes)
@@ -152,6 +174,7 @@ internal sealed class AwaitingStore
         _firstSegment = _savedFirstSegment = _firstHot = cursors[0];
         _waitCursor = new EventPlace(cursors[1], cursors[2]);
         _keepCursor = new EventPlace(cursors[3], cursors[4]);
+        _nextEnd = long.MinValue;
         if (_archive is null)
             foreach (var (number, bytes) in state.Read(SegmentsPart)) LoadSegment(number, bytes, bytes.Length, state.Find(MarksPart, number));
         else
@@ -186,16 +209,35 @@ internal sealed class AwaitingStore
 
     private Segment SegmentOf(EventPlace place) => _segments[place.Segment - _firstSegment];
 
+    private bool TryFindFirst(ulong idHash, out EventPlace place)
+    {
+        var shard = _index.ShardOf(idHash);
+        int cursor = shard.First(idHash);
+        place = cursor < 0 ? default : shard.PlaceAt(cursor);
+        return cursor >= 0;
+    }
+
+    /// <summary>When the time of the first event behind a cursor is over, or never where there is none.</summary>
+    private long EndOf(EventPlace cursor, long microseconds) =>
+        TrySkipEnds(ref cursor) ? At(cursor).Header.ScoredAtMicroseconds + microseconds : long.MaxValue;
+
+    /// <summary>Moves a place that is at the end of a segment to the next event; false where there is none.</summary>
+    private bool TrySkipEnds(ref EventPlace place)
+    {
+        int last = _firstSegment + _segments.Count - 1;
+        while (place.Segment < last && place.Offset >= SegmentOf(place).Length) place = new EventPlace(place.Segment + 1, 0);
+        return place.Segment <= last && place.Offset < SegmentOf(place).Length;
+    }
+
     /// <summary>Moves a cursor over the next event if that was scored before a time.</summary>
     private bool TryPass(ref EventPlace cursor, long scoredBefore, out EventPlace place)
     {
         place = cursor;
-        int last = _firstSegment + _segments.Count - 1;
-        while (place.Segment < last && place.Offset >= SegmentOf(place).Length) place = new EventPlace(place.Segment + 1, 0);
-        if (place.Segment > last || place.Offset >= SegmentOf(place).Length) return false;
+        if (!TrySkipEnds(ref place)) return false;
         ref readonly var header = ref At(place).Header;
         if (header.ScoredAtMicroseconds >= scoredBefore) return false;
         cursor = place with { Offset = place.Offset + header.TotalBytes };
+        if (SegmentOf(place).Bytes is { } bytes) CacheHint.Want(bytes, cursor.Offset + 2 * UsualEventBytes, 1);
         return true;
     }
 

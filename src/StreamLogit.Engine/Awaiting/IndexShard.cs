@@ -13,6 +13,9 @@ internal sealed class IndexShard
 
     public long Bytes => (long)_entries.Length * Unsafe.SizeOf<Entry>();
 
+    /// <summary>Asks for the memory in which a hash is looked up.</summary>
+    public void Want(ulong hash) => CacheHint.Want(in _entries[Home(hash)]);
+
     public void Add(ulong hash, EventPlace place)
     {
         // At most 4/5 full, so that probes stay short.

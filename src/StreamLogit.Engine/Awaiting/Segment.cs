@@ -41,6 +41,12 @@ internal sealed class Segment
         return offset;
     }
 
+    /// <summary>Asks for the memory of a mark.</summary>
+    public void WantMark(int ordinal)
+    {
+        if (ordinal < _marked) CacheHint.Want(in _marks[ordinal]);
+    }
+
     public LabelMark MarkOf(int ordinal) => ordinal < _marked ? _marks[ordinal] : default;
 
     public void Mark(int ordinal, in LabelMark mark)

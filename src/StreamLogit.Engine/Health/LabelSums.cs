@@ -16,13 +16,13 @@ internal struct LabelSums
     /// <summary>The sums of one label.</summary>
     public static LabelSums Of(double logOdds, double baseRate, int label, double weight)
     {
-        double probability = Elementary.Sigmoid(logOdds);
+        var (probability, lossOfOne, lossOfZero) = Elementary.Logistic(logOdds);
         double error = probability - label;
         return new LabelSums
         {
             Count = 1,
             Weight = weight,
-            LogLoss = weight * Elementary.Softplus(label == 1 ? -logOdds : logOdds),
+            LogLoss = weight * (label == 1 ? lossOfOne : lossOfZero),
             BaseRateLogLoss = weight * BaseRate.LogLoss(baseRate, label),
             Brier = weight * (error * error),
             Probability = weight * probability,

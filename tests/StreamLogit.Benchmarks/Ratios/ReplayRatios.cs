@@ -10,6 +10,7 @@ namespace StreamLogit.Benchmarks.Ratios;
 /// </summary>
 internal static class ReplayRatios
 {
+    // The rate of the scenario itself: events and, as separate records, their labels 2 to 30 days later.
     private const int Records = 300_000;
     private static readonly byte[] Recording = Generate();
 
@@ -53,7 +54,7 @@ internal static class ReplayRatios
     private static byte[] Generate()
     {
         using var bytes = new MemoryStream();
-        ScenarioCatalog.Create("ferry-tickets", new ScenarioOptions { Records = Records, EventsPerDay = 1000 }).Write(bytes);
+        ScenarioCatalog.Create("ferry-tickets", new ScenarioOptions { Records = Records }).Write(bytes);
         return bytes.ToArray();
     }
 
