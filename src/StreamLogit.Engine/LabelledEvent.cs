@@ -5,6 +5,9 @@ namespace StreamLogit.Engine;
 /// <summary>An event as it was scored, with the label that has become known for it. What it refers to is valid during the call only.</summary>
 public readonly ref struct LabelledEvent
 {
+    /// <summary>The hash of the event's id.</summary>
+    public required ulong IdHash { get; init; }
+
     /// <summary>The event, encoded as it was at scoring.</summary>
     public required EncodedVector Vector { get; init; }
 

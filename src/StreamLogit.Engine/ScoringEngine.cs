@@ -213,7 +213,7 @@ public sealed class ScoringEngine
         if (isLabelled)
         {
             double weight = double.IsNaN(record.Weight) ? 1 : record.Weight;
-            Learn(encoded, _logOdds, logOdds, isFresh: true, record.Label, weight, _clock.Microseconds);
+            Learn(record.IdHash, encoded, _logOdds, logOdds, isFresh: true, record.Label, weight, _clock.Microseconds);
         }
         else if (IsKept(probability, record.IdHash, out int standsFor))
         {
@@ -293,15 +293,17 @@ public sealed class ScoringEngine
     {
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
-        return Learn(scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, scored.WeightOf(weight), header.ScoredAtMicroseconds);
+        return Learn(
+            header.IdHash, scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, scored.WeightOf(weight), header.ScoredAtMicroseconds);
     }
 
     private LabelCount Learn(
-        in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, double publishedLogOdds, bool isFresh, int label, double weight,
+        ulong idHash, in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, double publishedLogOdds, bool isFresh, int label, double weight,
         long scoredAtMicroseconds)
     {
         Labelled?.Invoke(new LabelledEvent
         {
+            IdHash = idHash,
             Vector = vector,
             SettingLogOdds = scoredLogOdds,
             LogOdds = publishedLogOdds,

@@ -72,6 +72,25 @@ public sealed class RecordBatch
         _rejects.Clear();
     }
 
+    /// <summary>
+    /// Becomes a copy of a batch that no engine has seen yet, so that several engines can see it. Where the other batch was made for other fields,
+    /// its bytes are copied and the records are still to be decoded.
+    /// </summary>
+    public void CopyFrom(RecordBatch other)
+    {
+        Clear();
+        Origin = other.Origin;
+        other.Bytes.CopyTo(Append(other.ByteCount));
+        while (_records.Length < other.Count)
+        {
+            Array.Resize(ref _records, _records.Length * 2);
+            Array.Resize(ref _fields, _records.Length * _fieldCount);
+        }
+        other.Records.CopyTo(_records);
+        if (_fieldCount == other._fieldCount) other._fields.AsSpan(0, other.Count * _fieldCount).CopyTo(_fields);
+        Count = _total = other.Count;
+    }
+
     /// <summary>Adds the bytes of a record that is still to be decoded.</summary>
     /// <param name="record">The bytes, without the line end.</param>
     /// <param name="position">Its number in the origin.</param>

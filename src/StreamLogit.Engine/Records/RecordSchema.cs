@@ -48,4 +48,11 @@ public sealed class RecordSchema
     /// <summary>The place of a path in <see cref="Fields"/>.</summary>
     /// <exception cref="KeyNotFoundException">No feature reads that path.</exception>
     public int IndexOf(string path) => _indices[path];
+
+    /// <summary>Whether records read for one of the two can be used for the other.</summary>
+    public bool ReadsAs(RecordSchema other) =>
+        Fields.AsSpan().SequenceEqual(other.Fields.AsSpan())
+        && Options == other.Options with { LabelValues = Options.LabelValues }
+        && Options.LabelValues.Count == other.Options.LabelValues.Count
+        && Options.LabelValues.All(value => other.Options.LabelValues.TryGetValue(value.Key, out int label) && label == value.Value);
 }
