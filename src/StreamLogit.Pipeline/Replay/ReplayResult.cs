@@ -7,4 +7,5 @@ namespace StreamLogit.Pipeline.Replay;
 /// <param name="Health">How the probabilities did over the whole replay.</param>
 /// <param name="ScoreHash">The <see cref="Replay.ScoreHash"/> of all scores.</param>
 /// <param name="Model">The coefficients at the end.</param>
-public sealed record ReplayResult(HealthSnapshot Health, string ScoreHash, ModelSnapshot Model);
+/// <param name="IsComplete">Whether the recordings were replayed to their end; else it covers what was replayed before it was stopped.</param>
+public sealed record ReplayResult(HealthSnapshot Health, string ScoreHash, ModelSnapshot Model, bool IsComplete);

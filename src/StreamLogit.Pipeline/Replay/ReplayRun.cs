@@ -38,14 +38,12 @@ public sealed class ReplayRun : IDisposable
     public LoopProgress Progress => _loop.Progress;
 
     /// <summary>Replays all recordings.</summary>
-    /// <param name="stop">Stops it early.</param>
+    /// <param name="stop">Stops it early; the result then covers what was replayed by then.</param>
     /// <exception cref="PipelineException">A recording cannot be read.</exception>
-    /// <exception cref="OperationCanceledException">It was stopped before the end.</exception>
     public async Task<ReplayResult> RunAsync(CancellationToken stop)
     {
         await _loop.RunAsync(stop).ConfigureAwait(false);
-        stop.ThrowIfCancellationRequested();
-        return new ReplayResult(_loop.Health, _hash.ToHexString(), _engine.Model());
+        return new ReplayResult(_loop.Health, _hash.ToHexString(), _engine.Model(), !stop.IsCancellationRequested);
     }
 
     /// <inheritdoc/>

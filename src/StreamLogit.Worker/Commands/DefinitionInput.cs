@@ -21,10 +21,16 @@ internal sealed class DefinitionInput
         command.Add(_overrides);
     }
 
+    /// <summary>The definition's file.</summary>
+    public string Path(ParseResult result) => result.GetRequiredValue(_path);
+
     /// <summary>Reads the definition.</summary>
+    /// <param name="result">The command line.</param>
+    /// <param name="use">What it is for.</param>
+    /// <param name="overrides">Further overrides, which count after those of the command line.</param>
     /// <exception cref="DefinitionException">It cannot be used.</exception>
-    public StreamDefinition Read(ParseResult result, DefinitionUse use) =>
-        StreamDefinitionReader.ReadFile(result.GetRequiredValue(_path), result.GetValue(_overrides), Variables(), use);
+    public StreamDefinition Read(ParseResult result, DefinitionUse use, IEnumerable<string>? overrides = null) =>
+        StreamDefinitionReader.ReadFile(Path(result), [.. result.GetValue(_overrides) ?? [], .. overrides ?? []], Variables(), use);
 
     private static Dictionary<string, string> Variables() => Environment.GetEnvironmentVariables().Cast<DictionaryEntry>()
         .ToDictionary(variable => (string)variable.Key, variable => (string?)variable.Value ?? "");

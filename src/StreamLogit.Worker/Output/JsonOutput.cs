@@ -3,7 +3,7 @@ using System.Text.Json;
 
 namespace StreamLogit.Worker.Output;
 
-/// <summary>Writes one JSON value to standard output.</summary>
+/// <summary>Writes one JSON value to standard output or to a file.</summary>
 internal static class JsonOutput
 {
     private static readonly JsonWriterOptions Options = new()
@@ -18,6 +18,14 @@ internal static class JsonOutput
     public static void Write(Action<Utf8JsonWriter> write)
     {
         using var output = Console.OpenStandardOutput();
+        using (var json = new Utf8JsonWriter(output, Options)) write(json);
+        output.WriteByte((byte)'\n');
+    }
+
+    /// <summary>Writes what <paramref name="write"/> writes, and a line end, to a file in place of what it held.</summary>
+    public static void WriteFile(string path, Action<Utf8JsonWriter> write)
+    {
+        using var output = File.Create(path);
         using (var json = new Utf8JsonWriter(output, Options)) write(json);
         output.WriteByte((byte)'\n');
     }

@@ -76,13 +76,16 @@ public sealed class ReplayRunTests : IDisposable
     }
 
     [Fact]
-    public async Task Run_Stopped_Throws()
+    public async Task Run_Stopped_GivesWhatWasReplayed()
     {
         _folder.Write("quay.jsonl", LoopStream.Create(10));
         using var replay = new ReplayRun(
             LoopStream.Engine, [new FileSourceOptions(_folder["quay.jsonl"], RecordingFormat.JsonLines)], new LoopOptions(), TimeProvider.System);
 
-        await Assert.ThrowsAnyAsync<OperationCanceledException>(() => replay.RunAsync(new CancellationToken(canceled: true)));
+        var result = await replay.RunAsync(new CancellationToken(canceled: true));
+
+        Assert.False(result.IsComplete);
+        Assert.Equal(0, result.Health.Records);
     }
 
     [Fact]
