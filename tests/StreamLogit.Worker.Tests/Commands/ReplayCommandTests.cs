@@ -127,7 +127,7 @@ public sealed class ReplayCommandTests
 
     [Theory]
     [InlineData("no-such-recording.jsonl", "does not exist")]
-    [InlineData("recording.parquet", "--format")]
+    [InlineData("recording.xlsx", "--format")]
     [InlineData("", "argument")]
     public void Replay_WrongRecording_ExitsWith2(string recording, string said)
     {
