@@ -121,19 +121,28 @@ public class LateLabelTests
     [Fact]
     public void Process_OneBadClock_IsRejectedAndExpiresNothing()
     {
-        var run = new EngineRun(Waiting(3600, UnlabelledEvents.Drop)).Take(Event("a", 0, x: 1), Event("future", 400 * 86400, x: 1), Event("b", 1, x: 1));
+        var run = new EngineRun(Waiting(3600, UnlabelledEvents.Drop)).Take(
+            Event("a", 0, x: 1), Event("b", 1, x: 1), Event("future", 400 * 86400, x: 1), Event("c", 2, x: 1));
         Assert.Equal([RejectReason.TimeAhead], run.Rejects.Select(r => r.Reason));
-        Assert.Equal(2, run.Engine.Health().Awaiting);
-        Assert.Equal(Second, run.Engine.Health().ClockMicroseconds);
+        Assert.Equal(3, run.Engine.Health().Awaiting);
+        Assert.Equal(2 * Second, run.Engine.Health().ClockMicroseconds);
     }
 
     [Fact]
     public void Process_StreamResumesAfterALongSilence_ClockFollowsAfterTenRecords()
     {
-        var run = new EngineRun(Definitions.Of(X)).Take(Event("a", 0, x: 1));
+        var run = new EngineRun(Definitions.Of(X)).Take(Event("a", 0, x: 1), Event("b", 1, x: 1));
         for (int i = 0; i < 12; i++) run.Take(Event($"later-{i}", 3 * 86400 + i, x: 1));
         Assert.Equal(9, run.Rejects.Count);
         Assert.Equal((3 * 86400 + 11) * Second, run.Engine.Health().ClockMicroseconds);
+    }
+
+    [Fact]
+    public void Process_RecordsWeeksApart_AreAllTaken()
+    {
+        var run = new EngineRun(Definitions.Of(X)).Take(Event("a", 0, x: 1));
+        for (int i = 1; i < 30; i++) run.Take(Event($"e{i}", i * 7 * 86400 + (i % 3 == 0 ? 40 * 86400 : 0), x: 1));
+        Assert.Empty(run.Rejects);
     }
 
     [Fact]

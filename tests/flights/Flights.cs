@@ -72,6 +72,6 @@ void WriteEvent(long id, DateTime time, string origin, string destination, long 
     }
     else
     {
-        output.Write(string.Create(CultureInfo.InvariantCulture, $"\"origin\":\"{origin}\",\"destination\":\"{destination}\",\"hour\":{time.Hour},\"weekday\":{(int)time.DayOfWeek},\"distance\":{distance}}}\n"));
+        output.Write(string.Create(CultureInfo.InvariantCulture, $"\"origin\":\"{origin}\",\"destination\":\"{destination}\",\"hour\":{time.Hour},\"weekday\":{(int)time.DayOfWeek},\"logDistance\":{Math.Log(1 + distance) / 3 - 2}}}\n"));
     }
 }

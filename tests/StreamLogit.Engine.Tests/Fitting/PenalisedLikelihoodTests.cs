@@ -159,25 +159,6 @@ public sealed class PenalisedLikelihoodTests
         Assert.Throws<ArgumentException>(() => new SparseRows(columns).Add(new EncodedVector([1], [1]), 2));
     }
 
-    [Fact]
-    public void Add_ManyOneHotRows_TakesFourBytesAnEntryAndNineARow()
-    {
-        var columns = new SparseColumns();
-        int[] slots = new int[5];
-        double[] ones = [1, 1, 1, 1, 1];
-        long before = GC.GetTotalMemory(forceFullCollection: true);
-        var rows = new SparseRows(columns);
-        for (int i = 0; i < 400_000; i++)
-        {
-            for (int k = 0; k < 5; k++) slots[k] = 100 * k + i % (7 * k + 5);
-            rows.Add(new EncodedVector(slots, ones), i & 1);
-        }
-        rows.Trim();
-        long bytes = GC.GetTotalMemory(forceFullCollection: true) - before;
-        GC.KeepAlive(rows);
-        Assert.InRange(bytes / 400_000.0, 28.5, 30.5);
-    }
-
     private static SparseTable Weather(bool weighted)
     {
         var table = new SparseTable();
