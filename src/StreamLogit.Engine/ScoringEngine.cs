@@ -29,6 +29,7 @@ public sealed class ScoringEngine
     private readonly StreamClock _clock;
     private readonly AwaitingStore _awaiting;
     private readonly EarlyLabels _early;
+    private readonly ComingLabels _coming = new();
     private readonly HealthLedger _health;
     private readonly ReasonFinder _reasons;
     private readonly double[] _logOdds; // of every setting for the event at hand
@@ -87,10 +88,15 @@ public sealed class ScoringEngine
     }
 
     /// <summary>
-    /// Ends a stream that is known to bring nothing more: labels that still wait for their event become rejects of <paramref name="records"/>,
+    /// Ends a stream that is known to bring nothing more: labels that came with their events and would become known later are taken, in their order, and
+    /// labels that still wait for their event become rejects of <paramref name="records"/>,
     /// a batch that the engine has processed already or an empty one.
     /// </summary>
-    public void End(RecordBatch records) => RejectEarlyLabels(records, clockMicroseconds: long.MaxValue);
+    public void End(RecordBatch records)
+    {
+        TakeComingLabels(records, long.MaxValue);
+        RejectEarlyLabels(records, clockMicroseconds: long.MaxValue);
+    }
 
     /// <summary>How the published probabilities are doing.</summary>
     public HealthSnapshot Health() => _health.Snapshot(_clock.Now) with
@@ -98,12 +104,13 @@ public sealed class ScoringEngine
         Records = _records,
         Events = _encoder.Events,
         Awaiting = _awaiting.Awaiting,
-        AwaitingBytes = _awaiting.MemoryBytes,
+        AwaitingBytes = _awaiting.MemoryBytes + _coming.Bytes,
         Early = _early.Count,
         Expired = _events.Expired,
         Thinned = _events.Thinned,
         Repeated = _events.Repeated,
         Corrected = _events.Corrected,
+        TaughtAtOnce = _events.TaughtAtOnce,
         CollidedEvents = _encoder.CollidedEvents,
         Settings = [.. Enumerable.Range(0, _bank.SettingCount).Select(FiguresOf)],
     };
@@ -133,12 +140,14 @@ public sealed class ScoringEngine
         writer.Write(_events.Thinned);
         writer.Write(_events.Repeated);
         writer.Write(_events.Corrected);
+        writer.Write(_events.TaughtAtOnce);
         _clock.Save(writer);
         changes.Put(Part, 0, bytes.ToArray());
         _encoder.Save(changes);
         _bank.Save(changes);
         _awaiting.Save(changes);
         _early.Save(changes);
+        _coming.Save(changes);
         _health.Save(changes);
     }
 
@@ -149,6 +158,7 @@ public sealed class ScoringEngine
         LoadModel(state);
         _awaiting.Load(state);
         _early.Load(state);
+        _coming.Load(state);
         _health.Load(state);
     }
 
@@ -171,6 +181,7 @@ public sealed class ScoringEngine
             Thinned = reader.ReadInt64(),
             Repeated = reader.ReadInt64(),
             Corrected = reader.ReadInt64(),
+            TaughtAtOnce = reader.ReadInt64(),
         };
         _clock.Load(reader);
         _encoder.Load(state);
@@ -181,13 +192,13 @@ public sealed class ScoringEngine
     {
         // A copy: the batch may grow, and move its records, when labels that waited in vain are added to it.
         var record = records.Records[index];
-        if (!_clock.TryTake(record.TimeMicroseconds))
+        if (!_clock.Accepts(record.TimeMicroseconds))
         {
             records.Reject(index, RejectReason.TimeAhead, $"the time is too far ahead of the stream's clock; {StreamClock.RecordsThatMoveOn} such records in a row would move the clock");
             return;
         }
-        LetGo();
-        RejectEarlyLabels(records, _clock.Microseconds);
+        TakeComingLabels(records, record.TimeMicroseconds);
+        MoveClock(records, record.TimeMicroseconds);
         if (record.Kind == RecordKind.Label) TakeLabel(records, index, record);
         else TakeEvent(records, index, record, scores);
     }
@@ -206,13 +217,15 @@ public sealed class ScoringEngine
         var encoded = vector.Vector;
         double logOdds = _bank.Score(encoded, record.TimeMicroseconds, _logOdds);
         double probability = Elementary.Sigmoid(logOdds);
-        bool isLabelled = record.Kind == RecordKind.LabelledEvent;
+        long? knownAt = KnownAt(record);
+        bool isLabelled = record.Kind == RecordKind.LabelledEvent && knownAt is null;
         if (!isLabelled || Definition.Decision.PublishLabelled)
             Publish(index, logOdds, probability, vector, eventsBefore, scores);
 
         if (isLabelled)
         {
             double weight = double.IsNaN(record.Weight) ? 1 : record.Weight;
+            _events.TaughtAtOnce++;
             Learn(record.IdHash, encoded, _logOdds, logOdds, isFresh: true, record.Label, weight, _clock.Microseconds);
         }
         else if (IsKept(probability, record.IdHash, out int standsFor))
@@ -228,6 +241,9 @@ public sealed class ScoringEngine
             };
             var place = _awaiting.Add(header, _logOdds, encoded, id);
             while (_early.Take(id, record.IdHash) is { } early) Learn(place, early.Label, early.Weight);
+            if (knownAt is not { } time) return;
+            _coming.Add(new ComingLabel(time, place.Segment, place.Offset, record.Label));
+            TakeComingLabels(records, _clock.Microseconds);
         }
         else _events.Thinned++;
     }
@@ -251,6 +267,34 @@ public sealed class ScoringEngine
         if (index + IndexAhead < all.Length) _awaiting.WantIndex(all[index + IndexAhead].IdHash);
         if (index + EventAhead < all.Length && all[index + EventAhead].Kind == RecordKind.Label) _awaiting.WantEvent(all[index + EventAhead].IdHash);
         if (index + MarkAhead < all.Length && all[index + MarkAhead].Kind == RecordKind.Label) _awaiting.WantMark(all[index + MarkAhead].IdHash);
+    }
+
+    /// <summary>When the label that stands in an event becomes known, or null where there is none or nothing says so.</summary>
+    private long? KnownAt(in DecodedRecord record)
+    {
+        if (record.Kind != RecordKind.LabelledEvent) return null;
+        if (record.LabelTimeMicroseconds != DecodedRecord.NoTime) return record.LabelTimeMicroseconds;
+        return record.TimeMicroseconds + Definition.Labels.DelayMicroseconds;
+    }
+
+    /// <summary>
+    /// Takes the labels that came with their events and are known at a time, as if each stood in the stream as a record of its own. A label that becomes
+    /// known when its event is not kept any more teaches nothing; the event has been counted as one whose wait ended.
+    /// </summary>
+    private void TakeComingLabels(RecordBatch records, long timeMicroseconds)
+    {
+        while (_coming.TryTake(timeMicroseconds, out var label))
+        {
+            MoveClock(records, label.KnownAtMicroseconds);
+            if (_awaiting.Holds(label.Place)) Learn(label.Place, (int)label.Label, double.NaN);
+        }
+    }
+
+    private void MoveClock(RecordBatch records, long timeMicroseconds)
+    {
+        _clock.MoveTo(timeMicroseconds);
+        LetGo();
+        RejectEarlyLabels(records, _clock.Microseconds);
     }
 
     /// <summary>Ends the wait of the events that have waited long enough by the clock.</summary>

@@ -27,6 +27,9 @@ public sealed record LoopOptions
     /// </summary>
     public bool EndsWithSource { get; init; }
 
+    /// <summary>The only records that are taken, by their times. Null, the default, takes all.</summary>
+    public RecordSpan? Span { get; init; }
+
     /// <summary>The least wall time between two health snapshots. Default 250 ms.</summary>
     public TimeSpan HealthEvery { get; init; } = TimeSpan.FromMilliseconds(250);
 }

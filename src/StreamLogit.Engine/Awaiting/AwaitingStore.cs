@@ -101,6 +101,10 @@ internal sealed class AwaitingStore
     /// <summary>What became of the event that lies there.</summary>
     public LabelMark MarkOf(EventPlace place) => SegmentOf(place).MarkOf(At(place).Header.Ordinal);
 
+    /// <summary>Whether an event that was added there is still kept.</summary>
+    public bool Holds(EventPlace place) =>
+        place.Segment >= _firstSegment && !IsPassed(place) && MarkOf(place).State != EventState.Gone;
+
     /// <summary>Says what became of an event.</summary>
     public void Mark(EventPlace place, in LabelMark mark)
     {
@@ -197,8 +201,7 @@ internal sealed class AwaitingStore
             var place = new EventPlace((int)number, segment.Append(header.TotalBytes));
             var state = segment.MarkOf(header.Ordinal).State;
             if (state == EventState.Awaiting) Awaiting++;
-            bool isPassed = place.Segment < _keepCursor.Segment || (place.Segment == _keepCursor.Segment && place.Offset < _keepCursor.Offset);
-            if (state != EventState.Gone && !isPassed) _index.Add(header.IdHash, place);
+            if (state != EventState.Gone && !IsPassed(place)) _index.Add(header.IdHash, place);
         }
         segment.HasNewEvents = false;
         if (bytes.Length < SegmentBytes) Array.Resize(ref bytes, SegmentBytes); // the last one takes new events
@@ -228,6 +231,9 @@ internal sealed class AwaitingStore
         while (place.Segment < last && place.Offset >= SegmentOf(place).Length) place = new EventPlace(place.Segment + 1, 0);
         return place.Segment <= last && place.Offset < SegmentOf(place).Length;
     }
+
+    private bool IsPassed(EventPlace place) =>
+        place.Segment < _keepCursor.Segment || (place.Segment == _keepCursor.Segment && place.Offset < _keepCursor.Offset);
 
     /// <summary>Moves a cursor over the next event if that was scored before a time.</summary>
     private bool TryPass(ref EventPlace cursor, long scoredBefore, out EventPlace place)

@@ -14,4 +14,7 @@ internal struct LabelEvents
 
     /// <summary>Its label was corrected.</summary>
     public long Corrected;
+
+    /// <summary>Its label stood in it and was taken for known at once, though nothing said so.</summary>
+    public long TaughtAtOnce;
 }

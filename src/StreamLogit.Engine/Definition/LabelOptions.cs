@@ -15,6 +15,12 @@ public sealed record LabelOptions
     /// <summary>How long, in microseconds of the stream's clock, a label that comes before its event waits for it. Default 1 hour.</summary>
     public long EarlyMicroseconds { get; init; } = 3600L * 1_000_000;
 
+    /// <summary>
+    /// How long after the time of its event, in microseconds, a label that stands in the event without a time of its own becomes known; null takes it
+    /// for known at once. Default null.
+    /// </summary>
+    public long? DelayMicroseconds { get; init; }
+
     /// <summary>Which events are kept for their labels; null keeps all. Default null.</summary>
     public ThinningOptions? Keep { get; init; }
 

@@ -17,6 +17,12 @@ public sealed record RecordOptions
     /// <summary>The path of the label. Default <c>label</c>.</summary>
     public string Label { get; init; } = "label";
 
+    /// <summary>
+    /// The path of the time at which the label that stands in an event became known, written as <see cref="TimeFormat"/> says, or null where events do
+    /// not tell it. Such a label teaches only when the stream's clock reaches that time. Default null.
+    /// </summary>
+    public string? LabelTime { get; init; }
+
     /// <summary>The path of the importance weight of the event, which is 1 where the field is absent. Default <c>weight</c>.</summary>
     public string Weight { get; init; } = "weight";
 

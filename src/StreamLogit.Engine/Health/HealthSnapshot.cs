@@ -38,6 +38,12 @@ public sealed record HealthSnapshot
     /// <summary>Labels that said the opposite of an earlier one and were learned as corrections.</summary>
     public long Corrected { get; init; }
 
+    /// <summary>
+    /// Labels that stood in their event, without a time at which they became known, and taught at once. Where labels come later in truth, a replay with
+    /// any of them is optimistic.
+    /// </summary>
+    public long TaughtAtOnce { get; init; }
+
     /// <summary>Labels that came before their event and wait for it.</summary>
     public long Early { get; init; }
 

@@ -3,6 +3,9 @@ namespace StreamLogit.Engine.Records;
 /// <summary>One record of a batch: its bytes, where it came from, and what was read from it.</summary>
 public struct DecodedRecord
 {
+    /// <summary>In place of a time that is not given.</summary>
+    public const long NoTime = long.MinValue;
+
     /// <summary>Where its bytes start in the batch's bytes.</summary>
     public int Start;
 
@@ -38,6 +41,11 @@ public struct DecodedRecord
 
     /// <summary>Its label, 0 or 1; meaningless in an event without one.</summary>
     public int Label;
+
+    /// <summary>
+    /// When the label that stands in an event became known, in microseconds since 1970-01-01T00:00:00Z, or <see cref="NoTime"/> where it does not say.
+    /// </summary>
+    public long LabelTimeMicroseconds;
 
     /// <summary>Its importance weight, 0 to 1e6, or NaN where it gives none.</summary>
     public double Weight;

@@ -18,6 +18,9 @@ internal enum PartRole
     /// <summary>The weight.</summary>
     Weight,
 
+    /// <summary>The time at which the label in an event became known.</summary>
+    LabelTime,
+
     /// <summary>A field of the schema.</summary>
     Field,
 }

@@ -115,6 +115,24 @@ public sealed class RecordBatch
         _records[record].Detail = detail;
     }
 
+    /// <summary>Takes records out of a batch that the engine has not seen yet.</summary>
+    /// <param name="isKept">Whether a record stays.</param>
+    public void Keep(Func<DecodedRecord, bool> isKept)
+    {
+        int kept = 0;
+        for (int record = 0; record < Count; record++)
+        {
+            if (!isKept(_records[record])) continue;
+            if (kept != record)
+            {
+                _records[kept] = _records[record];
+                Fields(record).CopyTo(Fields(kept));
+            }
+            kept++;
+        }
+        Count = _total = kept;
+    }
+
     /// <summary>Lists a record among the rejects of the batch.</summary>
     internal void ListReject(int record) => _rejects.Add(record);
 

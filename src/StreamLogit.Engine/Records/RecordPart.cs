@@ -1,6 +1,6 @@
 namespace StreamLogit.Engine.Records;
 
-/// <summary>One thing that records are read for: the id, the time, the label, the weight or a field of the schema.</summary>
+/// <summary>One thing that records are read for: the id, the time, the label, the weight, the label's time or a field of the schema.</summary>
 /// <param name="Role">Which of them.</param>
 /// <param name="Path">Where it stands in a record.</param>
 /// <param name="Field">The place of a field in the schema; -1 of the others.</param>
@@ -15,12 +15,18 @@ internal sealed record RecordPart(PartRole Role, string Path, int Field, FieldUs
     public RejectReason Unreadable => Role switch
     {
         PartRole.Id => RejectReason.IdUnreadable,
-        PartRole.Time => RejectReason.TimeUnreadable,
+        PartRole.Time or PartRole.LabelTime => RejectReason.TimeUnreadable,
         PartRole.Label => RejectReason.LabelNotBinary,
         PartRole.Weight => RejectReason.WeightOutOfRange,
         _ => Use.HasFlag(FieldUse.Number) ? RejectReason.NumberUnreadable : RejectReason.CategoryUnreadable,
     };
 
     /// <summary>How messages name it.</summary>
-    public override string ToString() => $"{(Role == PartRole.Field ? "field" : Role.ToString().ToLowerInvariant())} '{Path}'";
+    public override string ToString() => $"{Name} '{Path}'";
+
+    private string Name => Role switch
+    {
+        PartRole.LabelTime => "label's time",
+        _ => Role.ToString().ToLowerInvariant(),
+    };
 }

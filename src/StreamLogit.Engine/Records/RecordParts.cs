@@ -47,7 +47,7 @@ internal sealed unsafe class RecordParts
             TimeFormat.UnixSeconds => "a number of seconds since 1970",
             _ => "a number of milliseconds since 1970",
         };
-        string[] common = [options.Id, options.Time, options.Label, options.Weight];
+        string?[] common = [options.Id, options.Time, options.Label, options.Weight, options.LabelTime];
         _id = new RecordPart(PartRole.Id, options.Id, -1, FieldUse.None, false);
         _time = new RecordPart(PartRole.Time, options.Time, -1, FieldUse.None, false);
         All =
@@ -56,6 +56,7 @@ internal sealed unsafe class RecordParts
             _time,
             new RecordPart(PartRole.Label, options.Label, -1, FieldUse.None, false),
             new RecordPart(PartRole.Weight, options.Weight, -1, FieldUse.None, false),
+            .. options.LabelTime is { } labelTime ? [new RecordPart(PartRole.LabelTime, labelTime, -1, FieldUse.None, false)] : Array.Empty<RecordPart>(),
             .. schema.Fields.Select((field, index) =>
                 new RecordPart(PartRole.Field, field.Path, index, field.Use, !common.Contains(field.Path))),
         ];
@@ -75,6 +76,7 @@ internal sealed unsafe class RecordParts
         _bytes = bytes;
         _fields = fields;
         _record.Weight = double.NaN;
+        _record.LabelTimeMicroseconds = DecodedRecord.NoTime;
         _hasId = _hasTime = _hasLabel = _hasFieldKey = false;
     }
 
@@ -132,7 +134,11 @@ internal sealed unsafe class RecordParts
         {
             case PartRole.Field: ReadField(part, token); break;
             case PartRole.Id: ReadId(part, token); break;
-            case PartRole.Time: ReadTime(part, token); break;
+            case PartRole.Time:
+                _hasTime = true;
+                ReadTime(part, token, out _record.TimeMicroseconds);
+                break;
+            case PartRole.LabelTime: ReadTime(part, token, out _record.LabelTimeMicroseconds); break;
             case PartRole.Label: ReadLabel(part, token); break;
             case PartRole.Weight: ReadWeight(part, token); break;
         }
@@ -150,6 +156,7 @@ internal sealed unsafe class RecordParts
         record.IdHash = _record.IdHash;
         record.TimeMicroseconds = _record.TimeMicroseconds;
         record.Label = _hasLabel ? _record.Label : 0;
+        record.LabelTimeMicroseconds = _record.LabelTimeMicroseconds;
         record.Weight = _record.Weight;
     }
 
@@ -165,16 +172,16 @@ internal sealed unsafe class RecordParts
         _record.IdHash = KeepText(token, out _record.IdStart, out _record.IdLength);
     }
 
-    private void ReadTime(RecordPart part, in JsonToken token)
+    private void ReadTime(RecordPart part, in JsonToken token, out long microseconds)
     {
-        _hasTime = true;
+        microseconds = 0;
         bool isReadable = token.Kind == JsonKind.String || token.Kind == JsonKind.Number && _timeFormat != TimeFormat.Rfc3339;
         if (!isReadable)
         {
             _fault.Add(part, RejectReason.TimeUnreadable, token, _timeWanted);
             return;
         }
-        var fault = ReadTime(Text(token), out _record.TimeMicroseconds);
+        var fault = ReadTime(Text(token), out microseconds);
         if (fault == TimeFault.None) return;
         _fault.Add(part, RejectReason.TimeUnreadable, token, fault switch
         {

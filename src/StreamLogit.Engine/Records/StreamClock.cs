@@ -25,17 +25,18 @@ internal sealed class StreamClock(long aheadMicroseconds)
     /// <summary>The clock, or null before the first record.</summary>
     public long? Now => Microseconds == long.MinValue ? null : Microseconds;
 
-    /// <summary>Takes the time of a record. An earlier time is taken and moves nothing back.</summary>
-    /// <returns>Whether the record can be used.</returns>
-    public bool TryTake(long timeMicroseconds)
+    /// <summary>Whether a record of that time can be used. Asked once for each record, and if so the clock then moves there.</summary>
+    public bool Accepts(long timeMicroseconds)
     {
         if (Now is not { } now) _firstMicroseconds = timeMicroseconds;
         else if (timeMicroseconds - now > aheadMicroseconds && !IsOrdinary(timeMicroseconds - now) && !MovesOn(timeMicroseconds)) return false;
         _taken++;
         _refusedInARow = 0;
-        Microseconds = Math.Max(Microseconds, timeMicroseconds);
         return true;
     }
+
+    /// <summary>Moves on to a time. An earlier one moves nothing back.</summary>
+    public void MoveTo(long timeMicroseconds) => Microseconds = Math.Max(Microseconds, timeMicroseconds);
 
     public void Save(BinaryWriter writer)
     {

@@ -7,6 +7,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
 {
     private readonly CommitClock _commits = new(options.CommitEveryEvents, options.CommitEveryTime, time);
     private readonly Pacer? _pacer = options.Speed is double speed ? new Pacer(speed, options.BatchSize, time) : null;
+    private readonly Action<RecordBatch>? _cut = options.Span?.Cutter();
     private bool _isPaused = true;
 
     private bool IsPauseDue => !_isPaused || _commits.IsDue;
@@ -32,6 +33,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
             else
             {
                 decoder.Decode(batch.Records);
+                _cut?.Invoke(batch.Records);
                 if (held is not null && !await HoldAsync(batch.Records, held, stop).ConfigureAwait(false)) break;
                 await SendAsync(batch).ConfigureAwait(false);
                 held = null;

@@ -51,6 +51,7 @@ internal static class DefinitionInWords
         yield return $"id in {record.Id}; time in {record.Time}, {format}";
         var values = record.LabelValues.OrderBy(value => value.Key, StringComparer.Ordinal).Select(value => $"{value.Key} means {value.Value}");
         yield return $"label in {record.Label}: {string.Join(", ", values)}";
+        if (record.LabelTime is { } labelTime) yield return $"time of the label in {labelTime}: the label teaches from then on";
         yield return $"weight in {record.Weight}, 1 where it is absent";
         yield return FormattableString.Invariant($"at most {record.MaximumBytes} bytes and {record.MaximumDepth} levels deep");
     }

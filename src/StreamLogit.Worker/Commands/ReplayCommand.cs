@@ -4,7 +4,6 @@ using System.Text.Json;
 using StreamLogit.Engine.Health;
 using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
-using StreamLogit.Pipeline.Files;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.Replay;
 using StreamLogit.Pipeline.Replay.Backtest;
@@ -24,46 +23,40 @@ internal static class ReplayCommand
             "streamlogit replay demo-streams/ferry-tickets.json demo-streams/ferry-tickets.jsonl --set learning.publish=blend --json",
             "streamlogit replay demo-streams/ferry-tickets.json demo-streams/ferry-tickets.jsonl --vary learning.switchRate=0,1e-3 --baselines --out report.html");
         var input = new DefinitionInput(command);
-        var recordings = new Argument<string[]>("RECORDING")
-        {
-            Description = "Files of records, folders of them or patterns as '2026-*.jsonl.zst', in the order in which they are to be read; - is standard input",
-            Arity = ArgumentArity.OneOrMore,
-        };
-        var format = new Option<string?>("--format") { Description = "The format of recordings whose names do not tell it" };
-        format.AcceptOnlyFromAmong("jsonl", "csv", "parquet");
+        var recordings = new RecordingInput(command);
         var json = new Option<string?>("--json")
         {
             Description = "Write the result as JSON, to standard output or to a file; without a file, it stands after the recordings",
             HelpName = "FILE",
             Arity = ArgumentArity.ZeroOrOne,
         };
-        command.Add(recordings);
-        command.Add(format);
         var backtest = new BacktestInput(command);
         command.Add(json);
         command.SetAction(result =>
         {
-            var files = result.GetRequiredValue(recordings)
-                .SelectMany(path => RecordingNames.Find(new FileSourceOptions(path, FormatOf(path, result.GetValue(format))))).ToArray();
+            var files = recordings.Files(result);
+            var span = recordings.Span(result);
             bool asJson = result.GetResult(json) is not null;
             string? jsonFile = result.GetValue(json);
             string?[] outputs = [.. backtest.Outputs(result), jsonFile];
             CheckOutputs([.. outputs.OfType<string>()], [input.Path(result), .. files.Select(file => file.Path)]);
             return backtest.IsGiven(result)
-                ? BacktestAsync(backtest.Read(result, input), files, backtest.Report(result), asJson, jsonFile)
-                : ReplayAsync(input.Read(result, DefinitionUse.Replay), files, asJson, jsonFile);
+                ? BacktestAsync(recordings.WithLabelDelay(backtest.Read(result, input), result) with { Span = span }, files, backtest.Report(result), asJson, jsonFile)
+                : ReplayAsync(recordings.WithLabelDelay(input.Read(result, DefinitionUse.Replay), result), files, new LoopOptions { Span = span }, asJson, jsonFile);
         });
         return command;
     }
 
-    private static async Task<int> ReplayAsync(StreamDefinition definition, FileSourceOptions[] recordings, bool asJson, string? jsonFile)
+    private static async Task<int> ReplayAsync(
+        StreamDefinition definition, FileSourceOptions[] recordings, LoopOptions options, bool asJson, string? jsonFile)
     {
         using var signals = new StopSignals();
-        using var replay = new ReplayRun(definition.Engine, recordings, new LoopOptions(), TimeProvider.System);
+        using var replay = new ReplayRun(definition.Engine, recordings, options, TimeProvider.System);
         var result = await WorkProgress.ShowAsync(
             $"replaying {definition.Engine.Stream}", "records",
             () => (replay.Progress.Source.Share(), replay.Progress.Records),
             () => replay.RunAsync(signals.Token));
+        RecordingInput.WarnOfOptimism(result.Health.TaughtAtOnce);
         if (asJson) WriteJson(jsonFile, json => WriteMembers(json, result.Health, result.ScoreHash));
         if (!asJson || jsonFile is not null) WriteTables(result.Health, result.ScoreHash);
         return Done(result.IsComplete);
@@ -76,6 +69,7 @@ internal static class ReplayCommand
         string stream = options.Reference.Definition.Engine.Stream;
         string title = options.Variants.Length == 0 ? $"replaying {stream}" : $"replaying {stream} and {options.Variants.Length} variants";
         var result = await WorkProgress.ShowAsync(title, "records", () => run.Progress, () => run.RunAsync(signals.Token));
+        RecordingInput.WarnOfOptimism(result.Reference.Health.TaughtAtOnce);
         if (report is not null) await File.WriteAllTextAsync(report, ReportPage.Write(result, stream, Version));
         if (asJson)
         {
@@ -116,16 +110,6 @@ internal static class ReplayCommand
         }
     }
 
-    private static RecordingFormat FormatOf(string path, string? format) => format switch
-    {
-        "jsonl" => RecordingFormat.JsonLines,
-        "csv" => RecordingFormat.Csv,
-        "parquet" => RecordingFormat.Parquet,
-        _ when Directory.Exists(path) || RecordingNames.IsSeveral(path) => RecordingFormat.ByName,
-        _ => RecordingFormats.OfName(path) ?? throw new WrongInputException(
-            $"The name {path} does not tell the format of the recording ({RecordingFormats.KnownNames} would): add --format jsonl, csv or parquet."),
-    };
-
     private static void WriteJson(string? file, Action<Utf8JsonWriter> writeMembers)
     {
         if (file is null) JsonOutput.Write(WriteObject);
@@ -145,6 +129,7 @@ internal static class ReplayCommand
         json.WriteNumber("labelled", health.Labelled);
         json.WriteNumber("rejected", health.Rejected);
         json.WriteNumber("awaiting", health.Awaiting);
+        json.WriteBoolean("optimistic", health.TaughtAtOnce > 0);
         json.WriteStartObject("published");
         json.WriteFigure("logLoss", health.Total.LogLoss);
         json.WriteFigure("baseRateLogLoss", health.Total.BaseRateLogLoss);

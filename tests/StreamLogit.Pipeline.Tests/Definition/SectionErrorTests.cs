@@ -17,6 +17,7 @@ public sealed class SectionErrorTests
     [InlineData("\"record\": { \"maxDepth\": 2.5 }", "2:25: record.maxDepth: expected a whole number from 1 to 256, found the number 2.5")]
     [InlineData("\"record\": { \"maxDepth\": 0 }", "2:25: record.maxDepth: expected a whole number from 1 to 256, found the number 0")]
     [InlineData("\"record\": { \"id\": \"k\", \"label\": \"k\" }", "2:33: record.label: the field \"k\" is already that of \"id\": name another")]
+    [InlineData("\"record\": { \"labelTime\": \"time\" }", "2:26: record.labelTime: the field \"time\" is already that of \"time\": name another")]
     [InlineData("\"record\": { \"id\": \"time\" }", "2:19: record.id: the field \"time\" is already that of \"time\": name another")]
     [InlineData("\"record\": { \"labelValues\": {} }", "2:28: record.labelValues: no value means 1: name the values of bad events, as { \"fraud\": 1, \"paid\": 0 }",
         "2:28: record.labelValues: no value means 0: name the values of good events, or set labels.unlabelled to \"negative\"")]
@@ -24,7 +25,7 @@ public sealed class SectionErrorTests
     [InlineData("\"record\": { \"labelValues\": { \"bad\": 1, \"good\": 2 } }", "2:48: record.labelValues.good: expected a whole number from 0 to 1, found the number 2")]
     [InlineData("\"record\": { \"labelValues\": { \"1\": 1, \"1.0\": 0 } }", "2:45: record.labelValues[\"1.0\"]: the same number as \"1\", which means 1: a number has one meaning")]
     [InlineData("\"record\": { \"labelValues\": { \"a\": 1, \"b\": 0, \"a\": 1 } }", "2:46: record.labelValues.a: the key is there twice, before at quay.json:2:30: keep one")]
-    [InlineData("\"record\": { \"zone\": \"1d\" }", "2:13: record.zone: unknown key. Known here: \"id\", \"time\", \"timeFormat\", \"label\", \"weight\", \"labelValues\", \"maxBytes\", \"maxDepth\", \"ahead\"")]
+    [InlineData("\"record\": { \"zone\": \"1d\" }", "2:13: record.zone: unknown key. Known here: \"id\", \"time\", \"timeFormat\", \"label\", \"labelTime\", \"weight\", \"labelValues\", \"maxBytes\", \"maxDepth\", \"ahead\"")]
     public void Record_Wrong_IsRefused(string keys, params string[] expected) => AssertErrors(keys, expected);
 
     [Theory]

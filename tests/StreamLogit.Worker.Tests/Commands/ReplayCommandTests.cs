@@ -14,7 +14,7 @@ public sealed class ReplayCommandTests
         var json = Demo.Value.Json;
 
         Assert.Equal(
-            ["events", "labelled", "rejected", "awaiting", "published", "settings", "scoreHash"],
+            ["events", "labelled", "rejected", "awaiting", "optimistic", "published", "settings", "scoreHash"],
             json.EnumerateObject().Select(member => member.Name));
         Assert.Equal(["logLoss", "baseRateLogLoss", "brier"], json.GetProperty("published").EnumerateObject().Select(member => member.Name));
         Assert.Equal(4, json.GetProperty("settings").GetArrayLength());
@@ -113,6 +113,50 @@ public sealed class ReplayCommandTests
         Assert.Equal((2, 2, 1), (json.GetProperty("events").GetInt32(), json.GetProperty("labelled").GetInt32(), json.GetProperty("rejected").GetInt32()));
     }
 
+    private const string LabelledEvents = """
+        {"id":"a","time":"2026-01-01T00:00:00Z","x":1,"label":1,"settled":"2026-01-01T12:00:00Z"}
+        {"id":"b","time":"2026-01-01T06:00:00Z","x":1,"label":0}
+        {"id":"c","time":"2026-01-02T06:00:00Z","x":1}
+
+        """;
+
+    private static System.Text.Json.JsonElement ReplayLabelled(TemporaryFolder folder, out string errors, params string[] options)
+    {
+        string definition = folder.Write("definition.json", """{ "stream": "s", "features": [ { "number": "x" } ] }""");
+        string recording = folder.Write("recording.jsonl", LabelledEvents);
+        var result = StreamLogitProcess.Run(["replay", definition, recording, "--json", .. options]);
+        errors = result.Errors;
+        return result.Json;
+    }
+
+    [Fact]
+    public void Replay_LabelsWithoutTheirTimes_IsOptimisticUnlessTheyAreDelayed()
+    {
+        using var folder = new TemporaryFolder();
+        var atOnce = ReplayLabelled(folder, out string caution);
+        var delayed = ReplayLabelled(folder, out string noCaution, "--label-delay", "12h");
+        var timed = ReplayLabelled(folder, out string caution1, "--set", "record.labelTime=settled");
+
+        Assert.True(atOnce.GetProperty("optimistic").GetBoolean());
+        Assert.Contains("2 labels stand in their events", caution, StringComparison.Ordinal);
+        Assert.False(delayed.GetProperty("optimistic").GetBoolean());
+        Assert.Empty(noCaution);
+        Assert.Contains("1 labels stand in their events", caution1, StringComparison.Ordinal);
+        string[] hashes = [.. new[] { atOnce, delayed, timed }.Select(json => json.GetProperty("scoreHash").GetString()!)];
+        Assert.Equal(3, hashes.Distinct().Count());
+    }
+
+    [Fact]
+    public void Replay_FromTo_TakesTheRecordsBetween()
+    {
+        using var folder = new TemporaryFolder();
+
+        Assert.Equal(1, ReplayLabelled(folder, out _, "--from", "2026-01-01T06:00:00Z", "--to", "2026-01-02").GetProperty("events").GetInt32());
+        Assert.Equal(2, ReplayLabelled(folder, out _, "--from", "2026-01-01T07:00:00+01:00").GetProperty("events").GetInt32());
+        Assert.Equal(2, StreamLogitProcess.Run("replay", folder["definition.json"], folder["recording.jsonl"], "--from", "2026-01-02", "--to", "2026-01-02").ExitCode);
+        Assert.Equal(2, StreamLogitProcess.Run("replay", folder["definition.json"], folder["recording.jsonl"], "--from", "yesterday").ExitCode);
+    }
+
     [Fact]
     public void Replay_NoLabels_HasNullFigures()
     {
@@ -128,6 +172,8 @@ public sealed class ReplayCommandTests
     [Theory]
     [InlineData("no-such-recording.jsonl", "does not exist")]
     [InlineData("recording.xlsx", "--format")]
+    [InlineData("recording.parquet", "does not exist")]
+    [InlineData("nowhere/", "does not exist")]
     [InlineData("", "argument")]
     public void Replay_WrongRecording_ExitsWith2(string recording, string said)
     {

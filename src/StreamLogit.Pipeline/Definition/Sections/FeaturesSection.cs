@@ -96,8 +96,8 @@ internal static class FeaturesSection
     private static string? Field(ValueReader value, RecordOptions record)
     {
         string? field = value.FieldPath();
-        if (field is null || field != record.Label) return field;
-        value.Error($"the field {Quoted.Text(field)} holds the label, which is not known when an event is scored: name another");
+        if (field is null || field != record.Label && field != record.LabelTime) return field;
+        value.Error($"the field {Quoted.Text(field)} holds the label{(field == record.Label ? "" : "'s time")}, which is not known when an event is scored: name another");
         return null;
     }
 }

@@ -23,6 +23,7 @@ internal static class RecordSection
         var timeFormat = section.Optional("timeFormat")?.OneOf(
             ("rfc3339", TimeFormat.Rfc3339), ("unix-seconds", TimeFormat.UnixSeconds), ("unix-milliseconds", TimeFormat.UnixMilliseconds));
         var label = section.Optional("label");
+        var labelTime = section.Optional("labelTime");
         var weight = section.Optional("weight");
         var options = new RecordOptions
         {
@@ -30,6 +31,7 @@ internal static class RecordSection
             Time = time?.FieldPath() ?? defaults.Time,
             TimeFormat = timeFormat ?? defaults.TimeFormat,
             Label = label?.FieldPath() ?? defaults.Label,
+            LabelTime = labelTime?.FieldPath(),
             Weight = weight?.FieldPath() ?? defaults.Weight,
             LabelValues = ReadLabelValues(section.Optional("labelValues"), labels) ?? defaults.LabelValues,
             MaximumBytes = section.Optional("maxBytes")?.Whole(ShortestLimitBytes, LongestLimitBytes) ?? defaults.MaximumBytes,
@@ -38,21 +40,24 @@ internal static class RecordSection
         };
         section.End();
         RefuseSharedFields(
-            [("id", options.Id, id), ("time", options.Time, time), ("label", options.Label, label), ("weight", options.Weight, weight)]);
+        [
+            ("id", options.Id, id), ("time", options.Time, time), ("label", options.Label, label),
+            ("labelTime", options.LabelTime, labelTime), ("weight", options.Weight, weight),
+        ]);
         return options;
     }
 
-    private static void RefuseSharedFields((string Key, string Field, ValueReader? Written)[] parts)
+    private static void RefuseSharedFields((string Key, string? Field, ValueReader? Written)[] parts)
     {
         for (int later = 1; later < parts.Length; later++)
         {
             for (int earlier = 0; earlier < later; earlier++)
             {
-                if (parts[later].Field != parts[earlier].Field) continue;
+                if (parts[later].Field is not { } field || field != parts[earlier].Field) continue;
                 bool laterWritten = parts[later].Written is not null;
                 string other = parts[laterWritten ? earlier : later].Key;
                 parts[laterWritten ? later : earlier].Written?.Error(
-                    $"the field {Quoted.Text(parts[later].Field)} is already that of {Quoted.Text(other)}: name another");
+                    $"the field {Quoted.Text(field)} is already that of {Quoted.Text(other)}: name another");
             }
         }
     }

@@ -21,6 +21,9 @@ public sealed record BacktestOptions
     /// <summary>Where the scores of the definition as it stands are written, or null. A file that is there is written anew.</summary>
     public FileOutputOptions? Scores { get; init; }
 
+    /// <summary>The only records that are taken, by their times. Null, the default, takes all.</summary>
+    public RecordSpan? Span { get; init; }
+
     /// <summary>The seed of the bootstrap. Default 1.</summary>
     public ulong Seed { get; init; } = 1;
 

@@ -57,7 +57,7 @@ internal sealed class BacktestPass : IDisposable
         _decisions = [.. variants.Select(v => new DecisionTally(v.Definition.Engine.Decision.Cutoff))];
         _match = new LabelMatch(_lanes);
         var rival = isFirst && options.RivalField is { } field ? RivalProbabilities.SchemaOf(options.Reference.Definition.Engine, field) : null;
-        _reading = new SharedReading(source, _schemas, rival);
+        _reading = new SharedReading(source, _schemas, rival, options.Span);
         int workers = Math.Min(Environment.ProcessorCount, _lanes.Count);
         _copies = [.. Enumerable.Range(0, workers).Select(_ => _schemas.Select(schema => new RecordBatch(schema)).ToArray())];
         (_logOdds, _probabilities, _unused) = (new double[_lanes.Count], new double[_lanes.Count], new double[_lanes.Count]);
@@ -91,8 +91,9 @@ internal sealed class BacktestPass : IDisposable
                 _reading.Return(batch);
                 if (stop.IsCancellationRequested) break;
             }
-            if (_reading.HasEnded)
-                foreach (var lane in _lanes) lane.End(_copies[0][lane.Schema]);
+            if (!_reading.HasEnded) return;
+            foreach (var lane in _lanes) lane.End(_copies[0][lane.Schema]);
+            CompareLabels();
         }
         finally
         {

@@ -46,9 +46,11 @@ internal sealed class Lane : IDisposable
         _sink?.Write(records, _scores);
     }
 
-    /// <summary>Ends the stream, so that labels that still wait for their event count as rejects.</summary>
+    /// <summary>Ends the stream, so that labels to come become known and labels that still wait for their event count as rejects.</summary>
     public void End(RecordBatch empty)
     {
+        _labels.Clear();
+        _nightly?.Clear();
         empty.Clear();
         Engine.End(empty);
     }

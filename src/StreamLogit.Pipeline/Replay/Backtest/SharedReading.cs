@@ -12,14 +12,16 @@ internal sealed class SharedReading
     private readonly IRecordSource _source;
     private readonly RecordDecoder[] _decoders;
     private readonly RecordDecoder? _rival;
+    private readonly Action<RecordBatch>[] _cutters;
     private readonly Channel<SharedBatch> _empty = Channel.CreateBounded<SharedBatch>(Batches);
     private readonly Channel<SharedBatch> _decoded = Channel.CreateBounded<SharedBatch>(Batches);
 
-    public SharedReading(IRecordSource source, IReadOnlyList<RecordSchema> schemas, RecordSchema? rival)
+    public SharedReading(IRecordSource source, IReadOnlyList<RecordSchema> schemas, RecordSchema? rival, RecordSpan? span)
     {
         _source = source;
         _decoders = [.. schemas.Select(schema => new RecordDecoder(schema))];
         _rival = rival is null ? null : new RecordDecoder(rival);
+        _cutters = span is null ? [] : [.. schemas.Select(_ => span.Cutter())];
         for (int i = 0; i < Batches; i++) _empty.Writer.TryWrite(new SharedBatch(schemas, rival));
     }
 
@@ -66,6 +68,7 @@ internal sealed class SharedReading
         foreach (var other in batch.BySchema.AsSpan(1)) other.CopyFrom(raw);
         batch.Rival?.CopyFrom(raw);
         for (int i = 0; i < _decoders.Length; i++) _decoders[i].Decode(batch.BySchema[i]);
+        for (int i = 0; i < _cutters.Length; i++) _cutters[i](batch.BySchema[i]);
         if (batch.Rival is not null) _rival!.Decode(batch.Rival);
         return true;
     }
