@@ -71,17 +71,21 @@ public sealed class StreamRun : IDisposable
     /// <exception cref="InvalidStateException">The state belongs to another definition.</exception>
     public static StreamRun Open(StreamDefinition definition, LoopOptions options, TimeProvider time)
     {
-        var source = definition.Source switch
-        {
-            FileSourceOptions file => RecordingSource.OpenAll(file, definition.Engine.Record.MaximumBytes, time),
-            null => throw new ArgumentException("The definition names no source.", nameof(definition)),
-            var other => throw new ArgumentException($"{other.GetType().Name} is no file.", nameof(definition)),
-        };
+        var source = OpenSource(definition, time);
         var sinks = ImmutableArray.CreateBuilder<IScoreSink>();
         if (definition.Scores is { } scores) sinks.Add(new ScoreFile(scores, definition.Engine));
         if (definition.Rejects is { } rejects) sinks.Add(new RejectFile(rejects));
+        if (definition.Recording is { } recording) sinks.Add(new RecordingFolder(recording));
         return new StreamRun(definition, source, sinks.ToImmutable(), options, time);
     }
+
+    /// <summary>Opens the source that a definition names.</summary>
+    internal static IRecordSource OpenSource(StreamDefinition definition, TimeProvider time) => definition.Source switch
+    {
+        FileSourceOptions file => RecordingSource.OpenAll(file, definition.Engine.Record.MaximumBytes, time),
+        null => throw new ArgumentException("The definition names no source.", nameof(definition)),
+        var other => throw new ArgumentException($"{other.GetType().Name} is no file.", nameof(definition)),
+    };
 
     /// <summary>Runs until the source ends or the run is stopped; either way it ends with a commit.</summary>
     /// <exception cref="PipelineException">What surrounds the engine is broken. Nothing after the last commit counts.</exception>

@@ -18,6 +18,9 @@ public sealed record StreamDefinition
     /// <summary>Where rejects are written, or null where they are only counted.</summary>
     public FileOutputOptions? Rejects { get; init; }
 
+    /// <summary>Where every record is recorded as the engine takes it, or null where it is not.</summary>
+    public RecordingOptions? Recording { get; init; }
+
     /// <summary>Where the state is kept and how often it is committed, or null where the definition does not say.</summary>
     public StateOptions? State { get; init; }
 

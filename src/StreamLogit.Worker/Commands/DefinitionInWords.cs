@@ -71,10 +71,11 @@ internal static class DefinitionInWords
     private static IEnumerable<string> Files(StreamDefinition definition)
     {
         if (definition.Source is FileSourceOptions source)
-            yield return $"records from {source.Path} ({(source.Format == RecordingFormat.Csv ? "CSV" : "JSON Lines")}{(source.Follow ? ", followed as it grows" : "")})";
+            yield return $"records from {source.Path} ({Words(source.Format)}{(source.Follow ? ", followed as it grows" : "")})";
         else yield return "records: the definition names no source";
         yield return definition.Scores is { } scores ? $"scores to {scores.Path}" : "scores: the definition names no file";
         yield return definition.Rejects is { } rejects ? $"rejects to {rejects.Path}" : "rejects are only counted";
+        if (definition.Recording is { } recording) yield return $"recording in {recording.Folder}, files of {FigureText.Bytes(recording.MaximumBytes)}";
         if (definition.State is { } state)
         {
             yield return FormattableString.Invariant(
@@ -82,6 +83,14 @@ internal static class DefinitionInWords
         }
         else yield return "state: the definition names no folder";
     }
+
+    private static string Words(RecordingFormat format) => format switch
+    {
+        RecordingFormat.Csv => "CSV",
+        RecordingFormat.Parquet => "Parquet",
+        RecordingFormat.ByName => "several files",
+        _ => "JSON Lines",
+    };
 
     private static string Memory(EngineDefinition engine)
     {

@@ -12,6 +12,7 @@ internal static class StreamLogitCommand
         {
             RunCommand.Create(),
             ReplayCommand.Create(),
+            RecordCommand.Create(),
             CheckCommand.Create(),
             ShowCommand.Create(),
             SynthCommand.Create(),

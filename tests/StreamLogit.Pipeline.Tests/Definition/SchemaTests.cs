@@ -105,7 +105,7 @@ public sealed partial class SchemaTests
     [Fact]
     public void Defaults_InTheSchema_AreThoseOfTheReader()
     {
-        var absent = Definitions.ReadWith("\"source\": { \"file\": \"a.csv\" }, \"state\": { \"folder\": \"s\" }");
+        var absent = Definitions.ReadWith("\"source\": { \"file\": \"a.csv\" }, \"state\": { \"folder\": \"s\" }, \"recording\": { \"folder\": \"r\" }");
         var written = new JsonObject { ["stream"] = "quay", ["features"] = new JsonArray(new JsonObject { ["number"] = "amount" }) };
         foreach (var (section, schema) in SchemaFile.Root["properties"]!.AsObject())
         {
@@ -114,6 +114,7 @@ public sealed partial class SchemaTests
             foreach (var (key, value) in keys) if (value!["default"] is { } standard) values[key] = standard.DeepClone();
             if (section == "source") values["file"] = "a.csv";
             if (section == "state") values["folder"] = "s";
+            if (section == "recording") values["folder"] = "r";
             written[section] = values;
         }
 
@@ -126,7 +127,7 @@ public sealed partial class SchemaTests
         Assert.Equal(absent.Engine.Decision, read.Engine.Decision);
         Assert.Equal(absent.Engine.Health.Windows, read.Engine.Health.Windows);
         Assert.Equal(absent.Engine.Health.LastLabels, read.Engine.Health.LastLabels);
-        Assert.Equal((absent.Source, absent.State), (read.Source, read.State));
+        Assert.Equal((absent.Source, absent.State, absent.Recording), (read.Source, read.State, read.Recording));
     }
 
     [Fact]

@@ -20,6 +20,7 @@ internal static class DefinitionSection
         var source = ForRun("source", "it says where the records come from");
         var scores = ForRun("scores", "it says where scores are written");
         var rejects = definition.Optional("rejects");
+        var recording = definition.Optional("recording");
         var state = ForRun("state", "it says in which folder the state is kept");
         definition.End();
 
@@ -43,6 +44,7 @@ internal static class DefinitionSection
             Source = sourceOptions,
             Scores = output,
             Rejects = RejectsSection.Read(rejects, files),
+            Recording = RecordingSection.Read(recording, files),
             State = StateSection.Read(state, files),
             EffectiveJson = "",
         };
