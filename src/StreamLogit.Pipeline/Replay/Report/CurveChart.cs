@@ -25,7 +25,7 @@ internal static class CurveChart
         foreach (double tick in Ticks(low, high))
         {
             html.Markup($"<line class=\"{(tick == 0 ? "zero" : "grid")}\" x1=\"{Left}\" x2=\"{Width - Right}\" y1=\"").Number(Y(tick)).Markup("\" y2=\"")
-                .Number(Y(tick)).Markup($"\"/><text class=\"tick end\" x=\"{Left - 8}\" y=\"").Number(Y(tick) + 4).Markup("\">").Text($"{tick:0.###}").Markup("</text>");
+                .Number(Y(tick)).Markup($"\"/><text class=\"tick end\" x=\"{Left - 8}\" y=\"").Number(Y(tick) + 4).Markup("\">").Text($"{tick:0.###;−0.###;0}").Markup("</text>");
         }
         foreach (int day in new[] { 0, days.Length / 2, days.Length - 1 }.Distinct())
         {
@@ -52,6 +52,6 @@ internal static class CurveChart
     {
         double rough = (high - low) / 4, power = Math.Pow(10, Math.Floor(Math.Log10(rough)));
         double step = Steps.First(factor => factor * power >= rough) * power;
-        for (double tick = Math.Ceiling(low / step); tick * step <= high; tick++) yield return tick * step;
+        for (double tick = Math.Ceiling(low / step); tick * step <= high; tick++) yield return tick == 0 ? 0 : tick * step;
     }
 }

@@ -25,6 +25,7 @@ public static class ReportPage
         int shown = hasVariants ? comparison.Variants.IndexOf(Verdict.Shown(comparison.Variants)) : 0;
         html.Markup("<h2>What was tried</h2>");
         ReportTables.Variants(html, result);
+        ReportTables.OtherMeasures(html, result);
         html.Element("p", "The standing is “better” or “worse” only where the e-value has been 20 times the number of variants and the interval agrees. The cost "
             + $"counts a false alarm as {Words.Ratio(result.Reference.Decisions.Cutoff)} and a miss as {Words.Ratio(1 - result.Reference.Decisions.Cutoff)}, the costs "
             + "for which the definition’s cutoff is best; alerts, precision and recall go by each definition’s own cutoff.");
@@ -47,7 +48,12 @@ public static class ReportPage
     private static void WriteTimes(HtmlText html, BacktestResult result, int shown)
     {
         var comparison = result.Comparison;
-        int[] best = [.. Enumerable.Range(0, comparison.Variants.Length).OrderBy(v => comparison.Variants[v].Figures.LogLoss).Take(MostCurves)];
+        int[] best =
+        [
+            // Those that lose much would press all others together at the top.
+            .. Enumerable.Range(0, comparison.Variants.Length)
+                .Where(v => v == shown || Standings.Of(comparison.Variants[v], comparison.Variants.Length) != Standing.Worse).OrderBy(v => comparison.Variants[v].Figures.LogLoss).Take(MostCurves),
+        ];
         html.Markup("<h2>When it helps and when it hurts</h2><figure>");
         CurveChart.Draw(html, comparison, shown, best);
         html.Markup("<figcaption>Nats of log-loss gained on the definition as it stands, added up day by day. <span class=\"key-after\">The thick line</span> is ")

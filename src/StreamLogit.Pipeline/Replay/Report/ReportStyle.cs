@@ -24,7 +24,7 @@ internal static class ReportStyle
         caption{text-align:left;padding:10px 12px;color:var(--soft);max-width:min(1010px,calc(100vw - 60px))}
         th,td{padding:6px 12px;text-align:right;border-top:1px solid var(--rule);white-space:nowrap}
         th:first-child{text-align:left}
-        tbody th{font-weight:600;white-space:normal;overflow-wrap:anywhere;min-width:22em}
+        tbody th{font-weight:600;white-space:normal;overflow-wrap:anywhere;min-width:18em}
         thead th{vertical-align:bottom;white-space:normal;color:var(--soft);font-weight:600}
         .narrow tbody th{min-width:0}
         .better{color:var(--good);font-weight:700}

@@ -7,6 +7,7 @@ namespace StreamLogit.Pipeline.Replay.Report;
 internal static class ReportTables
 {
     private const int MostDays = 400;
+    private const string None = "–";
 
     public static void Variants(HtmlText html, BacktestResult result)
     {
@@ -15,11 +16,31 @@ internal static class ReportTables
             html, "wide", $"The definition as it stands and {Words.Of(comparison.Variants.Length, "variant", "variants")}, the lowest log-loss first, on the same "
             + $"{Words.Of(comparison.Count, "label", "labels")}. A difference below 0 means that the variant loses less. Intervals hold the lasting difference "
             + $"{comparison.Level * 100:0} % of the time.",
-            "Definition", "Standing", "Log-loss", "Difference", "Interval", "Brier", "AUC", "Difference of AUC", "Observed / expected", "Cost difference", "Alerts",
-            "Precision", "Recall", "e-value now", "e-value at its peak");
-        Row(html, "as it stands", null, comparison.Reference, comparison.ObservedRate, null, result.Reference.Decisions);
+            "Definition", "Standing", "Log-loss", "Difference", "Interval", "e-value now", "e-value at its peak");
+        html.Markup("<tr><th scope=\"row\">as it stands</th>");
+        Cells(html, None, Words.Mean(comparison.Reference.LogLoss), None, None, None, None);
+        html.Markup("</tr>");
+        foreach (var variant in comparison.Variants.OrderBy(v => v.Figures.LogLoss))
+        {
+            html.Markup("<tr><th scope=\"row\">").Text(variant.Name).Markup("</th>");
+            StandingCell(html, Standings.Of(variant, comparison.Variants.Length));
+            Cells(
+                html, Words.Mean(variant.Figures.LogLoss), Words.Signed(variant.Losses.LogLoss.Value), Words.Interval(variant.Losses.LogLoss),
+                Words.EValue(variant.Better.LogEValue), Words.EValue(variant.Better.LogPeak));
+            html.Markup("</tr>");
+        }
+        End(html);
+    }
+
+    public static void OtherMeasures(HtmlText html, BacktestResult result)
+    {
+        var comparison = result.Comparison;
+        Begin(
+            html, "wide", "How well they tell ones from zeros, how far they are calibrated, and what their alerts came to, in the same order.",
+            "Definition", "Brier", "AUC", "Interval of its difference", "Observed / expected", "Cost difference", "Alerts", "Precision", "Recall");
+        Row(html, "as it stands", comparison.Reference, comparison.ObservedRate, null, result.Reference.Decisions);
         foreach (var (variant, lane) in comparison.Variants.Zip(result.Variants).OrderBy(pair => pair.First.Figures.LogLoss))
-            Row(html, variant.Name, Standings.Of(variant, comparison.Variants.Length), variant.Figures, comparison.ObservedRate, variant, lane.Decisions);
+            Row(html, variant.Name, variant.Figures, comparison.ObservedRate, variant, lane.Decisions);
         End(html);
     }
 
@@ -27,8 +48,7 @@ internal static class ReportTables
     {
         Begin(
             html, "wide", "What else could have been used, each against the definition as it stands on the labels for which it had a probability.",
-            "Baseline", "Labels", "Standing", "Log-loss", "Log-loss of the definition", "Difference", "Interval", "AUC", "Observed / expected", "Alerts", "Precision",
-            "Recall", "e-value that it is worse");
+            "Baseline", "Labels", "Standing", "Log-loss", "Log-loss as it stands", "Difference", "Interval", "AUC", "Observed / expected");
         foreach (var baseline in result.Baselines)
         {
             var comparison = baseline.Comparison;
@@ -38,9 +58,7 @@ internal static class ReportTables
             StandingCell(html, Standings.Of(variant, 1));
             Cells(
                 html, Words.Mean(variant.Figures.LogLoss), Words.Mean(comparison.Reference.LogLoss), Words.Signed(variant.Losses.LogLoss.Value),
-                Words.Interval(variant.Losses.LogLoss), Words.Mean(variant.Figures.Auc), Words.Ratio(comparison.ObservedRate / variant.Figures.MeanProbability),
-                Words.Count(baseline.Decisions.Alerts), Words.Share(baseline.Decisions.Precision), Words.Share(baseline.Decisions.Recall),
-                Words.EValue(variant.Worse.LogEValue));
+                Words.Interval(variant.Losses.LogLoss), Words.Mean(variant.Figures.Auc), Words.Ratio(comparison.ObservedRate / variant.Figures.MeanProbability));
             html.Markup("</tr>");
         }
         End(html);
@@ -91,23 +109,19 @@ internal static class ReportTables
     }
 
     private static void Row(
-        HtmlText html, string name, Standing? standing, in ModelFigures figures, double observedRate, VariantComparison? variant, DecisionFigures decisions)
+        HtmlText html, string name, in ModelFigures figures, double observedRate, VariantComparison? variant, DecisionFigures decisions)
     {
         html.Markup("<tr><th scope=\"row\">").Text(name).Markup("</th>");
-        StandingCell(html, standing);
         Cells(
-            html, Words.Mean(figures.LogLoss), Words.Signed(variant?.Losses.LogLoss.Value ?? double.NaN), Words.Interval(variant?.Losses.LogLoss ?? NoDifference),
-            Words.Mean(figures.Brier), Words.Mean(figures.Auc), Words.Signed(variant?.Auc.Value ?? double.NaN), Words.Ratio(observedRate / figures.MeanProbability),
-            Words.Signed(variant?.Losses.Cost.Value ?? double.NaN), Words.Count(decisions.Alerts), Words.Share(decisions.Precision), Words.Share(decisions.Recall),
-            variant is null ? "–" : Words.EValue(variant.Better.LogEValue), variant is null ? "–" : Words.EValue(variant.Better.LogPeak));
+            html, Words.Mean(figures.Brier), Words.Mean(figures.Auc), variant is null ? None : Words.Interval(variant.Auc),
+            Words.Ratio(observedRate / figures.MeanProbability), variant is null ? None : Words.Signed(variant.Losses.Cost.Value),
+            Words.Count(decisions.Alerts), Words.Share(decisions.Precision), Words.Share(decisions.Recall));
         html.Markup("</tr>");
     }
 
-    private static Difference NoDifference => new(double.NaN, double.NaN, double.NaN);
-
-    private static void StandingCell(HtmlText html, Standing? standing) =>
+    private static void StandingCell(HtmlText html, Standing standing) =>
         html.Markup(standing switch { Standing.Better => "<td class=\"better\">", Standing.Worse => "<td class=\"worse\">", _ => "<td>" })
-            .Text(standing?.Words() ?? "–").Markup("</td>");
+            .Text(standing.Words()).Markup("</td>");
 
     private static void Begin(HtmlText html, string kind, string caption, params ReadOnlySpan<string> columns)
     {
