@@ -15,7 +15,7 @@ internal static class BacktestJson
         json.WriteStartObject("comparison");
         json.WriteNumber("labels", comparison.Count);
         json.WriteNumber("labelsLeftOut", result.LabelsLeftOut);
-        json.WriteNumber("labelsAtOnce", result.LabelsAtOnce);
+        json.WriteNumber("labelsAtOnce", result.Reference.Health.TaughtAtOnce);
         json.WriteNumber("level", comparison.Level);
         json.WriteNumber("blocks", comparison.Blocks);
         json.WriteNumber("blockSeconds", comparison.BlockMicroseconds / 1e6);

@@ -71,8 +71,6 @@ internal sealed class BacktestPass : IDisposable
 
     public long LabelsLeftOut { get; private set; }
 
-    public long LabelsAtOnce { get; private set; }
-
     public long RivalUnusable => _baselines?.Rival?.Unusable ?? 0;
 
     /// <summary>Runs to the end of the recordings or until it is stopped.</summary>
@@ -151,7 +149,6 @@ internal sealed class BacktestPass : IDisposable
         for (int i = 0; i < labels.Count; i++)
         {
             ref readonly var label = ref CollectionsMarshal.AsSpan(labels)[i];
-            if (label.KnownAtMicroseconds == label.ScoredAtMicroseconds) LabelsAtOnce++;
             if (!_match.TryFind(i, _logOdds))
             {
                 LabelsLeftOut++;

@@ -21,8 +21,11 @@ public sealed record BacktestResult
     /// <summary>Labels of the reference that a variant did not learn at the same record, so that they are not compared.</summary>
     public required long LabelsLeftOut { get; init; }
 
-    /// <summary>Labels of the reference that were known as soon as the event was scored: a live worker seldom knows them so early.</summary>
-    public required long LabelsAtOnce { get; init; }
+    /// <summary>The only records that were taken, or null for all.</summary>
+    public required RecordSpan? Span { get; init; }
+
+    /// <summary>How long after its event, in microseconds, a label that stood in the event was known, where the event did not tell it; 0 for at once.</summary>
+    public required long LabelDelayMicroseconds { get; init; }
 
     /// <summary>Events whose rival field held no number from 0 to 1.</summary>
     public required long RivalUnusable { get; init; }

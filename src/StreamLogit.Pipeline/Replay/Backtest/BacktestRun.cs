@@ -102,7 +102,7 @@ public sealed class BacktestRun
         return result!;
     }
 
-    private static BacktestResult Joined(BacktestResult? earlier, BacktestPass pass, int passes)
+    private BacktestResult Joined(BacktestResult? earlier, BacktestPass pass, int passes)
     {
         var lanes = pass.Results();
         var comparison = pass.Comparison();
@@ -123,7 +123,8 @@ public sealed class BacktestRun
             Comparison = comparison,
             Baselines = earlier?.Baselines ?? pass.Baselines(),
             LabelsLeftOut = Math.Max(earlier?.LabelsLeftOut ?? 0, pass.LabelsLeftOut),
-            LabelsAtOnce = pass.LabelsAtOnce,
+            Span = _options.Span,
+            LabelDelayMicroseconds = _options.Reference.Definition.Engine.Labels.DelayMicroseconds ?? 0,
             RivalUnusable = earlier?.RivalUnusable ?? pass.RivalUnusable,
             Passes = passes,
             IsComplete = pass.HasEnded,

@@ -91,6 +91,8 @@ public static class ReportPage
             html.Markup("<dt>recording</dt><dd>").Text(recording.Path).Text(recording.Bytes is long bytes ? $", {Words.Count(bytes)} bytes" : "").Markup("</dd>");
             html.Markup("<dt>its SHA-256</dt><dd><code>").Text(recording.Sha256 ?? "not known").Markup("</code></dd>");
         }
+        if (result.Span is { } span) html.Markup("<dt>only records</dt><dd>").Text(Words.Span(span)).Markup("</dd>");
+        if (result.LabelDelayMicroseconds > 0) html.Markup("<dt>delay of labels</dt><dd>").Text(Words.Duration(result.LabelDelayMicroseconds)).Markup("</dd>");
         html.Markup("<dt>score hash</dt><dd><code>").Text(result.Reference.ScoreHash).Markup("</code></dd>");
         if (shown is int v)
             html.Markup("<dt>score hash of ").Text(result.Variants[v].Name).Markup("</dt><dd><code>").Text(result.Variants[v].ScoreHash).Markup("</code></dd>");

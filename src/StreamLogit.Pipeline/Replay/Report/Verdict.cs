@@ -65,9 +65,9 @@ internal static class Verdict
     {
         var comparison = result.Comparison;
         if (!result.IsComplete) yield return "The replay was stopped before the end of the recordings. This covers what was replayed by then.";
-        if (result.LabelsAtOnce > 0)
-            yield return $"{Words.Share((double)result.LabelsAtOnce / (comparison.Count + result.LabelsLeftOut))} of the labels were known at the moment of scoring. "
-                + "Where a live worker learns them later, this result is optimistic.";
+        if (result.Reference.Health.TaughtAtOnce > 0)
+            yield return $"{Words.Share((double)result.Reference.Health.TaughtAtOnce / result.Reference.Health.Labelled)} of the labels stand in their events and taught at once. "
+                + "Where labels come later in truth, this result is optimistic.";
         if (result.LabelsLeftOut > 0)
             yield return $"{Words.Of(result.LabelsLeftOut, "label was", "labels were")} left out of the comparison, because not every variant learned "
                 + "the same label at the same record.";

@@ -31,6 +31,15 @@ internal static class Words
 
     public static string Day(long microseconds) => DateTime.UnixEpoch.AddMicroseconds(microseconds).ToString("yyyy-MM-dd", CultureInfo.InvariantCulture);
 
+    public static string Span(RecordSpan span)
+    {
+        string from = span.FromMicroseconds == long.MinValue ? "" : $"from {Time(span.FromMicroseconds)}";
+        string to = span.ToMicroseconds == long.MaxValue ? "" : $"before {Time(span.ToMicroseconds)}";
+        return string.Join(" and ", new[] { from, to }.Where(part => part.Length > 0));
+    }
+
+    private static string Time(long microseconds) => DateTime.UnixEpoch.AddMicroseconds(microseconds).ToString("yyyy-MM-ddTHH:mm:ss.FFFFFFZ", CultureInfo.InvariantCulture);
+
     public static string Duration(long microseconds)
     {
         double hours = microseconds / 3.6e9;
