@@ -41,6 +41,7 @@ public sealed class ScoringEngine
     /// <summary>An engine that has seen nothing.</summary>
     /// <param name="definition">What it computes.</param>
     /// <param name="archive">Where it puts what it has no room for in memory, or null where all stays in memory.</param>
+    /// <exception cref="InvalidStateException">The definition's warm start was fitted with other features.</exception>
     public ScoringEngine(EngineDefinition definition, IBlockArchive? archive = null)
     {
         Definition = definition;
@@ -55,6 +56,7 @@ public sealed class ScoringEngine
         _reasons = new ReasonFinder(definition.Features.Length);
         _logOdds = new double[_bank.SettingCount];
         _coefficients = new double[_encoder.MaximumEntries];
+        if (definition.Learning.WarmStart is { } fitted) StartFrom(fitted);
     }
 
     /// <summary>What the engine was made for.</summary>
@@ -71,6 +73,9 @@ public sealed class ScoringEngine
 
     /// <summary>The parts of the state that the engine reads from its archive, where it has one, and not from the blocks that it loads.</summary>
     public static IReadOnlyList<string> ArchivedParts { get; } = [AwaitingStore.SegmentsPart];
+
+    /// <summary>The slots that events have used so far, with their names.</summary>
+    public IEnumerable<(int Slot, string Name)> UsedSlots => _encoder.UsedSlots();
 
     /// <summary>An empty batch for the scores of this engine.</summary>
     public ScoreBatch CreateScoreBatch() => new(Definition.Decision.Reasons);
@@ -127,6 +132,17 @@ public sealed class ScoringEngine
                 [.. slots.Select(s => new NamedCoefficient(s.Name, _bank.Coefficient(s.Slot, setting)))]))],
             [.. Enumerable.Range(0, _bank.SettingCount).Select(setting => new BlendWeight(_bank.Names[setting], _bank.BlendWeight(setting)))]);
     }
+
+    /// <summary>Makes a model of coefficients that were fitted to the events that this engine has encoded.</summary>
+    /// <param name="intercept">The intercept.</param>
+    /// <param name="coefficient">Gives the coefficient of a slot.</param>
+    public FittedModel ToFittedModel(double intercept, Func<int, double> coefficient) => new()
+    {
+        SlotMeaning = Fingerprint(),
+        Intercept = intercept,
+        Coefficients = [.. _encoder.UsedSlots().Select(s => new FittedCoefficient(s.Slot, s.Name, coefficient(s.Slot))).Where(c => c.Value != 0)],
+        Scales = [.. _encoder.Scales()],
+    };
 
     /// <summary>Puts what changed since the last call into <paramref name="changes"/>, which the caller keeps with all earlier ones.</summary>
     public void Save(StateBlocks changes)
@@ -412,6 +428,22 @@ public sealed class ScoringEngine
         var coefficients = _coefficients.AsSpan(0, vector.Count);
         _bank.PublishedCoefficients(vector.Vector, coefficients);
         score.ReasonCount = _reasons.Find(vector, coefficients, eventsBefore, reasons);
+    }
+
+    private void StartFrom(FittedModel fitted)
+    {
+        if (fitted.SlotMeaning != Fingerprint())
+            throw new InvalidStateException(
+                "the warm start was fitted with other features, slots or a hash seed, whose coefficients mean something else; "
+                + $"fit it again with this definition\nthe warm start's: {fitted.SlotMeaning}\nthe definition's: {Fingerprint()}");
+        var coefficients = new double[_encoder.SlotCount];
+        foreach (var (slot, feature, value) in fitted.Coefficients)
+        {
+            if ((uint)slot >= (uint)coefficients.Length) throw new InvalidStateException($"the warm start has no slot {slot} for '{feature}'");
+            coefficients[slot] = value;
+        }
+        _bank.StartFrom(fitted.Intercept, coefficients);
+        _encoder.StartFrom(fitted.Scales);
     }
 
     private SettingFigures FiguresOf(int setting)

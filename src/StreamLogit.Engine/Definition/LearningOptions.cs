@@ -1,4 +1,5 @@
 using System.Collections.Immutable;
+using StreamLogit.Engine.Learning;
 
 namespace StreamLogit.Engine.Definition;
 
@@ -16,6 +17,9 @@ public sealed record LearningOptions
     /// Where bad events are rare and labels late, 0.5 makes every event of the first days an alert. Default 0.5.
     /// </summary>
     public double StartProbability { get; init; } = 0.5;
+
+    /// <summary>Coefficients from a fit that every setting starts from and decays towards, or null for 0 and <see cref="StartProbability"/>.</summary>
+    public FittedModel? WarmStart { get; init; }
 
     /// <summary>The settings, at most 64, each with a name that no other has. Default: <see cref="DefaultBank.Settings"/>.</summary>
     public ImmutableArray<SettingOptions> Bank { get; init; } = DefaultBank.Settings;

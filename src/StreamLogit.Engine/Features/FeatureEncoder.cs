@@ -1,4 +1,6 @@
+using System.Text;
 using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Learning;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
 
@@ -67,6 +69,36 @@ internal sealed class FeatureEncoder
                 if (_ledger.IsUsed(dense)) yield return (dense, feature.NameOf(dense));
         for (int slot = 0; slot < FirstDenseSlot; slot++)
             if (_ledger.IsUsed(slot)) yield return (slot, _names.Of(slot));
+    }
+
+    /// <summary>What the features have learned about the scales of their values.</summary>
+    public IEnumerable<FittedScale> Scales()
+    {
+        for (int i = 0; i < _features.Length; i++)
+        {
+            using var bytes = new MemoryStream();
+            using (var writer = new BinaryWriter(bytes, Encoding.UTF8, leaveOpen: true)) _features[i].Save(writer);
+            if (bytes.Length > 0) yield return new FittedScale(i, [.. bytes.ToArray()]);
+        }
+    }
+
+    /// <summary>Takes up learned scales. Only before the first event.</summary>
+    /// <exception cref="InvalidStateException">One does not belong to its feature.</exception>
+    public void StartFrom(IEnumerable<FittedScale> scales)
+    {
+        foreach (var scale in scales)
+        {
+            if ((uint)scale.Feature >= (uint)_features.Length) throw new InvalidStateException($"the warm start has a scale of feature {scale.Feature}, which is not there");
+            using var reader = new BinaryReader(new MemoryStream([.. scale.Learned]));
+            try
+            {
+                _features[scale.Feature].Load(reader);
+            }
+            catch (EndOfStreamException)
+            {
+                throw new InvalidStateException($"the warm start's scale of feature {scale.Feature} is damaged");
+            }
+        }
     }
 
     public void Save(StateBlocks changes)

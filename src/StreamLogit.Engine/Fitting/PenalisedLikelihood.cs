@@ -31,24 +31,15 @@ public static class PenalisedLikelihood
         if (!(options.ToleranceNats > 0)) throw new ArgumentException("the tolerance is not above 0", nameof(options));
         if (parts.Any(p => p.Columns != columns)) throw new ArgumentException("the rows have other columns", nameof(parts));
 
-        long rows = parts.Sum(p => p.Count);
-        double zeros = 0, ones = 0;
-        foreach (var chunk in parts.SelectMany(p => p.Chunks))
-            for (int i = 0; i < chunk.Count; i++)
-            {
-                if (chunk.Labels[i] == 1) ones += chunk.Weight(i);
-                else zeros += chunk.Weight(i);
-            }
         var loss = new PenalisedLoss(parts, columns.Count, options.L2);
         var at = new double[columns.Count + 1];
-        if (zeros == 0 || ones == 0) return OneClass(loss, columns, at, rows, zeros, ones);
-
-        at[^1] = start?.Intercept ?? Elementary.Log(ones / zeros);
+        if (loss.Zeros == 0 || loss.Ones == 0) return OneClass(loss, columns, at);
+        at[^1] = start?.Intercept ?? Elementary.Log(loss.Ones / loss.Zeros);
         start?.CopyTo(at);
-        return Descend(loss, columns, at, rows, options.ToleranceNats);
+        return Descend(loss, columns, at, options.ToleranceNats);
     }
 
-    private static SparseFit Descend(PenalisedLoss loss, SparseColumns columns, double[] at, long rows, double tolerance)
+    private static SparseFit Descend(PenalisedLoss loss, SparseColumns columns, double[] at, double tolerance)
     {
         int length = at.Length, passes = 1, steps = 0;
         var newton = new ConjugateGradients(length);
@@ -72,41 +63,38 @@ public static class PenalisedLikelihood
             if (halvings == MostHalvings)
             {
                 loss.Evaluate(at);
-                return Result(FitOutcome.NotConverged, "The loss could not be lowered any further although it is not at its smallest: values may be too far apart in size.");
+                return Result(
+                    loss, columns, at, FitOutcome.NotConverged, steps, passes,
+                    "The loss could not be lowered any further although it is not at its smallest: values may be too far apart in size.");
             }
             (at, there) = (there, at);
-            if (isLast) return Result(FitOutcome.Converged, null);
+            if (isLast) return Result(loss, columns, at, FitOutcome.Converged, steps, passes);
         }
-        return Result(FitOutcome.NotConverged, $"The coefficients did not settle in {MostSteps} Newton steps.");
+        return Result(loss, columns, at, FitOutcome.NotConverged, steps, passes, $"The coefficients did not settle in {MostSteps} Newton steps.");
+    }
 
-        SparseFit Result(FitOutcome outcome, string? finding) => new(columns, at[..^1], at[^1])
+    // The intercept is free and would go without end; half a row more of each label keeps it finite (Krichevsky & Trofimov).
+    private static SparseFit OneClass(PenalisedLoss loss, SparseColumns columns, double[] at)
+    {
+        at[^1] = Elementary.Log((loss.Ones + 0.5) / (loss.Zeros + 0.5));
+        loss.Evaluate(at);
+        return Result(loss, columns, at, FitOutcome.OneClass, steps: 0, passes: 1, loss.Rows == 0
+            ? "There are no rows to fit."
+            : $"All {loss.Rows} rows have label {(loss.Ones == 0 ? 0 : 1)}: there is nothing to tell apart, and only the intercept is fitted.");
+    }
+
+    private static SparseFit Result(
+        PenalisedLoss loss, SparseColumns columns, double[] at, FitOutcome outcome, int steps, int passes, params string[] findings) =>
+        new(columns, at[..^1], at[^1])
         {
             Outcome = outcome,
-            Findings = finding is null ? [] : [finding],
-            Rows = rows,
+            Findings = [.. findings],
+            Rows = loss.Rows,
+            Weight = loss.Zeros + loss.Ones,
             LogLoss = loss.LogLoss,
+            BaseRateLogLoss = loss.BaseRateLogLoss,
             Objective = loss.Value,
             Steps = steps,
             Passes = passes,
         };
-    }
-
-    // The intercept is free and would go without end; half a row more of each label keeps it finite (Krichevsky & Trofimov).
-    private static SparseFit OneClass(PenalisedLoss loss, SparseColumns columns, double[] at, long rows, double zeros, double ones)
-    {
-        at[^1] = Elementary.Log((ones + 0.5) / (zeros + 0.5));
-        loss.Evaluate(at);
-        string finding = rows == 0
-            ? "There are no rows to fit."
-            : $"All {rows} rows have label {(ones == 0 ? 0 : 1)}: there is nothing to tell apart, and only the intercept is fitted.";
-        return new SparseFit(columns, at[..^1], at[^1])
-        {
-            Outcome = FitOutcome.OneClass,
-            Findings = [finding],
-            Rows = rows,
-            LogLoss = loss.LogLoss,
-            Objective = loss.Value,
-            Passes = 1,
-        };
-    }
 }

@@ -1,3 +1,5 @@
+using StreamLogit.Engine.Numerics;
+
 namespace StreamLogit.Engine.Fitting;
 
 /// <summary>
@@ -23,7 +25,27 @@ internal sealed class PenalisedLoss
         (_columns, _l2) = (columns, l2);
         Gradient = new double[columns + 1];
         CurvatureDiagonal = new double[columns + 1];
+        foreach (var chunk in _chunks)
+        {
+            Rows += chunk.Count;
+            for (int i = 0; i < chunk.Count; i++)
+            {
+                if (chunk.Labels[i] == 1) Ones += chunk.Weight(i);
+                else Zeros += chunk.Weight(i);
+            }
+        }
     }
+
+    public long Rows { get; }
+
+    /// <summary>The weight of the rows with label 1.</summary>
+    public double Ones { get; }
+
+    /// <summary>The weight of the rows with label 0.</summary>
+    public double Zeros { get; }
+
+    /// <summary>The log-loss at the share of ones, in nats.</summary>
+    public double BaseRateLogLoss => Entropy(Ones) + Entropy(Zeros);
 
     /// <summary>The loss without the penalty, in nats.</summary>
     public double LogLoss { get; private set; }
@@ -97,6 +119,8 @@ internal sealed class PenalisedLoss
             chunk.AddTransposed(_logOdds, product);
         }
     }
+
+    private double Entropy(double weight) => weight == 0 ? 0 : -weight * Elementary.Log(weight / (Ones + Zeros));
 
     private static int Padded(int count) => (count + 7) & ~7;
 }

@@ -100,6 +100,13 @@ internal sealed class SparseChunk
         }
     }
 
+    /// <summary>Adds the values of a row to those of their columns.</summary>
+    public void AddRowTo(Span<double> values, int row)
+    {
+        for (int one = row > 0 ? _onesEnd[row - 1] : 0; one < _onesEnd[row]; one++) values[_ones[one]]++;
+        for (int other = row > 0 ? _othersEnd[row - 1] : 0; other < _othersEnd[row]; other++) values[_others[other]] += _values[other];
+    }
+
     private static void Put<T>(ref T[] array, int place, T value)
     {
         if (place == array.Length) Array.Resize(ref array, Math.Max(16, 2 * array.Length));

@@ -38,6 +38,12 @@ public sealed class SparseFit
     /// <summary>Rows that were fitted.</summary>
     public required long Rows { get; init; }
 
+    /// <summary>The sum of their weights.</summary>
+    public required double Weight { get; init; }
+
+    /// <summary>What their log-losses would sum up to at the share of ones among them, in nats.</summary>
+    public required double BaseRateLogLoss { get; init; }
+
     /// <summary>The sum of their log-losses, in nats.</summary>
     public required double LogLoss { get; init; }
 
@@ -60,6 +66,8 @@ public sealed class SparseFit
         for (int i = 0; i < x.Slots.Length; i++) sum += Coefficient(x.Slots[i]) * x.Values[i];
         return sum;
     }
+
+    internal double CoefficientOfColumn(int column) => _coefficients[column];
 
     internal void CopyTo(double[] at) => _coefficients.CopyTo(at, 0);
 }

@@ -1,3 +1,4 @@
+using System.Collections.Immutable;
 using StreamLogit.Engine.Features;
 
 namespace StreamLogit.Engine.Fitting;
@@ -38,6 +39,25 @@ public sealed class SparseRows(SparseColumns columns)
         }
         _chunks[^1].Add(in x, Columns, label, weight);
         Count++;
+    }
+
+    /// <summary>The same rows with a value for each of some columns.</summary>
+    /// <param name="columns">The columns, in their new order.</param>
+    /// <param name="names">Their names.</param>
+    public DenseRows ToDense(ReadOnlySpan<int> columns, ImmutableArray<string> names)
+    {
+        var dense = new DenseRows(names);
+        var values = new double[Columns.Count];
+        var chosen = new double[columns.Length];
+        foreach (var chunk in _chunks)
+            for (int row = 0; row < chunk.Count; row++)
+            {
+                Array.Clear(values);
+                chunk.AddRowTo(values, row);
+                for (int k = 0; k < chosen.Length; k++) chosen[k] = values[columns[k]];
+                dense.Add(chosen, chunk.Labels[row], chunk.Weight(row));
+            }
+        return dense;
     }
 
     /// <summary>Gives back the memory that was reserved for further rows.</summary>

@@ -56,7 +56,7 @@ internal sealed class Bank
 
     /// <summary>
     /// Lets every setting start from coefficients that were fitted before. They stay where they are; what is learned is added to them, and
-    /// what pulls coefficients towards 0 pulls them back to these. Only on a bank that has learned nothing.
+    /// what pulls coefficients towards 0 pulls them back to these. The start probability no longer counts. Only on a bank that has learned nothing.
     /// </summary>
     /// <param name="intercept">The intercept.</param>
     /// <param name="coefficients">The coefficient of every slot.</param>
@@ -64,6 +64,8 @@ internal sealed class Bank
     {
         ArgumentOutOfRangeException.ThrowIfNotEqual(coefficients.Length, _blocks.SlotCount);
         _warmStart = new WarmStart(intercept, coefficients);
+        foreach (LearnerGroup group in _groups)
+            for (int lane = 0; lane < group.Settings.Length; lane++) group.Learner.StartIntercept(lane, 0);
         _isChanged = true;
     }
 

@@ -12,6 +12,9 @@ public sealed record StreamDefinition
     /// <summary>Where the records come from, or null where the definition does not say.</summary>
     public SourceOptions? Source { get; init; }
 
+    /// <summary>The file of the warm start, or null where the definition names none.</summary>
+    public string? WarmStartPath { get; init; }
+
     /// <summary>Where scores are written, or null where the definition does not say.</summary>
     public FileOutputOptions? Scores { get; init; }
 

@@ -21,7 +21,7 @@ internal sealed record SavedModel(string Stream, string? PublishedSetting, Model
         string folder = Directory.Exists(path) ? path : Path.GetDirectoryName(Path.GetFullPath(path)) ?? path;
         if (!File.Exists(path) && !Directory.Exists(path)) throw new WrongInputException($"There is no state at {path}.");
         var (info, checkpoint) = Peek(folder);
-        var definition = StreamDefinitionReader.Read(Encoding.UTF8.GetBytes(info.Definition), "the definition in the state", folder);
+        var definition = StreamDefinitionReader.Read(Encoding.UTF8.GetBytes(info.Definition), "the definition in the state", folder, use: DefinitionUse.Fit);
         var engine = new ScoringEngine(definition.Engine);
         engine.LoadModel(checkpoint.Blocks);
         return new SavedModel(info.Stream, definition.Engine.Learning.PublishedSetting, engine.Model(), info.Parts);

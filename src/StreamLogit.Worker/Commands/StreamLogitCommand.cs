@@ -13,6 +13,7 @@ internal static class StreamLogitCommand
             RunCommand.Create(),
             ReplayCommand.Create(),
             RecordCommand.Create(),
+            FitCommand.Create(),
             CheckCommand.Create(),
             ShowCommand.Create(),
             SynthCommand.Create(),

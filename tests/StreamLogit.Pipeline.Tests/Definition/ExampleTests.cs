@@ -1,5 +1,6 @@
 using System.Text.Json.Nodes;
 using System.Text.RegularExpressions;
+using StreamLogit.Pipeline.Definition;
 
 namespace StreamLogit.Pipeline.Tests.Definition;
 
@@ -33,7 +34,7 @@ public sealed partial class ExampleTests
     [MemberData(nameof(Examples))]
     public void Example_ReadsAndFitsTheSchema(string name, string definition)
     {
-        Assert.NotEmpty(Definitions.Read(definition).Engine.Features);
+        Assert.NotEmpty(Definitions.Read(definition, use: DefinitionUse.Fit).Engine.Features);
         Assert.True(SchemaFile.Accepts(definition), name);
     }
 

@@ -68,7 +68,7 @@ public sealed class SectionErrorTests
     [InlineData("\"learning\": { \"publish\": \"best\" }", "2:26: learning.publish: expected one of ")]
     [InlineData("\"learning\": { \"switchRate\": 1.5 }", "2:29: learning.switchRate: expected a number from 0 to 1, found the number 1.5")]
     [InlineData("\"learning\": { \"switchRate\": 1e-400 }", "2:29: learning.switchRate: expected a number from 0 to 1 that a double can hold, at least 5E-324, found the number 1e-400")]
-    [InlineData("\"learning\": { \"queue\": 1 }", "2:15: learning.queue: unknown key. Known here: \"slots\", \"hashSeed\", \"bank\", \"startProbability\", \"publish\", \"switchRate\"")]
+    [InlineData("\"learning\": { \"queue\": 1 }", "2:15: learning.queue: unknown key. Known here: \"slots\", \"hashSeed\", \"bank\", \"startProbability\", \"warmStart\", \"publish\", \"switchRate\"")]
     [InlineData("\"labels\": { \"wait\": \"0s\" }", "2:21: labels.wait: expected a duration from 1s to 3650d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"0s\"")]
     [InlineData("\"labels\": { \"wait\": \"30 days\" }", "2:21: labels.wait: expected a duration from 1s to 3650d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"30 days\"")]
     [InlineData("\"labels\": { \"wait\": 30 }", "2:21: labels.wait: expected a duration from 1s to 3650d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the number 30")]

@@ -27,6 +27,8 @@ internal static class DefinitionSection
         var files = new FilePaths(folder);
         var recordOptions = RecordSection.Read(record, labels);
         var featureOptions = FeaturesSection.Read(features, recordOptions);
+        var (learningOptions, warmStartPath) = LearningSection.Read(
+            learning, featureOptions?.Sum(feature => feature.DenseCoefficients), files, use);
         var sourceOptions = SourceSection.Read(source, files);
         var (output, decisionOptions) = ScoresSection.Read(scores, decision, files, use);
         return new StreamDefinition
@@ -36,11 +38,12 @@ internal static class DefinitionSection
                 Stream = stream ?? "",
                 Record = recordOptions,
                 Features = featureOptions ?? [],
-                Learning = LearningSection.Read(learning, featureOptions?.Sum(feature => feature.DenseCoefficients)),
+                Learning = learningOptions,
                 Labels = labels,
                 Decision = decisionOptions,
                 Health = HealthSection.Read(health),
             },
+            WarmStartPath = warmStartPath,
             Source = sourceOptions,
             Scores = output,
             Rejects = RejectsSection.Read(rejects, files),

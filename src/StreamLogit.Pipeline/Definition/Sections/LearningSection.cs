@@ -11,30 +11,55 @@ internal static class LearningSection
     private const int MostSlotsExponent = 26;
     private const string Blend = "blend";
 
-    public static LearningOptions Read(ValueReader? value, int? denseCoefficients)
+    /// <summary>The options, and the file of the warm start where there is one.</summary>
+    public static (LearningOptions Options, string? WarmStartPath) Read(ValueReader? value, int? denseCoefficients, FilePaths files, DefinitionUse use)
     {
         var defaults = new LearningOptions();
-        if (value?.Object() is not { } section) return defaults;
+        if (value?.Object() is not { } section) return (defaults, null);
         var slotsKey = section.Optional("slots");
         int? slots = slotsKey?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
         ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
         var bank = section.Optional("bank") is { } written ? BankSection.Read(written, denseCoefficients) : defaults.Bank;
         double? startProbability = section.Optional("startProbability")?.Number(NumberRange.BetweenZeroAndOne);
+        var warmStartKey = section.Optional("warmStart");
         string? publish = ReadPublish(section.Optional("publish"), bank);
         double? switchRate = section.Optional("switchRate")?.Number(NumberRange.ZeroToOne);
         section.End();
+        string? warmStartPath = files.Read(warmStartKey);
         var options = new LearningOptions
         {
             Slots = slots ?? defaults.Slots,
             HashSeed = hashSeed ?? defaults.HashSeed,
             Bank = bank ?? defaults.Bank,
             StartProbability = startProbability ?? defaults.StartProbability,
+            WarmStart = warmStartPath is null || use == DefinitionUse.Fit ? null : ReadWarmStart(warmStartKey!, warmStartPath),
             PublishedSetting = publish,
             SwitchRate = switchRate ?? defaults.SwitchRate,
         };
         if (!CoefficientTables.CanBeMade(options))
             slotsKey?.Error($"{options.Slots} slots are too many for {options.Bank.Length} settings: one array cannot hold what they keep. Take fewer of either");
-        return options;
+        return (options, warmStartPath);
+    }
+
+    private static FittedModel? ReadWarmStart(ValueReader key, string path)
+    {
+        try
+        {
+            return WarmStartFile.Read(path);
+        }
+        catch (Exception exception) when (exception is FileNotFoundException or DirectoryNotFoundException)
+        {
+            key.Error("there is no such file: streamlogit fit makes it");
+        }
+        catch (Exception exception) when (exception is IOException or UnauthorizedAccessException)
+        {
+            key.Error($"the file cannot be read: {exception.Message}");
+        }
+        catch (InvalidDataException exception)
+        {
+            key.Error($"the file cannot be used: {exception.Message}");
+        }
+        return null;
     }
 
     private static string? ReadPublish(ValueReader? value, ImmutableArray<SettingOptions>? bank)
