@@ -23,6 +23,9 @@ public readonly ref struct LabelledEvent
     /// <summary>Its importance, 0 or more.</summary>
     public required double Weight { get; init; }
 
+    /// <summary>The weight with which the event was learned with the other label, which this one corrects, to seven digits; 0 for a first label.</summary>
+    public required double TakenBackWeight { get; init; }
+
     /// <summary>The stream's clock when it was scored, in microseconds since 1970.</summary>
     public required long ScoredAtMicroseconds { get; init; }
 

@@ -71,6 +71,9 @@ public sealed class ScoringEngine
     /// <summary>Is shown every event whose label becomes known, before the engine learns from it; for fits, baselines and comparisons. Changes nothing.</summary>
     public LabelledEventTaker? Labelled { get; set; }
 
+    /// <summary>Is shown every event whose label is corrected, with the right label, before the engine learns that. Changes nothing.</summary>
+    public LabelledEventTaker? Corrected { get; set; }
+
     /// <summary>The parts of the state that the engine reads from its archive, where it has one, and not from the blocks that it loads.</summary>
     public static IReadOnlyList<string> ArchivedParts { get; } = [AwaitingStore.SegmentsPart];
 
@@ -369,6 +372,7 @@ public sealed class ScoringEngine
             LogOdds = publishedLogOdds,
             Label = label,
             Weight = weight,
+            TakenBackWeight = 0,
             ScoredAtMicroseconds = scoredAtMicroseconds,
             KnownAtMicroseconds = _clock.Microseconds,
         });
@@ -382,6 +386,18 @@ public sealed class ScoringEngine
     {
         var scored = _awaiting.At(place);
         weight = scored.WeightOf(weight);
+        Corrected?.Invoke(new LabelledEvent
+        {
+            IdHash = scored.Header.IdHash,
+            Vector = scored.Vector,
+            SettingLogOdds = scored.LogOdds,
+            LogOdds = scored.Header.LogOdds,
+            Label = label,
+            Weight = weight,
+            TakenBackWeight = count.Weight,
+            ScoredAtMicroseconds = scored.Header.ScoredAtMicroseconds,
+            KnownAtMicroseconds = _clock.Microseconds,
+        });
         _bank.TakeBack(scored.LogOdds, 1 - label, count.Weight);
         _bank.Learn(scored.Vector, scored.LogOdds, isFresh: false, label, weight, _clock.Microseconds);
         _version++;

@@ -25,6 +25,24 @@ public sealed class LabelledEventTests
     }
 
     [Fact]
+    public void Corrected_ALabelThatCorrectsAnother_TellsWhatIsTakenBack()
+    {
+        var seen = new List<(int Label, double Weight, double TakenBack)>();
+        LabelledEventTaker see = (in LabelledEvent e) => seen.Add((e.Label, e.Weight, e.TakenBackWeight));
+        var engine = new ScoringEngine(Definitions.Of(new NumberFeature("x", NumberScale.None)))
+        {
+            Labelled = see,
+            Corrected = see,
+        };
+        new EngineRun(engine).Take(
+            """{"id":"a","time":"2026-03-01T00:00:00Z","x":3,"weight":2}""",
+            """{"id":"a","label":1,"time":"2026-03-01T00:00:07Z"}""",
+            """{"id":"a","label":1,"time":"2026-03-01T00:00:08Z"}""",
+            """{"id":"a","label":0,"time":"2026-03-01T00:00:09Z","weight":5}""");
+        Assert.Equal([(1, 2, 0), (0, 5, 2)], seen);
+    }
+
+    [Fact]
     public void Labelled_SomebodyLooksOn_ChangesNoScore()
     {
         string[] records = [.. Enumerable.Range(0, 200).Select(i => FormattableString.Invariant(

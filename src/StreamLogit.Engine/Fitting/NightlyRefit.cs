@@ -70,6 +70,16 @@ public sealed class NightlyRefit
         rows.Add(in x, label, weight);
     }
 
+    /// <summary>Takes back a label that was learned and turned out wrong, from the fits of later midnights.</summary>
+    /// <param name="x">The event.</param>
+    /// <param name="label">The wrong label.</param>
+    /// <param name="weight">The weight with which it was learned.</param>
+    /// <param name="day">The day of the event.</param>
+    public void TakeBack(in EncodedVector x, int label, double weight, long day)
+    {
+        if (_days.TryGetValue(day, out var rows)) rows.TakeBack(in x, label, weight);
+    }
+
     private void Refit(long day)
     {
         foreach (long old in _days.Keys.TakeWhile(d => d < day - _options.TrailingDays).ToList()) _days.Remove(old);

@@ -27,9 +27,9 @@ internal sealed class PenalisedLoss
         CurvatureDiagonal = new double[columns + 1];
         foreach (var chunk in _chunks)
         {
-            Rows += chunk.Count;
             for (int i = 0; i < chunk.Count; i++)
             {
+                if (chunk.Weight(i) > 0) Rows++;
                 if (chunk.Labels[i] == 1) Ones += chunk.Weight(i);
                 else Zeros += chunk.Weight(i);
             }

@@ -1,3 +1,5 @@
+using System.IO.Hashing;
+using System.Runtime.InteropServices;
 using StreamLogit.Engine.Features;
 
 namespace StreamLogit.Engine.Fitting;
@@ -22,6 +24,9 @@ internal sealed class SparseChunk
 
     public bool IsFull => Count == MostRows;
 
+    public long Bytes => (_onesEnd.Length + _othersEnd.Length + _ones.Length + _others.Length) * (long)sizeof(int)
+        + (_values.Length + (_weights?.Length ?? 0)) * (long)sizeof(double) + _labels.Length;
+
     public ReadOnlySpan<byte> Labels => _labels.AsSpan(0, Count);
 
     public void Add(in EncodedVector x, SparseColumns columns, int label, double weight)
@@ -41,13 +46,15 @@ internal sealed class SparseChunk
         Put(ref _onesEnd, Count, onesEnd);
         Put(ref _othersEnd, Count, othersEnd);
         Put(ref _labels, Count, (byte)label);
-        if (_weights is null && weight != 1)
-        {
-            _weights = new double[_labels.Length];
-            Array.Fill(_weights, 1, 0, Count);
-        }
+        if (_weights is null && weight != 1) MakeWeights();
         if (_weights is not null) Put(ref _weights, Count, weight);
         Count++;
+    }
+
+    public void SetWeight(int row, double weight)
+    {
+        if (_weights is null) MakeWeights();
+        _weights![row] = weight;
     }
 
     public void Trim()
@@ -103,8 +110,35 @@ internal sealed class SparseChunk
     /// <summary>Adds the values of a row to those of their columns.</summary>
     public void AddRowTo(Span<double> values, int row)
     {
-        for (int one = row > 0 ? _onesEnd[row - 1] : 0; one < _onesEnd[row]; one++) values[_ones[one]]++;
-        for (int other = row > 0 ? _othersEnd[row - 1] : 0; other < _othersEnd[row]; other++) values[_others[other]] += _values[other];
+        foreach (int column in Ones(row)) values[column]++;
+        var others = Others(row);
+        var otherValues = Values(row);
+        for (int i = 0; i < others.Length; i++) values[others[i]] += otherValues[i];
+    }
+
+    /// <summary>A hash of a row's entries and its label.</summary>
+    public ulong HashOf(int row)
+    {
+        ulong hash = XxHash3.HashToUInt64(MemoryMarshal.AsBytes(Ones(row)), _labels[row]);
+        hash = XxHash3.HashToUInt64(MemoryMarshal.AsBytes(Others(row)), (long)hash);
+        return XxHash3.HashToUInt64(MemoryMarshal.AsBytes(Values(row)), (long)hash);
+    }
+
+    /// <summary>Whether a row is equal to one of another chunk: entries, label and weight, which whoever takes a row back knows to seven digits.</summary>
+    public bool IsEqual(int row, SparseChunk other, int otherRow) =>
+        _labels[row] == other._labels[otherRow] && (float)Weight(row) == (float)other.Weight(otherRow) && Ones(row).SequenceEqual(other.Ones(otherRow))
+        && Others(row).SequenceEqual(other.Others(otherRow)) && Values(row).SequenceEqual(other.Values(otherRow));
+
+    private ReadOnlySpan<int> Ones(int row) => _ones.AsSpan((row > 0 ? _onesEnd[row - 1] : 0).._onesEnd[row]);
+
+    private ReadOnlySpan<int> Others(int row) => _others.AsSpan((row > 0 ? _othersEnd[row - 1] : 0).._othersEnd[row]);
+
+    private ReadOnlySpan<double> Values(int row) => _values.AsSpan((row > 0 ? _othersEnd[row - 1] : 0).._othersEnd[row]);
+
+    private void MakeWeights()
+    {
+        _weights = new double[_labels.Length];
+        Array.Fill(_weights, 1, 0, Count);
     }
 
     private static void Put<T>(ref T[] array, int place, T value)

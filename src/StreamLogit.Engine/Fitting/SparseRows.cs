@@ -10,12 +10,16 @@ namespace StreamLogit.Engine.Fitting;
 public sealed class SparseRows(SparseColumns columns)
 {
     private readonly List<SparseChunk> _chunks = [];
+    private SparseChunk? _takenBack;
 
     /// <summary>The columns, shared with the rows that are fitted together with these.</summary>
     public SparseColumns Columns { get; } = columns;
 
     /// <summary>Rows, without those of weight 0.</summary>
     public long Count { get; private set; }
+
+    /// <summary>Bytes that they take.</summary>
+    public long Bytes => _chunks.Sum(c => c.Bytes);
 
     internal IReadOnlyList<SparseChunk> Chunks => _chunks;
 
@@ -41,6 +45,18 @@ public sealed class SparseRows(SparseColumns columns)
         Count++;
     }
 
+    /// <summary>Takes back a row that was added, because its label was wrong. It is gone after <see cref="Trim"/>.</summary>
+    /// <param name="x">Its entries, as they were added.</param>
+    /// <param name="label">Its label.</param>
+    /// <param name="weight">Its weight.</param>
+    public void TakeBack(in EncodedVector x, int label, double weight)
+    {
+        if (weight == 0) return;
+        _takenBack ??= new SparseChunk();
+        _takenBack.Add(in x, Columns, label, weight);
+        if (_takenBack.IsFull) Settle();
+    }
+
     /// <summary>The same rows with a value for each of some columns.</summary>
     /// <param name="columns">The columns, in their new order.</param>
     /// <param name="names">Their names.</param>
@@ -60,9 +76,36 @@ public sealed class SparseRows(SparseColumns columns)
         return dense;
     }
 
-    /// <summary>Gives back the memory that was reserved for further rows.</summary>
+    /// <summary>Carries out what was taken back, and gives back the memory that was reserved for further rows.</summary>
     public void Trim()
     {
+        Settle();
         if (_chunks.Count > 0) _chunks[^1].Trim();
+    }
+
+    // Rows that are equal in everything stand for each other, so any of them may go.
+    private void Settle()
+    {
+        if (_takenBack is null) return;
+        var pending = new Dictionary<ulong, List<int>>();
+        for (int row = 0; row < _takenBack.Count; row++)
+        {
+            ulong hash = _takenBack.HashOf(row);
+            if (pending.TryGetValue(hash, out var same)) same.Add(row);
+            else pending.Add(hash, [row]);
+        }
+        foreach (var chunk in _chunks)
+            for (int row = 0; row < chunk.Count && pending.Count > 0; row++)
+            {
+                ulong hash = chunk.HashOf(row);
+                if (!pending.TryGetValue(hash, out var same)) continue;
+                int match = same.FindIndex(r => chunk.IsEqual(row, _takenBack, r));
+                if (match < 0) continue;
+                same.RemoveAt(match);
+                if (same.Count == 0) pending.Remove(hash);
+                chunk.SetWeight(row, 0);
+                Count--;
+            }
+        _takenBack = null;
     }
 }

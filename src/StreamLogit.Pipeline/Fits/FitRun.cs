@@ -3,6 +3,7 @@ using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Fitting;
 using StreamLogit.Pipeline.Files;
 using StreamLogit.Pipeline.Options;
+using StreamLogit.Pipeline.Replay;
 
 namespace StreamLogit.Pipeline.Fits;
 
@@ -14,6 +15,7 @@ public sealed class FitRun : IDisposable
 {
     private readonly ScoringEngine _engine;
     private readonly RecordingSequence _source;
+    private readonly TemporaryArchive _archive = new();
     private readonly ScoringLoop _loop;
     private readonly SparseRows _rows = new(new SparseColumns());
 
@@ -27,13 +29,14 @@ public sealed class FitRun : IDisposable
     {
         // The engine needs some bank; the cheapest one will do.
         var learning = definition.Learning with { Bank = [new SgdSetting(1e-6, 0, 0)], PublishedSetting = null, WarmStart = null };
-        _engine = new ScoringEngine(definition with { Learning = learning })
+        _engine = new ScoringEngine(definition with { Learning = learning }, _archive)
         {
             GiveReasons = false,
-            Labelled = (in LabelledEvent e) => _rows.Add(e.Vector, e.Label, e.Weight),
+            Labelled = Take,
+            Corrected = Take,
         };
         _source = new RecordingSequence(recordings, definition.Record.MaximumBytes, time);
-        _loop = new ScoringLoop(_engine, _source, [], state: null, options, time);
+        _loop = new ScoringLoop(_engine, _source, [], state: null, options with { EndsWithSource = true }, time);
     }
 
     /// <summary>How far the reading has come. Any thread may ask.</summary>
@@ -54,5 +57,15 @@ public sealed class FitRun : IDisposable
     }
 
     /// <inheritdoc/>
-    public void Dispose() => _source.Dispose();
+    public void Dispose()
+    {
+        _source.Dispose();
+        _archive.Dispose();
+    }
+
+    private void Take(in LabelledEvent labelled)
+    {
+        _rows.TakeBack(labelled.Vector, 1 - labelled.Label, labelled.TakenBackWeight);
+        _rows.Add(labelled.Vector, labelled.Label, labelled.Weight);
+    }
 }

@@ -55,6 +55,29 @@ public sealed class NightlyRefitTests
     }
 
     [Fact]
+    public void TakeBack_AWrongLabel_IsInNoLaterFit()
+    {
+        var (corrected, right) = (new NightlyRefit(new NightlyRefitOptions()), new NightlyRefit(new NightlyRefitOptions()));
+        for (int i = 0; i < 300; i++)
+        {
+            var x = new EncodedVector([i % 3], [1]);
+            corrected.Learn(in x, 0, 1, 10);
+            right.Learn(in x, i % 4 == 0 ? 1 : 0, 1, 10);
+        }
+        for (int i = 0; i < 300; i += 4)
+        {
+            var x = new EncodedVector([i % 3], [1]);
+            corrected.TakeBack(in x, 0, 1, 10);
+            corrected.Learn(in x, 1, 1, 10);
+        }
+        corrected.GoTo(11);
+        right.GoTo(11);
+        Assert.Equal(300, corrected.Fit!.Rows);
+        for (int slot = 0; slot < 3; slot++)
+            Assert.Equal(right.LogOdds(new EncodedVector([slot], [1]), 11), corrected.LogOdds(new EncodedVector([slot], [1]), 11), 1e-3);
+    }
+
+    [Fact]
     public void GoTo_LabelsOfOneKindOnly_ScoresTheirRate()
     {
         var refit = new NightlyRefit(new NightlyRefitOptions());

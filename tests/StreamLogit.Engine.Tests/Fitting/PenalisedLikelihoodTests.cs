@@ -149,6 +149,76 @@ public sealed class PenalisedLikelihoodTests
     }
 
     [Fact]
+    public void Fit_RowsTakenBack_IsThatOfTheOthers()
+    {
+        var columns = new SparseColumns();
+        var (all, right) = (new SparseRows(columns), new SparseRows(columns));
+        var random = new Random(10);
+        for (int i = 0; i < 9000; i++)
+        {
+            int[] slots = [random.Next(40), 50 + random.Next(10), 99];
+            double[] values = [1, 1, random.Next(4)];
+            int label = random.Next(3) == 0 ? 1 : 0;
+            double weight = random.Next(3) == 0 ? 1.0 / 3 : 1;
+            bool isWrong = i % 3 == 0;
+            all.Add(new EncodedVector(slots, values), isWrong ? 1 - label : label, weight);
+            right.Add(new EncodedVector(slots, values), label, weight);
+            if (!isWrong) continue;
+            all.TakeBack(new EncodedVector(slots, values), 1 - label, (float)weight);
+            all.Add(new EncodedVector(slots, values), label, weight);
+        }
+        all.Trim();
+        Assert.Equal(right.Count, all.Count);
+        var options = new PenaltyOptions { ToleranceNats = 1e-13 };
+        var (a, b) = (PenalisedLikelihood.Fit([all], columns, options), PenalisedLikelihood.Fit([right], columns, options));
+        Assert.Equal(b.Rows, a.Rows);
+        Assert.Equal(b.Weight, a.Weight, 1e-9);
+        Assert.Equal(b.Intercept, a.Intercept, 1e-8);
+        foreach (var (slot, coefficient) in b.Coefficients) Assert.Equal(coefficient, a.Coefficient(slot), 1e-8);
+        int[] order = [.. Enumerable.Range(0, columns.Count)];
+        Assert.Equal(right.Count, all.ToDense(order, [.. order.Select(c => $"{c}")]).Count);
+    }
+
+    [Fact]
+    public void StandardErrors_NextToNoPenalty_AreThoseOfTheDenseFit()
+    {
+        var dense = MaximumLikelihood.Fit(ReferenceFits.Rows("seattle_first1095"));
+        var table = new SparseTable();
+        foreach (double[] row in TestData.Columns("seattle_xy.csv", "y", "precip", "tmax", "tmin", "wind", "rain_today").Take(1095))
+            table.Add([4, 3, 2, 1, 0], row[1..], (int)row[0]);
+        var columns = new SparseColumns();
+        var rows = table.Rows(columns);
+        var options = new PenaltyOptions { L2 = 1e-10, ToleranceNats = 1e-13 };
+        double[] errors = PenalisedInformation.StandardErrors([rows], PenalisedLikelihood.Fit([rows], columns, options), options);
+        for (int j = 0; j < 5; j++)
+        {
+            Assert.True(columns.TryFind(4 - j, out int column));
+            Assert.Equal(1, errors[column] / dense.Coefficients[j + 1].StandardError, 1e-6);
+        }
+        Assert.Equal(1, errors[5] / dense["intercept"].StandardError, 1e-6);
+
+        // A prior that leaves the data nothing to say: its own standard deviation.
+        options = new PenaltyOptions { L2 = 1e8 };
+        errors = PenalisedInformation.StandardErrors([rows], PenalisedLikelihood.Fit([rows], columns, options), options);
+        Assert.Equal(1e-4, errors[0], 1e-6);
+    }
+
+    [Fact]
+    public void ToDense_SparseRows_FitsTheSame()
+    {
+        var dense = MaximumLikelihood.Fit(ReferenceFits.Rows("seattle_first1095"));
+        var table = new SparseTable();
+        foreach (double[] row in TestData.Columns("seattle_xy.csv", "y", "precip", "tmax", "tmin", "wind", "rain_today").Take(1095))
+            table.Add([4, 3, 2, 1, 0], [row[5], row[4], row[3], row[2], row[1]], (int)row[0]);
+        var columns = new SparseColumns();
+        int[] order = new int[5];
+        var rows = table.Rows(columns);
+        for (int slot = 0; slot < 5; slot++) Assert.True(columns.TryFind(slot, out order[slot]));
+        var fit = MaximumLikelihood.Fit(rows.ToDense(order, ["precip", "tmax", "tmin", "wind", "rain_today"]));
+        Assert.Equal(dense.Coefficients, fit.Coefficients);
+    }
+
+    [Fact]
     public void Fit_OptionsOutOfRange_Throws()
     {
         var columns = new SparseColumns();

@@ -118,7 +118,7 @@ public sealed class FuzzTests
     {
         try
         {
-            var definition = StreamDefinitionReader.Read(utf8, "quay.json", Definitions.Folder, set, environment);
+            var definition = StreamDefinitionReader.Read(utf8, "quay.json", Definitions.Folder, set, environment, DefinitionUse.Fit);
             Assert.NotEmpty(definition.Engine.Features);
             Assert.InRange(definition.Engine.Learning.Bank.Length, 1, 64);
             return true;

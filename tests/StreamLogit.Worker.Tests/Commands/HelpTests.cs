@@ -7,6 +7,7 @@ public sealed class HelpTests
     [Theory]
     [InlineData("run")]
     [InlineData("replay")]
+    [InlineData("fit")]
     [InlineData("check")]
     [InlineData("show")]
     [InlineData("synth")]
@@ -26,7 +27,7 @@ public sealed class HelpTests
         var result = StreamLogitProcess.Run("--help");
 
         Assert.Equal(0, result.ExitCode);
-        Assert.All(["run", "replay", "check", "show", "synth"], name => Assert.Contains($"\n  {name} ", result.Output, StringComparison.Ordinal));
+        Assert.All(["run", "replay", "fit", "check", "show", "synth"], name => Assert.Contains($"\n  {name} ", result.Output, StringComparison.Ordinal));
         Assert.Contains("\n  streamlogit ", result.Output, StringComparison.Ordinal);
     }
 

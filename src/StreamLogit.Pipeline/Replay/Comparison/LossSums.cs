@@ -21,11 +21,11 @@ internal sealed class LossSums(int models, DecisionCost cost)
     /// <summary>Figures of the variants that <see cref="Differences"/> gives: log-loss, Brier score and cost of each.</summary>
     public int DifferenceCount => 3 * (models - 1);
 
-    /// <summary>Computes what an event adds.</summary>
+    /// <summary>Computes what an event adds, or takes away where the weight is below 0.</summary>
     public void Compute(ReadOnlySpan<double> logOdds, int label, double weight)
     {
         VariantLosses.Compute(logOdds, _probabilities, _lossesOfZero, _lossesOfOne);
-        (_terms[0], _terms[1], _terms[2]) = (1, weight, weight * label);
+        (_terms[0], _terms[1], _terms[2]) = (Math.Sign(weight), weight, weight * label);
         var losses = label == 1 ? _lossesOfOne : _lossesOfZero;
         for (int m = 0, place = Shared; m < models; m++, place += PerModel)
         {

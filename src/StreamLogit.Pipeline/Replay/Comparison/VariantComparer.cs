@@ -55,24 +55,36 @@ public sealed class VariantComparer
     public void Add(
         ReadOnlySpan<double> logOdds, int label, double weight, long scoredAtMicroseconds, long knownAtMicroseconds, ReadOnlySpan<int> slices)
     {
-        if (logOdds.Length != _names.Length)
-            throw new ArgumentException($"there are {logOdds.Length} log-odds for {_names.Length} models", nameof(logOdds));
-        foreach (double value in logOdds)
-            if (!double.IsFinite(value)) throw new ArgumentException("a log-odds is not finite", nameof(logOdds));
-        if (label is not (0 or 1)) throw new ArgumentException("a label is not 0 or 1", nameof(label));
         if (!(weight >= 0 && double.IsFinite(weight))) throw new ArgumentException("a weight is negative or not finite", nameof(weight));
         if (weight == 0) return;
-
-        _losses.Compute(logOdds, label, weight);
-        _losses.AddTo(_cells.At(scoredAtMicroseconds));
-        foreach (int slice in slices) _losses.AddTo(_slices[slice].Cells.At(scoredAtMicroseconds));
-        _ranks?.Add(logOdds, label, weight, scoredAtMicroseconds);
+        AddToSums(logOdds, label, weight, scoredAtMicroseconds, slices);
         for (int v = 0; v < _names.Length - 1; v++)
         {
             var (gain, otherGain) = _losses.Gain(v, label);
             _evidence.Add(v, weight * gain, weight * otherGain, knownAtMicroseconds);
         }
     }
+
+    /// <summary>
+    /// Takes back a label that was taken in and turned out wrong, apart from its part in the evidence: a bet that is lost or won stays so. The right label
+    /// is to be added then with <see cref="AddCorrection"/>.
+    /// </summary>
+    /// <param name="logOdds">The log-odds, as they were taken in.</param>
+    /// <param name="label">The wrong label.</param>
+    /// <param name="weight">The weight with which it was taken in.</param>
+    /// <param name="scoredAtMicroseconds">When the event was scored.</param>
+    /// <param name="slices">The slices to which the event belongs.</param>
+    public void TakeBack(ReadOnlySpan<double> logOdds, int label, double weight, long scoredAtMicroseconds, ReadOnlySpan<int> slices) =>
+        AddToSums(logOdds, label, -weight, scoredAtMicroseconds, slices);
+
+    /// <summary>Takes in the right label in the place of a wrong one. It adds nothing to the evidence.</summary>
+    /// <param name="logOdds">The log-odds.</param>
+    /// <param name="label">The right label.</param>
+    /// <param name="weight">Its weight.</param>
+    /// <param name="scoredAtMicroseconds">When the event was scored.</param>
+    /// <param name="slices">The slices to which the event belongs.</param>
+    public void AddCorrection(ReadOnlySpan<double> logOdds, int label, double weight, long scoredAtMicroseconds, ReadOnlySpan<int> slices) =>
+        AddToSums(logOdds, label, weight, scoredAtMicroseconds, slices);
 
     /// <summary>The comparison so far.</summary>
     public ComparisonResult Result()
@@ -105,6 +117,21 @@ public sealed class VariantComparer
         Difference AucOf(int variant) => _ranks is null
             ? new Difference(double.NaN, double.NaN, double.NaN)
             : new Difference(auc[variant + 1] - auc[0], aucIntervals[variant].Low, aucIntervals[variant].High);
+    }
+
+    private void AddToSums(ReadOnlySpan<double> logOdds, int label, double weight, long scoredAtMicroseconds, ReadOnlySpan<int> slices)
+    {
+        if (logOdds.Length != _names.Length)
+            throw new ArgumentException($"there are {logOdds.Length} log-odds for {_names.Length} models", nameof(logOdds));
+        foreach (double value in logOdds)
+            if (!double.IsFinite(value)) throw new ArgumentException("a log-odds is not finite", nameof(logOdds));
+        if (label is not (0 or 1)) throw new ArgumentException("a label is not 0 or 1", nameof(label));
+        if (weight == 0) return;
+
+        _losses.Compute(logOdds, label, weight);
+        _losses.AddTo(_cells.At(scoredAtMicroseconds));
+        foreach (int slice in slices) _losses.AddTo(_slices[slice].Cells.At(scoredAtMicroseconds));
+        _ranks?.Add(logOdds, label, weight, scoredAtMicroseconds);
     }
 
     private ComparisonPeriod PeriodOf(long start, double[] sums)

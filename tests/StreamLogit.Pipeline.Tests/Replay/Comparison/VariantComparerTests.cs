@@ -107,6 +107,30 @@ public sealed class VariantComparerTests
         Assert.All(result.Slices, s => Assert.InRange(s.Variants[0].LogLoss.Value, s.Variants[0].LogLoss.Low, s.Variants[0].LogLoss.High));
     }
 
+    [Fact]
+    public void TakeBack_WrongLabels_LeavesWhatTheRightOnesGive()
+    {
+        var (corrected, right) = (new VariantComparer(["a", "b"], new ComparisonOptions()), new VariantComparer(["a", "b"], new ComparisonOptions()));
+        int slice = corrected.AddSlice("all"), count = 0;
+        Assert.Equal(slice, right.AddSlice("all"));
+        new SimulatedPair(8, 0.5, 0.3).Run(15, 4, (a, b, _, label, time) =>
+        {
+            right.Add([a, b], label, 2, time, time, [slice]);
+            bool isWrong = count++ % 5 == 0;
+            corrected.Add([a, b], isWrong ? 1 - label : label, 2, time, time, [slice]);
+            if (!isWrong) return;
+            corrected.TakeBack([a, b], 1 - label, 2, time, [slice]);
+            corrected.AddCorrection([a, b], label, 2, time, [slice]);
+        });
+        var (x, y) = (corrected.Result(), right.Result());
+        Assert.Equal(y.Count, x.Count);
+        Assert.Equal(y.ObservedRate, x.ObservedRate, 1e-12);
+        Assert.Equal(y.Variants[0].Losses.LogLoss.Value, x.Variants[0].Losses.LogLoss.Value, 1e-12);
+        Assert.Equal(y.Variants[0].Losses.Brier.High, x.Variants[0].Losses.Brier.High, 1e-12);
+        Assert.Equal(y.Variants[0].Auc.Value, x.Variants[0].Auc.Value, 1e-12);
+        Assert.Equal(y.Slices[0].Variants[0].Cost.Value, x.Slices[0].Variants[0].Cost.Value, 1e-12);
+    }
+
     [Theory]
     [InlineData(30, Day, 30)]
     [InlineData(10, Day, 10)]
