@@ -23,7 +23,9 @@ internal static class DefinitionInWords
         yield return "";
         yield return "Learning";
         yield return $"  published: {engine.Learning.PublishedSetting ?? FormattableString.Invariant($"the blend of all settings, switch rate {engine.Learning.SwitchRate}")}";
-        yield return FormattableString.Invariant($"  probability before anything is learned: {engine.Learning.StartProbability}");
+        yield return definition.WarmStartPath is { } warmStart
+            ? $"  without a state, every setting starts from the coefficients of {warmStart}"
+            : FormattableString.Invariant($"  probability before anything is learned: {engine.Learning.StartProbability}");
         foreach (var setting in engine.Learning.Bank) yield return $"  setting: {setting.Name}";
         yield return "";
         yield return "Labels";
