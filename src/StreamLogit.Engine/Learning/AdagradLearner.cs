@@ -20,6 +20,7 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
     private readonly double[] _step;
     private readonly double[] _sumFactor;
     private readonly double[] _interceptSum;
+    private readonly double[] _gradient;
     private readonly LazyScale<T> _sumScale;
     private readonly bool _sumsForget;
 
@@ -29,6 +30,7 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
         _step = new double[RowLength];
         _sumFactor = new double[RowLength];
         _interceptSum = new double[RowLength];
+        _gradient = new double[RowLength];
         _sumScale = new LazyScale<T>(Table, blocks, RowLength, row: 1);
         Array.Fill(_sumFactor, 1);
         for (int lane = 0; lane < settings.Length; lane++)
@@ -46,33 +48,44 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
     public override void Learn(in EncodedVector x, in Lesson lesson)
     {
         if (lesson.MissProbability.IsEmpty) Score(in x, lesson.Offset);
-        ref double table = ref Table.First;
-        ref int slots = ref MemoryMarshal.GetReference(x.Slots);
-        ref double values = ref MemoryMarshal.GetReference(x.Values);
-        int count = x.Slots.Length;
-        nuint length = (nuint)RowLength;
-        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
             // The negative gradient of the intercept; that of a coefficient is x times as much.
             T gradient = T.Of(lesson.SignedWeight) * MissProbability(in lesson, lane);
+            gradient.Store(ref _gradient[0], lane);
             T step = T.Load(in _step[0], lane);
             T sumFactor = T.Load(in _sumFactor[0], lane);
-
             T sum = T.Load(in _interceptSum[0], lane) * sumFactor + gradient * gradient;
             sum.Store(ref _interceptSum[0], lane);
             (T.Load(in Intercepts[0], lane) + step * gradient / (T.Of(SmallestRoot) + T.Sqrt(sum))).Store(ref Intercepts[0], lane);
+            if (Forgetting.IsNeeded) Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds));
+            if (_sumsForget) _sumScale.Multiply(lane, sumFactor);
+        }
+        LearnCoefficients(in x);
+    }
 
-            T scale = Forgetting.IsNeeded ? Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds)) : T.Of(1);
-            T sumScale = _sumsForget ? _sumScale.Multiply(lane, sumFactor) : T.Of(1);
-            T scaledStep = step / scale;
-            for (int i = 0; i < count; i++)
+    // On its own because the compiler keeps what lives across a call in memory, and nothing is called here.
+    private void LearnCoefficients(in EncodedVector x)
+    {
+        ref double table = ref Table.First;
+        ref int slots = ref MemoryMarshal.GetReference(x.Slots);
+        ref double values = ref MemoryMarshal.GetReference(x.Values);
+        nuint count = (nuint)x.Slots.Length;
+        nuint length = (nuint)RowLength;
+        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        {
+            T gradient = T.Load(in _gradient[0], lane);
+            T sumScale = _sumScale.At(lane);
+            T step = T.Load(in _step[0], lane) / Scale.At(lane);
+            T inverseSumScale = T.Of(1) / sumScale;
+            for (nuint i = 0; i < count; i++)
             {
                 nuint place = (nuint)(uint)Unsafe.Add(ref slots, i) * (SlotRows * length) + lane;
                 T g = gradient * T.Of(Unsafe.Add(ref values, i));
-                T row = T.Load(in table, place + length) + g * g / sumScale;
-                row.Store(ref table, place + length);
-                T root = T.Of(SmallestRoot) + T.Sqrt(sumScale * row);
-                (T.Load(in table, place) + scaledStep * g / root).Store(ref table, place);
+                T sum = T.Load(in table, place + length) + g * g * inverseSumScale;
+                sum.Store(ref table, place + length);
+                T root = T.Of(SmallestRoot) + T.Sqrt(sumScale * sum);
+                (T.Load(in table, place) + step * g / root).Store(ref table, place);
             }
         }
     }

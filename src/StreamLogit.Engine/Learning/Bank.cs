@@ -82,10 +82,9 @@ internal sealed class Bank
         foreach (LearnerGroup group in _groups)
         {
             group.Learner.Score(in x, offset);
-            group.Scatter(group.Learner.LogOdds, logOdds);
+            group.Scatter(group.Learner.LogOdds, logOdds[..SettingCount]);
         }
-        if (_publishedSetting >= 0) return logOdds[_publishedSetting];
-        return SettingCount == 1 ? logOdds[0] : _blend.LogOdds(logOdds[..SettingCount]);
+        return _publishedSetting >= 0 ? logOdds[_publishedSetting] : _blend.LogOdds(logOdds[..SettingCount]);
     }
 
     /// <summary>Teaches every setting one label.</summary>
@@ -95,7 +94,7 @@ internal sealed class Bank
     /// <param name="label">0 or 1.</param>
     /// <param name="weight">Its importance, 0 or more.</param>
     /// <param name="timeMicroseconds">The stream's clock.</param>
-    /// <exception cref="IndexOutOfRangeException">A slot is outside of the tables.</exception>
+    /// <exception cref="ArgumentOutOfRangeException">A slot is outside of the tables.</exception>
     public void Learn(
         in EncodedVector x, ReadOnlySpan<double> scoredLogOdds, bool isFresh, int label, double weight, long timeMicroseconds)
     {

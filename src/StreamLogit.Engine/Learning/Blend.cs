@@ -14,8 +14,9 @@ namespace StreamLogit.Engine.Learning;
 internal abstract class Blend
 {
     /// <summary>A blend for so many settings.</summary>
-    public static Blend Create(int settingCount, double switchRate, int widestLanes) =>
-        RowWidth.Lanes(RowWidth.Padded(settingCount), widestLanes) switch
+    public static Blend Create(int settingCount, double switchRate, int widestLanes) => settingCount == 1
+        ? new SingleSetting(switchRate == 0, widestLanes)
+        : RowWidth.Lanes(RowWidth.Padded(settingCount), widestLanes) switch
         {
             8 => new Blend<Lanes8>(settingCount, switchRate),
             4 => new Blend<Lanes4>(settingCount, switchRate),

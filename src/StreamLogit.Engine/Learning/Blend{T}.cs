@@ -80,7 +80,6 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
             (T.Load(in _brierTotal[0], lane) + T.Of(weight) * (miss * miss)).Store(ref _brierTotal[0], lane);
             (T.Load(in _weightTotal[0], lane) + T.Of(weight)).Store(ref _weightTotal[0], lane);
         }
-        if (_settingCount == 1) return;
         if (KeepsLosses) MoveExponentialWeights();
         else MoveFixedShare(hit, weight);
     }
@@ -146,7 +145,7 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
         {
             T logOdds = T.Load(in _logOdds[0], lane);
-            T exp = LaneMath.Exp(T.Of(0) - T.Abs(logOdds));
+            T exp = LaneMath.ExpOfMinusAbs(logOdds);
             exp.Store(ref _exp[0], lane);
             LaneMath.SigmoidOf(logOdds, exp).Store(ref _probability[0], lane);
             LaneMath.SigmoidOf(T.Of(0) - logOdds, exp).Store(ref _complement[0], lane);

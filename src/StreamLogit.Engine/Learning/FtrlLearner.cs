@@ -22,6 +22,7 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
     private readonly double[] _l2;
     private readonly double[] _interceptZ;
     private readonly double[] _interceptN;
+    private readonly double[] _gradient;
 
     public FtrlLearner(ReadOnlySpan<FtrlSetting> settings, SlotBlocks blocks)
         : base(ReadOnlySpan<SettingOptions>.CastUp(settings), blocks, SlotRows)
@@ -32,6 +33,7 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         _l2 = new double[RowLength];
         _interceptZ = new double[RowLength];
         _interceptN = new double[RowLength];
+        _gradient = new double[RowLength];
         Array.Fill(_step, 1);
         Array.Fill(_beta, 1);
         for (int lane = 0; lane < settings.Length; lane++)
@@ -43,28 +45,41 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
     public override void Learn(in EncodedVector x, in Lesson lesson)
     {
         if (lesson.MissProbability.IsEmpty) Score(in x, lesson.Offset);
+        for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
+        {
+            // The gradient of the intercept; that of a coefficient is x times as much.
+            T gradient = T.Of(-lesson.SignedWeight) * MissProbability(in lesson, lane);
+            gradient.Store(ref _gradient[0], lane);
+            LearnIntercept(lane, gradient);
+            if (Forgetting.IsNeeded) Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds));
+        }
+        LearnCoefficients(in x);
+    }
+
+    // On its own because the compiler keeps what lives across a call in memory, and nothing is called here.
+    private void LearnCoefficients(in EncodedVector x)
+    {
         ref double table = ref Table.First;
         ref int slots = ref MemoryMarshal.GetReference(x.Slots);
         ref double values = ref MemoryMarshal.GetReference(x.Values);
-        int count = x.Slots.Length;
+        nuint count = (nuint)x.Slots.Length;
         nuint length = (nuint)RowLength;
+        bool forgets = Forgetting.IsNeeded;
         for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
         {
             var rule = new Rule(T.Load(in _step[0], lane), T.Load(in _beta[0], lane), T.Load(in _l1[0], lane), T.Load(in _l2[0], lane));
-
-            // The gradient of the intercept; that of a coefficient is x times as much.
-            T gradient = T.Of(-lesson.SignedWeight) * MissProbability(in lesson, lane);
-            LearnIntercept(lane, rule, gradient);
-            T scale = Forgetting.IsNeeded ? Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds)) : T.Of(1);
-            for (int i = 0; i < count; i++)
+            T gradient = T.Load(in _gradient[0], lane);
+            T scale = Scale.At(lane);
+            T isForgetting = Forgetting.Mask(lane);
+            for (nuint i = 0; i < count; i++)
             {
                 nuint place = (nuint)(uint)Unsafe.Add(ref slots, i) * (SlotRows * length) + lane;
                 T w = scale * T.Load(in table, place);
                 T z = T.Load(in table, place + length);
                 T n = T.Load(in table, place + 2 * length);
-                if (Forgetting.IsNeeded) z = T.Select(Forgetting.Mask(lane) & T.Greater(T.Abs(w), T.Of(0)), rule.ZOf(w, n), z);
+                if (forgets) z = T.Select(isForgetting & T.Greater(T.Abs(w), T.Of(0)), rule.ZOf(w, n), z);
                 w = rule.Move(ref z, ref n, w, gradient * T.Of(Unsafe.Add(ref values, i)));
-                (w / scale).Store(ref table, place);
+                (forgets ? w / scale : w).Store(ref table, place);
                 z.Store(ref table, place + length);
                 n.Store(ref table, place + 2 * length);
             }
@@ -98,11 +113,11 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         _interceptN[lane] = numbers[3];
     }
 
-    private void LearnIntercept(nuint lane, Rule rule, T gradient)
+    private void LearnIntercept(nuint lane, T gradient)
     {
         T z = T.Load(in _interceptZ[0], lane);
         T n = T.Load(in _interceptN[0], lane);
-        var free = new Rule(rule.Step, rule.Beta, T.Of(0), T.Of(0));
+        var free = new Rule(T.Load(in _step[0], lane), T.Load(in _beta[0], lane), T.Of(0), T.Of(0));
         free.Move(ref z, ref n, T.Load(in Intercepts[0], lane), gradient).Store(ref Intercepts[0], lane);
         z.Store(ref _interceptZ[0], lane);
         n.Store(ref _interceptN[0], lane);
@@ -110,16 +125,13 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
 
     private readonly struct Rule(T step, T beta, T l1, T l2)
     {
-        public readonly T Step = step;
-        public readonly T Beta = beta;
-
         /// <summary>Takes in a gradient and returns the new coefficient.</summary>
         [MethodImpl(MethodImplOptions.AggressiveInlining)]
         public T Move(ref T z, ref T n, T w, T g)
         {
             T sum = n + g * g;
             T root = T.Sqrt(sum);
-            z = z + g - (root - T.Sqrt(n)) / Step * w;
+            z = z + g - (root - T.Sqrt(n)) / step * w;
             n = sum;
             T penalty = T.Select(T.Greater(z, T.Of(0)), l1, T.Of(0) - l1);
             return T.Select(T.Greater(T.Abs(z), l1), (penalty - z) / Curvature(root), T.Of(0));
@@ -130,6 +142,6 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         public T ZOf(T w, T n) =>
             T.Select(T.Greater(w, T.Of(0)), T.Of(0) - l1, l1) - w * Curvature(T.Sqrt(n));
 
-        private T Curvature(T rootOfN) => (Beta + rootOfN) / Step + l2;
+        private T Curvature(T rootOfN) => (beta + rootOfN) / step + l2;
     }
 }

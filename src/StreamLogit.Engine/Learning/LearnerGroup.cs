@@ -57,7 +57,7 @@ internal sealed class LearnerGroup
     {
         if (_isWholeBank)
         {
-            row[.._settings.Length].CopyTo(bank);
+            for (int setting = 0; setting < bank.Length && setting < row.Length; setting++) bank[setting] = row[setting];
             return;
         }
         for (int lane = 0; lane < _settings.Length; lane++) bank[_settings[lane]] = row[lane];

@@ -22,5 +22,5 @@ internal readonly ref struct Lesson
     public required ReadOnlySpan<double> MissProbability { get; init; }
 
     /// <summary>The weight, with the sign of the direction in which the log-odds must move.</summary>
-    public double SignedWeight => Label == 1 ? Weight : -Weight;
+    public double SignedWeight => Weight * (2 * Label - 1);
 }

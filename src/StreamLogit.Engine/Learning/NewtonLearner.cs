@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Runtime.InteropServices;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Features;
@@ -28,10 +29,13 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
     private readonly double[] _mean;
     private readonly double[] _variance;
     private readonly double[] _upper;
+    private readonly double[] _dense; // x
+    private readonly int[] _indices; // where it is not 0
     private readonly double[] _projection; // U'x
     private readonly double[] _gain; // Px
     private readonly double[] _logOdds;
     private readonly Forgetting<T> _forgetting;
+    private int _count; // entries in _indices
 
     /// <exception cref="ArgumentException">There are no dense slots, or too many.</exception>
     public NewtonLearner(ReadOnlySpan<NewtonSetting> settings, int firstDenseSlot, int slotCount)
@@ -48,6 +52,8 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         _mean = new double[_size * RowLength];
         _variance = new double[_size * RowLength];
         _upper = new double[_size * (_size - 1) / 2 * RowLength];
+        _dense = new double[dense];
+        _indices = new int[_size];
         _projection = new double[_size * RowLength];
         _gain = new double[_size * RowLength];
         _logOdds = new double[RowLength];
@@ -72,24 +78,27 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
 
     public void Score(in EncodedVector x, double offset)
     {
+        CopyDense(in x);
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
-            T z = Project(in x, lane, offset, out T variance, out _);
+            T z = Project(lane, offset, out T variance);
             (z / T.Sqrt(T.Of(1) + T.Of(PiOver8) * variance)).Store(ref _logOdds[0], lane);
         }
     }
 
     public void Learn(in EncodedVector x, in Lesson lesson)
     {
+        CopyDense(in x);
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
             Forget(lane, lesson.ElapsedMicroseconds);
-            T z = Project(in x, lane, lesson.Offset, out T variance, out int first);
+            T z = Project(lane, lesson.Offset, out T variance);
             T margin = lesson.Label == 1 ? z : T.Of(0) - z;
             T atMode = margin + MarginMove.ByProximalStep(margin, variance * T.Of(lesson.Weight));
-            T miss = LaneMath.Sigmoid(T.Of(0) - atMode);
-            T precision = T.Of(lesson.Weight) * miss * LaneMath.Sigmoid(atMode);
-            UpdateCovariance(lane, first, precision);
+            T exp = LaneMath.ExpOfMinusAbs(atMode);
+            T miss = LaneMath.SigmoidOf(T.Of(0) - atMode, exp);
+            T precision = T.Of(lesson.Weight) * miss * LaneMath.SigmoidOf(atMode, exp);
+            UpdateCovariance(lane, precision);
             MoveMean(lane, T.Of(lesson.SignedWeight) * miss);
         }
     }
@@ -158,45 +167,49 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
 
     private static int Column(int j) => j * (j - 1) / 2;
 
-    // Computes U'x and returns the log-odds with their variance x'Px. Before the first index x and U'x are 0.
-    private T Project(in EncodedVector x, nuint lane, double offset, out T variance, out int first)
+    // The entries of x that this rule sees, in the order of their indices; the last is the 1 of the intercept.
+    private void CopyDense(in EncodedVector x)
+    {
+        Array.Clear(_dense);
+        for (int i = 0; i < x.Slots.Length; i++)
+            if (TryIndex(x.Slots[i], out int index)) _dense[index] += x.Values[i];
+        _count = 0;
+        for (int i = 0; i < _dense.Length; i++)
+            if (_dense[i] != 0) _indices[_count++] = i;
+        _indices[_count++] = _size - 1;
+    }
+
+    // Computes U'x and returns the log-odds with their variance x'Px. Before the first index U'x is 0.
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private T Project(nuint lane, double offset, out T variance)
     {
         int last = _size - 1;
-        first = last;
-        foreach (int slot in x.Slots)
-            if (TryIndex(slot, out int index)) first = Math.Min(first, index);
-        for (int j = first; j < last; j++) T.Of(0).Store(ref _projection[0], Place(j, lane));
-        T.Of(1).Store(ref _projection[0], Place(last, lane));
-
         T z = T.Load(in _mean[0], Place(last, lane)) + T.Of(offset);
-        for (int entry = 0; entry < x.Slots.Length; entry++)
-        {
-            if (!TryIndex(x.Slots[entry], out int i)) continue;
-            T value = T.Of(x.Values[entry]);
-            z += T.Load(in _mean[0], Place(i, lane)) * value;
-            (T.Load(in _projection[0], Place(i, lane)) + value).Store(ref _projection[0], Place(i, lane));
-            for (int j = i + 1; j < _size; j++)
-            {
-                T sum = T.Load(in _projection[0], Place(j, lane)) + T.Load(in _upper[0], Place(Column(j) + i, lane)) * value;
-                sum.Store(ref _projection[0], Place(j, lane));
-            }
-        }
+        for (int k = 0; k < _count - 1; k++)
+            z += T.Load(in _mean[0], Place(_indices[k], lane)) * T.Of(_dense[_indices[k]]);
 
         variance = T.Of(0);
-        for (int j = first; j < _size; j++)
+        for (int j = _indices[0], before = 0; j <= last; j++)
         {
-            T f = T.Load(in _projection[0], Place(j, lane));
+            bool isEntry = _indices[before] == j;
+            T f = T.Of(!isEntry ? 0 : j == last ? 1 : _dense[j]);
+            int column = Column(j);
+            for (int k = 0; k < before; k++)
+                f += T.Load(in _upper[0], Place(column + _indices[k], lane)) * T.Of(_dense[_indices[k]]);
+            f.Store(ref _projection[0], Place(j, lane));
             variance += T.Load(in _variance[0], Place(j, lane)) * f * f;
+            if (isEntry) before++;
         }
         return z;
     }
 
     // P^-1 <- P^-1 + precision x x', and into _gain the product of the P before and x.
-    private void UpdateCovariance(nuint lane, int first, T precision)
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private void UpdateCovariance(nuint lane, T precision)
     {
-        for (int i = 0; i < first; i++) T.Of(0).Store(ref _gain[0], Place(i, lane));
+        for (int i = 0; i < _indices[0]; i++) T.Of(0).Store(ref _gain[0], Place(i, lane));
         T alpha = T.Of(1);
-        for (int j = first; j < _size; j++)
+        for (int j = _indices[0]; j < _size; j++)
         {
             nuint place = Place(j, lane);
             T f = T.Load(in _projection[0], place);
@@ -212,6 +225,7 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         }
     }
 
+    [MethodImpl(MethodImplOptions.NoInlining)]
     private void UpdateColumn(nuint lane, int j, T factor, T v)
     {
         ref double upper = ref MemoryMarshal.GetArrayDataReference(_upper);
@@ -228,6 +242,7 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         }
     }
 
+    [MethodImpl(MethodImplOptions.NoInlining)]
     private void MoveMean(nuint lane, T gradient)
     {
         for (int i = 0; i < _size; i++)
@@ -237,6 +252,7 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         }
     }
 
+    [MethodImpl(MethodImplOptions.NoInlining)]
     private void Forget(nuint lane, double elapsedMicroseconds)
     {
         T inverse = T.Load(in _inverseFactor[0], lane);

@@ -13,6 +13,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
     private readonly double[] _weightDecay;
     private readonly double[] _isOvershootProof; // 1 or 0
     private readonly double[] _learned;
+    private readonly double[] _move; // of the intercept at the label at hand, over the scale
     private readonly bool _scales;
     private readonly bool _isAnyOvershootProof;
 
@@ -22,6 +23,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
         _weightDecay = new double[RowLength];
         _isOvershootProof = new double[RowLength];
         _learned = new double[RowLength];
+        _move = new double[RowLength];
         double[] steps = new double[settings.Length], decays = new double[settings.Length];
         for (int lane = 0; lane < settings.Length; lane++)
         {
@@ -40,12 +42,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
     {
         if (lesson.MissProbability.IsEmpty || _isAnyOvershootProof) Score(in x, lesson.Offset);
         double squaredLength = _isAnyOvershootProof ? SquaredLength(in x) : 0;
-        ref double table = ref Table.First;
-        ref int slots = ref MemoryMarshal.GetReference(x.Slots);
-        ref double values = ref MemoryMarshal.GetReference(x.Values);
-        int count = x.Slots.Length;
-        nuint length = (nuint)RowLength;
-        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
             T k = T.Load(in _learned[0], lane) + T.Of(1);
             k.Store(ref _learned[0], lane);
@@ -53,13 +50,41 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
             T move = step * T.Of(lesson.SignedWeight) * MissProbability(in lesson, lane);
             if (_isAnyOvershootProof) move = OvershootProof(in lesson, lane, step, squaredLength, move);
             (T.Load(in Intercepts[0], lane) + move).Store(ref Intercepts[0], lane);
-            if (_scales) move /= Scale.Multiply(lane, Factor(in lesson, lane, step));
-            for (int i = 0; i < count; i++)
-            {
-                nuint place = (nuint)(uint)Unsafe.Add(ref slots, i) * length + lane;
-                (T.Load(in table, place) + move * T.Of(Unsafe.Add(ref values, i))).Store(ref table, place);
-            }
+            if (_scales) move *= T.Of(1) / Scale.Multiply(lane, Factor(in lesson, lane, step));
+            move.Store(ref _move[0], lane);
         }
+        AddMove(in x);
+    }
+
+    // On its own because the compiler keeps what lives across a call in memory, and nothing is called here.
+    private void AddMove(in EncodedVector x)
+    {
+        ref double table = ref Table.First;
+        ref int slots = ref MemoryMarshal.GetReference(x.Slots);
+        ref double values = ref MemoryMarshal.GetReference(x.Values);
+        nuint count = (nuint)x.Slots.Length;
+        nuint length = (nuint)RowLength;
+        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        {
+            T move = T.Load(in _move[0], lane);
+            nuint i = 0;
+            for (; i + 4 <= count; i += 4)
+            {
+                AddMove(ref table, ref slots, ref values, i, length, lane, move);
+                AddMove(ref table, ref slots, ref values, i + 1, length, lane, move);
+                AddMove(ref table, ref slots, ref values, i + 2, length, lane, move);
+                AddMove(ref table, ref slots, ref values, i + 3, length, lane, move);
+            }
+            for (; i < count; i++) AddMove(ref table, ref slots, ref values, i, length, lane, move);
+        }
+    }
+
+    // A slot may stand in the event twice, so each entry is stored before the next is loaded.
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static void AddMove(ref double table, ref int slots, ref double values, nuint i, nuint length, nuint lane, T move)
+    {
+        nuint place = (nuint)(uint)Unsafe.Add(ref slots, i) * length + lane;
+        (T.Load(in table, place) + move * T.Of(Unsafe.Add(ref values, i))).Store(ref table, place);
     }
 
     public override void SaveSetting(int lane, Span<double> numbers)

@@ -1,3 +1,7 @@
+using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
+using System.Runtime.Intrinsics;
+
 namespace StreamLogit.Engine.Learning;
 
 /// <summary>Runs of slots that are saved together: which of them were ever written, and which since they were last saved.</summary>
@@ -29,21 +33,39 @@ internal sealed class SlotBlocks
     public int PaddedSlotCount => Count << _shift;
 
     /// <summary>Checks that all slots are inside of the tables.</summary>
-    /// <exception cref="ArgumentOutOfRangeException">One is not. Whoever reads the tables by reference relies on this check.</exception>
+    /// <exception cref="ArgumentOutOfRangeException">One is not. Whoever reaches the tables by reference relies on this check.</exception>
     public void Check(ReadOnlySpan<int> slots)
     {
+        ref uint first = ref Unsafe.As<int, uint>(ref MemoryMarshal.GetReference(slots));
+        nuint count = (nuint)slots.Length, i = 0;
         uint greatest = 0;
-        foreach (int slot in slots) greatest = Math.Max(greatest, (uint)slot);
-        if (greatest >= (uint)SlotCount && !slots.IsEmpty) ThrowOutOfRange(greatest);
+        if (Vector128.IsHardwareAccelerated && count >= (nuint)Vector128<uint>.Count)
+        {
+            Vector128<uint> most = Vector128.LoadUnsafe(ref first);
+            for (i = 4; i + 4 <= count; i += 4) most = Vector128.Max(most, Vector128.LoadUnsafe(ref first, i));
+            greatest = Math.Max(Math.Max(most[0], most[1]), Math.Max(most[2], most[3]));
+        }
+        for (; i < count; i++) greatest = Math.Max(greatest, Unsafe.Add(ref first, i));
+        if (greatest >= (uint)SlotCount && count > 0) ThrowOutOfRange(greatest);
     }
 
-    /// <summary>Notes that these slots are about to be written.</summary>
-    /// <exception cref="IndexOutOfRangeException">A slot is outside of the tables. Whoever writes them by reference relies on this check.</exception>
+    /// <summary>Notes that these slots are about to be written, and checks them.</summary>
+    /// <exception cref="ArgumentOutOfRangeException">A slot is outside of the tables.</exception>
     public void Mark(ReadOnlySpan<int> slots)
     {
-        byte[] flags = _flags;
+        Check(slots);
+        ref int first = ref MemoryMarshal.GetReference(slots);
+        ref byte flags = ref MemoryMarshal.GetArrayDataReference(_flags);
         int shift = _shift;
-        foreach (int slot in slots) flags[slot >> shift] = Touched | Changed;
+        nuint count = (nuint)slots.Length, i = 0;
+        for (; i + 4 <= count; i += 4)
+        {
+            Unsafe.Add(ref flags, (uint)Unsafe.Add(ref first, i) >> shift) = Touched | Changed;
+            Unsafe.Add(ref flags, (uint)Unsafe.Add(ref first, i + 1) >> shift) = Touched | Changed;
+            Unsafe.Add(ref flags, (uint)Unsafe.Add(ref first, i + 2) >> shift) = Touched | Changed;
+            Unsafe.Add(ref flags, (uint)Unsafe.Add(ref first, i + 3) >> shift) = Touched | Changed;
+        }
+        for (; i < count; i++) Unsafe.Add(ref flags, (uint)Unsafe.Add(ref first, i) >> shift) = Touched | Changed;
     }
 
     /// <summary>Notes that every slot that was ever written is about to be written again.</summary>

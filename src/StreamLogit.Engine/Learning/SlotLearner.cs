@@ -51,13 +51,13 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
         ref double table = ref Table.First;
         ref int slots = ref MemoryMarshal.GetReference(x.Slots);
         ref double values = ref MemoryMarshal.GetReference(x.Values);
-        int count = x.Slots.Length;
+        nuint count = (nuint)x.Slots.Length;
         nuint length = (nuint)RowLength;
         nuint stride = (nuint)Table.RowLength;
         for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
         {
             T sum0 = T.Of(0), sum1 = T.Of(0), sum2 = T.Of(0), sum3 = T.Of(0);
-            int i = 0;
+            nuint i = 0;
             for (; i + 4 <= count; i += 4)
             {
                 sum0 += Product(ref table, ref slots, ref values, i, stride, lane);
@@ -69,7 +69,7 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
             if (i + 1 < count) sum1 += Product(ref table, ref slots, ref values, i + 1, stride, lane);
             if (i + 2 < count) sum2 += Product(ref table, ref slots, ref values, i + 2, stride, lane);
             T sum = sum0 + sum1 + (sum2 + sum3);
-            T logOdds = T.Load(in Intercepts[0], lane) + Scale.At(lane) * sum + T.Of(offset);
+            T logOdds = T.Load(in Intercepts[0], lane) + T.Of(offset) + Scale.At(lane) * sum;
             logOdds.Store(ref _logOdds[0], lane);
         }
     }
@@ -127,13 +127,9 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
 
     /// <summary>The log-odds of what was the case, from the last <see cref="Score"/>.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    protected T Margin(in Lesson lesson, nuint lane)
-    {
-        T logOdds = T.Load(in _logOdds[0], lane);
-        return lesson.Label == 1 ? logOdds : T.Of(0) - logOdds;
-    }
+    protected T Margin(in Lesson lesson, nuint lane) => T.Load(in _logOdds[0], lane) * T.Of(2 * lesson.Label - 1);
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private static T Product(ref double table, ref int slots, ref double values, int i, nuint stride, nuint lane) =>
+    private static T Product(ref double table, ref int slots, ref double values, nuint i, nuint stride, nuint lane) =>
         T.Load(in table, (nuint)(uint)Unsafe.Add(ref slots, i) * stride + lane) * T.Of(Unsafe.Add(ref values, i));
 }

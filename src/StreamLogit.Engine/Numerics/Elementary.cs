@@ -25,7 +25,7 @@ internal static class Elementary
     }
 
     /// <summary>ln(1 + e^x), the log-loss of a score whose log-odds against what happened are x.</summary>
-    public static double Softplus(double x) => LaneMath.SoftplusOf(new Lanes1(x), LaneMath.Exp(new Lanes1(-Math.Abs(x)))).Value;
+    public static double Softplus(double x) => LaneMath.SoftplusOf(new Lanes1(x), LaneMath.ExpOfMinusAbs(new Lanes1(x))).Value;
 
     /// <summary>Sine and cosine of an angle that is given as a part of the full turn, 0 to 1. The error is below 4e-16.</summary>
     public static void SinCosOfTurn(double turns, out double sin, out double cos)

@@ -32,11 +32,17 @@ internal static class LaneMath
 
     /// <summary>e^x: 0 below -745.2, infinity above 709.8, NaN for NaN.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public static T Exp<T>(T x) where T : struct, ILanes<T>
+    public static T Exp<T>(T x) where T : struct, ILanes<T> => ExpOfBounded(T.Select(T.Greater(x, T.Of(710)), T.Of(710), x));
+
+    /// <summary>e^-|x|, which is at most 1.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static T ExpOfMinusAbs<T>(T x) where T : struct, ILanes<T> => ExpOfBounded(T.Of(0) - T.Abs(x));
+
+    // For x up to 710. Above it e^x is infinity and below -746 it is 0 anyway, and the exponents would overflow.
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static T ExpOfBounded<T>(T x) where T : struct, ILanes<T>
     {
-        // Outside of these bounds the result is 0 or infinity anyway, and inside of them the exponents below cannot overflow.
-        T bounded = T.Select(T.Greater(x, T.Of(710)), T.Of(710), x);
-        bounded = T.Select(T.Greater(T.Of(-746), bounded), T.Of(-746), bounded);
+        T bounded = T.Select(T.Greater(T.Of(-746), x), T.Of(-746), x);
 
         // x = n ln 2 + r with |r| <= 0.3466; the terms from r^14/14! on are below 2^-57.
         T n = bounded * T.Of(Log2OfE) + T.Of(RoundToInteger) - T.Of(RoundToInteger);
@@ -94,11 +100,7 @@ internal static class LaneMath
 
     /// <summary>1 / (1 + e^-x).</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public static T Sigmoid<T>(T x) where T : struct, ILanes<T>
-    {
-        T e = Exp(T.Of(0) - T.Abs(x));
-        return SigmoidOf(x, e);
-    }
+    public static T Sigmoid<T>(T x) where T : struct, ILanes<T> => SigmoidOf(x, ExpOfMinusAbs(x));
 
     /// <summary>1 / (1 + e^-x), where e^-|x| is at hand.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
