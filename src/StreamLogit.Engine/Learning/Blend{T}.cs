@@ -61,7 +61,7 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         double one = LaneSum.OfProducts<T>(in _weight[0], in _probability[0], (nuint)_weight.Length);
         double zero = LaneSum.OfProducts<T>(in _weight[0], in _complement[0], (nuint)_weight.Length);
         return one > SmallestSum && zero > SmallestSum
-            ? Elementary.Log(one) - Elementary.Log(zero)
+            ? LaneMath.LogOfNormal(new Lanes1(one)).Value - LaneMath.LogOfNormal(new Lanes1(zero)).Value
             : LogOfSum(1) - LogOfSum(-1);
     }
 
