@@ -92,6 +92,7 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
             double miss = Elementary.Sigmoid(against);
             _logLossTotal[setting] -= weight * Elementary.Softplus(against);
             _brierTotal[setting] -= weight * (miss * miss);
+            _weightTotal[setting] -= weight;
         }
     }
 
@@ -183,7 +184,11 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         double least = double.PositiveInfinity;
         for (int setting = 0; setting < _settingCount; setting++) least = Math.Min(least, _loss[setting]);
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
-            LaneMath.Exp(T.Of(least) - T.Load(in _loss[0], lane)).Store(ref _loss[0], lane);
+        {
+            // Places beyond the last setting may be above the greatest.
+            T exponent = T.Of(least) - T.Load(in _loss[0], lane);
+            LaneMath.Exp(T.Select(T.Greater(exponent, T.Of(0)), T.Of(0), exponent)).Store(ref _loss[0], lane);
+        }
         Mix(in _loss[0], LaneSum.OfProducts<T>(in _weight[0], in _loss[0], (nuint)_weight.Length));
     }
 

@@ -22,10 +22,10 @@ internal sealed class SavedBank
         {
             foreach ((int place, string name) in group.Settings)
             {
-                double[] numbers = MemoryMarshal.Cast<byte, double>(state.Find(BankState.SettingsPart, place)).ToArray();
-                if (numbers.Length != Blend.NumbersPerSetting + group.NumbersPerSetting || (uint)place >= (uint)_weights.Length)
+                byte[]? bytes = state.Find(BankState.SettingsPart, place);
+                if (bytes?.Length != (Blend.NumbersPerSetting + group.NumbersPerSetting) * sizeof(double) || (uint)place >= (uint)_weights.Length)
                     throw new InvalidStateException($"The numbers of setting '{name}' are damaged.");
-                _numbers[place] = numbers;
+                _numbers[place] = MemoryMarshal.Cast<byte, double>(bytes).ToArray();
             }
         }
         SetWeights();

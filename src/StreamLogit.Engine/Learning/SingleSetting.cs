@@ -44,6 +44,16 @@ internal sealed class SingleSetting(bool keepsLosses, int widestLanes) : Blend
         if (_waiting == Most) AddLosses();
     }
 
+    public override void TakeBack(ReadOnlySpan<double> scoredLogOdds, int label, double weight)
+    {
+        AddLosses();
+        double against = label == 1 ? -scoredLogOdds[0] : scoredLogOdds[0];
+        double miss = Elementary.Sigmoid(against);
+        _logLossTotal -= weight * Elementary.Softplus(against);
+        _brierTotal -= weight * (miss * miss);
+        _weightTotal -= weight;
+    }
+
     public override void Weights(Span<double> weights) => weights[0] = 1;
 
     public override void SetLogWeights(ReadOnlySpan<double> logWeights)

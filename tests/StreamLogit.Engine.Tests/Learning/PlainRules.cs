@@ -31,22 +31,22 @@ internal static class PlainRules
         };
     }
 
-    /// <summary>Karampatziakis &amp; Langford 2011: the importance-invariant step, by 20,000 small steps along the gradient.</summary>
+    /// <summary>
+    /// Karampatziakis &amp; Langford 2011, table 1, logistic loss: the margin m moves to where m + e^m has grown by step * weight * x'x, found by bisection.
+    /// </summary>
     public static LogOddsThenLearn OvershootProofSgd(double[] w, double step)
     {
-        const int Parts = 20_000;
         return (features, y, s, _) =>
         {
             double[] x = WithOne(features);
-            double z = Dot(w, x), length = step * s / Parts, moved = 0, square = Dot(x, x);
-
-            // Midpoint rule for d(moved)/dt = y - sigmoid(z + moved * square).
-            for (int part = 0; part < Parts; part++)
+            double z = Dot(w, x), square = Dot(x, x), margin = y == 1 ? z : -z, low = 0, high = step * s * square;
+            for (int i = 0; i < 200; i++)
             {
-                double half = moved + length / 2 * (y - Sigmoid(z + moved * square));
-                moved += length * (y - Sigmoid(z + half * square));
+                double middle = (low + high) / 2;
+                if (middle + Math.Exp(margin) * (Math.Exp(middle) - 1) < step * s * square) low = middle;
+                else high = middle;
             }
-            for (int j = 0; j < w.Length; j++) w[j] += moved * x[j];
+            for (int j = 0; j < w.Length; j++) w[j] += (y == 1 ? low : -low) / square * x[j];
             return z;
         };
     }
@@ -72,24 +72,25 @@ internal static class PlainRules
     }
 
     /// <summary>McMahan et al. 2013, algorithm 1; no penalty on the intercept.</summary>
-    public static LogOddsThenLearn Ftrl(double[] w, double alpha, double beta, double l1, double l2)
+    public static LogOddsThenLearn Ftrl(double[] w, double alpha, double beta, double l1, double l2, double halfLife = 0)
     {
         double[] z = new double[w.Length], n = new double[w.Length];
-        return (features, y, s, _) =>
+        return (features, y, s, elapsed) =>
         {
             double[] x = WithOne(features);
-            for (int j = 0; j < w.Length; j++)
-            {
-                double first = j + 1 < w.Length ? l1 : 0, second = j + 1 < w.Length ? l2 : 0;
-                w[j] = Math.Abs(z[j]) <= first ? 0 : -(z[j] - Math.Sign(z[j]) * first) / ((beta + Math.Sqrt(n[j])) / alpha + second);
-            }
             double logOdds = Dot(w, x);
             for (int j = 0; j < w.Length; j++)
             {
+                double first = j + 1 < w.Length ? l1 : 0, second = j + 1 < w.Length ? l2 : 0;
+                if (w[j] != 0 && j + 1 < w.Length && halfLife > 0)
+                {
+                    w[j] *= Math.Pow(2, -elapsed / halfLife);
+                    z[j] = -Math.Sign(w[j]) * first - w[j] * ((beta + Math.Sqrt(n[j])) / alpha + second);
+                }
                 double g = s * (Sigmoid(logOdds) - y) * x[j];
-                double sigma = (Math.Sqrt(n[j] + g * g) - Math.Sqrt(n[j])) / alpha;
-                z[j] += g - sigma * w[j];
+                z[j] += g - (Math.Sqrt(n[j] + g * g) - Math.Sqrt(n[j])) / alpha * w[j];
                 n[j] += g * g;
+                w[j] = Math.Abs(z[j]) <= first ? 0 : -(z[j] - Math.Sign(z[j]) * first) / ((beta + Math.Sqrt(n[j])) / alpha + second);
             }
             return logOdds;
         };
@@ -99,16 +100,19 @@ internal static class PlainRules
     /// Spiegelhalter &amp; Lauritzen 1990: the normal approximation at the mode, by the full covariance and bisection; MacKay 1992, (31): the
     /// moderated output.
     /// </summary>
-    public static LogOddsThenLearn Newton(double[] mean, double forgetting, double priorVariance)
+    public static LogOddsThenLearn Newton(double[] mean, double forgetting, double priorVariance, double halfLife = 0)
     {
         int d = mean.Length;
         double[][] p = [.. Enumerable.Range(0, d).Select(i => Enumerable.Range(0, d).Select(j => i == j ? priorVariance : 0).ToArray())];
-        return (features, y, s, _) =>
+        return (features, y, s, elapsed) =>
         {
             double[] x = WithOne(features);
             double z = Dot(mean, x), scored = z / Math.Sqrt(1 + Math.PI / 8 * Dot(x, [.. p.Select(row => Dot(row, x))]));
 
-            if (forgetting < 1) Inflate(p, 1 / forgetting, priorVariance);
+            double pull = halfLife > 0 ? Math.Pow(2, -elapsed / halfLife) : 1;
+            Forget(mean, elapsed, halfLife);
+            z = Dot(mean, x);
+            if (forgetting * pull < 1) Inflate(p, 1 / (forgetting * pull * pull), priorVariance);
             double[] px = [.. p.Select(row => Dot(row, x))];
             double v = Dot(x, px), low = -1e3, high = 1e3;
             for (int i = 0; i < 200; i++)

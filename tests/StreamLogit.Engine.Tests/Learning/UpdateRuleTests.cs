@@ -14,14 +14,18 @@ public sealed class UpdateRuleTests
         (new SgdSetting(0.05, 0, 0), w => PlainRules.Sgd(w, 0.05, 0, 0, 0)),
         (new SgdSetting(0.3, 0.25, 1e-3), w => PlainRules.Sgd(w, 0.3, 0.25, 1e-3, 0)),
         (new SgdSetting(0.5, 1, 0.1) { ForgetHalfLifeMicroseconds = 200 * Hour }, w => PlainRules.Sgd(w, 0.5, 1, 0.1, 200.0 * Hour)),
+        (new SgdSetting(0.5, 0, 0.1), w => PlainRules.Sgd(w, 0.5, 0, 0.1, 0)), // the scale becomes small and is folded
+        (new SgdSetting(2, 0, 0) { IsOvershootProof = true }, w => PlainRules.OvershootProofSgd(w, 2)),
         (new SgdSetting(2, 0, 0.7), w => PlainRules.Sgd(w, 2, 0, 0.7, 0)),
         (new AdagradSetting(0.1, 0), w => PlainRules.Adagrad(w, 0.1, 0, 0)),
         (new AdagradSetting(0.02, 50), w => PlainRules.Adagrad(w, 0.02, 50, 0)),
         (new AdagradSetting(0.02, 2) { ForgetHalfLifeMicroseconds = 24 * Hour }, w => PlainRules.Adagrad(w, 0.02, 2, 24.0 * Hour)),
         (new FtrlSetting(0.1, 1, 0, 0), w => PlainRules.Ftrl(w, 0.1, 1, 0, 0)),
         (new FtrlSetting(0.2, 0.5, 0.8, 0.1), w => PlainRules.Ftrl(w, 0.2, 0.5, 0.8, 0.1)),
+        (new FtrlSetting(0.2, 0.5, 0.8, 0.1) { ForgetHalfLifeMicroseconds = 24 * Hour }, w => PlainRules.Ftrl(w, 0.2, 0.5, 0.8, 0.1, 24.0 * Hour)),
         (new NewtonSetting(1, 10), w => PlainRules.Newton(w, 1, 10)),
         (new NewtonSetting(0.998, 10), w => PlainRules.Newton(w, 0.998, 10)),
+        (new NewtonSetting(0.9995, 1) { ForgetHalfLifeMicroseconds = 500 * Hour }, w => PlainRules.Newton(w, 0.9995, 1, 500.0 * Hour)),
     ];
 
     [Theory]
@@ -51,7 +55,6 @@ public sealed class UpdateRuleTests
         }
         for (int setting = 0; setting < Rules.Length; setting++)
         {
-            if (Rules[setting].Setting is FtrlSetting) continue; // the plain rule computes its coefficients before it scores
             AssertClose(coefficients[setting][features], bank.Intercept(setting), bank.Names[setting], rows.Length);
             for (int j = 0; j < features; j++)
                 AssertClose(coefficients[setting][j], bank.Coefficient(j, setting), bank.Names[setting], rows.Length);

@@ -91,7 +91,22 @@ public sealed class BankTests
     }
 
     [Fact]
-    public void Bank_Default_IsTheDefaultBank() => Assert.Equal(DefaultBank.Settings, Read("\"default\""));
+    public void Bank_Default_IsTheDefaultBankForTheFeatures()
+    {
+        Assert.Equal(DefaultBank.DenseSettings, Read("\"default\""));
+
+        // newton does not learn categories, and takes time in proportion to the square of the numbers.
+        string[] unsuitable = [NumbersAnd(1, """{ "category": "k" }"""), NumbersAnd(33, """{ "cycle": "time", "period": "1d" }"""), """{ "category": "k" }"""];
+        foreach (string features in unsuitable)
+        {
+            var engine = Definitions.Read($$"""{ "stream": "q", "features": [ {{features}} ], "learning": { "slots": 16, "bank": "default" } }""").Engine;
+            Assert.Equal(DefaultBank.Settings, engine.Learning.Bank);
+            _ = new ScoringEngine(engine);
+        }
+
+        static string NumbersAnd(int count, string feature) =>
+            string.Concat(Enumerable.Range(0, count).Select(i => $$"""{ "number": "x{{i}}" }, """)) + feature;
+    }
 
     [Fact]
     public void Bank_SixtyFourSettings_AreTheMost()

@@ -75,7 +75,7 @@ public sealed class StreamDefinitionReaderTests
     {
         var definition = Definitions.Read(Definitions.Smallest);
 
-        Assert.Equal(new LearningOptions { Bank = DefaultBank.Settings }, definition.Engine.Learning);
+        Assert.Equal(new LearningOptions { Bank = DefaultBank.DenseSettings }, definition.Engine.Learning);
         Assert.Equal(new LabelOptions(), definition.Engine.Labels);
         Assert.Equal(new DecisionOptions(), definition.Engine.Decision);
         Assert.Equal(new HealthOptions().Windows, definition.Engine.Health.Windows);

@@ -11,11 +11,11 @@ internal static class BankSection
     private const string Default = "default";
 
     /// <summary>The settings in the order in which they are written, or null and errors.</summary>
-    public static ImmutableArray<SettingOptions>? Read(ValueReader value, int? denseCoefficients)
+    public static ImmutableArray<SettingOptions>? Read(ValueReader value, int? denseCoefficients, ImmutableArray<SettingOptions> defaultBank)
     {
         if (value.Value.Kind == JsonValueKind.String)
         {
-            if (value.Value.Text == Default) return DefaultBank.Settings;
+            if (value.Value.Text == Default) return defaultBank;
             value.UnknownName([Default]);
             return null;
         }

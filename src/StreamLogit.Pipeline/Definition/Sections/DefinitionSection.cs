@@ -27,8 +27,7 @@ internal static class DefinitionSection
         var files = new FilePaths(folder);
         var recordOptions = RecordSection.Read(record, labels);
         var featureOptions = FeaturesSection.Read(features, recordOptions);
-        var (learningOptions, warmStartPath) = LearningSection.Read(
-            learning, featureOptions?.Sum(feature => feature.DenseCoefficients), files, use);
+        var (learningOptions, warmStartPath) = LearningSection.Read(learning, featureOptions, files, use);
         var sourceOptions = SourceSection.Read(source, files);
         var (output, decisionOptions) = ScoresSection.Read(scores, decision, files, use);
         return new StreamDefinition

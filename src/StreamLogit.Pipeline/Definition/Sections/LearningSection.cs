@@ -12,14 +12,19 @@ internal static class LearningSection
     private const string Blend = "blend";
 
     /// <summary>The options, and the file of the warm start where there is one.</summary>
-    public static (LearningOptions Options, string? WarmStartPath) Read(ValueReader? value, int? denseCoefficients, FilePaths files, DefinitionUse use)
+    /// <param name="value">The section, or null where there is none.</param>
+    /// <param name="features">The features, or null where they are wrong.</param>
+    /// <param name="files">Reads paths.</param>
+    /// <param name="use">What the definition is read for.</param>
+    public static (LearningOptions Options, string? WarmStartPath) Read(
+        ValueReader? value, ImmutableArray<FeatureOptions>? features, FilePaths files, DefinitionUse use)
     {
-        var defaults = new LearningOptions();
+        var defaults = new LearningOptions { Bank = DefaultBank.For(features ?? []) };
         if (value?.Object() is not { } section) return (defaults, null);
         var slotsKey = section.Optional("slots");
         int? slots = slotsKey?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
         ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
-        var bank = section.Optional("bank") is { } written ? BankSection.Read(written, denseCoefficients) : defaults.Bank;
+        var bank = section.Optional("bank") is { } written ? BankSection.Read(written, features?.Sum(feature => feature.DenseCoefficients), defaults.Bank) : defaults.Bank;
         double? startProbability = section.Optional("startProbability")?.Number(NumberRange.BetweenZeroAndOne);
         var warmStartKey = section.Optional("warmStart");
         string? publish = ReadPublish(section.Optional("publish"), bank);
