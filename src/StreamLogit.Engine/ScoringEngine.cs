@@ -50,7 +50,7 @@ public sealed class ScoringEngine
         _bank = new Bank(definition.Learning, _encoder.SlotCount, _encoder.FirstDenseSlot);
         _clock = new StreamClock(definition.Record.AheadMicroseconds);
         _awaiting = new AwaitingStore(
-            _bank.SettingCount, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive);
+            _bank.Names, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive);
         _early = new EarlyLabels(definition.Labels.EarlyMicroseconds);
         _health = new HealthLedger(definition.Health);
         _reasons = new ReasonFinder(definition.Features.Length);
@@ -170,20 +170,25 @@ public sealed class ScoringEngine
         _health.Save(changes);
     }
 
-    /// <summary>Takes up a state that was saved. Only on an engine that has seen nothing.</summary>
+    /// <summary>
+    /// Takes up a state that was saved. Only on an engine that has seen nothing. The definition may have another bank than the state: settings
+    /// that both have go on, new ones start from the coefficients of the blend.
+    /// </summary>
+    /// <returns>Which settings went on, which started and which were dropped.</returns>
     /// <exception cref="InvalidStateException">The state is damaged or belongs to another definition.</exception>
-    public void Load(StateBlocks state)
+    public BankChange Load(StateBlocks state)
     {
-        LoadModel(state);
+        var change = LoadModel(state);
         _awaiting.Load(state);
         _early.Load(state);
         _coming.Load(state);
         _health.Load(state);
+        return change;
     }
 
     /// <summary>Takes up of a saved state what <see cref="Model"/> tells, and no more: for looking into it.</summary>
     /// <exception cref="InvalidStateException">The state is damaged or belongs to another definition.</exception>
-    public void LoadModel(StateBlocks state)
+    public BankChange LoadModel(StateBlocks state)
     {
         byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException("the state holds no engine");
         using var reader = new BinaryReader(new MemoryStream(bytes));
@@ -204,7 +209,7 @@ public sealed class ScoringEngine
         };
         _clock.Load(reader);
         _encoder.Load(state);
-        _bank.Load(state);
+        return _bank.Load(state);
     }
 
     private void Take(RecordBatch records, int index, ScoreBatch scores)
@@ -357,7 +362,7 @@ public sealed class ScoringEngine
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
         return Learn(
-            header.IdHash, scored.Vector, scored.LogOdds, header.LogOdds, isFresh: false, label, scored.WeightOf(weight), header.ScoredAtMicroseconds);
+            header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), header.LogOdds, isFresh: false, label, scored.WeightOf(weight), header.ScoredAtMicroseconds);
     }
 
     private LabelCount Learn(
@@ -386,11 +391,12 @@ public sealed class ScoringEngine
     {
         var scored = _awaiting.At(place);
         weight = scored.WeightOf(weight);
+        var logOdds = _awaiting.LogOddsOf(place);
         Corrected?.Invoke(new LabelledEvent
         {
             IdHash = scored.Header.IdHash,
             Vector = scored.Vector,
-            SettingLogOdds = scored.LogOdds,
+            SettingLogOdds = logOdds,
             LogOdds = scored.Header.LogOdds,
             Label = label,
             Weight = weight,
@@ -398,8 +404,8 @@ public sealed class ScoringEngine
             ScoredAtMicroseconds = scored.Header.ScoredAtMicroseconds,
             KnownAtMicroseconds = _clock.Microseconds,
         });
-        _bank.TakeBack(scored.LogOdds, 1 - label, count.Weight);
-        _bank.Learn(scored.Vector, scored.LogOdds, isFresh: false, label, weight, _clock.Microseconds);
+        _bank.TakeBack(logOdds, 1 - label, count.Weight);
+        _bank.Learn(scored.Vector, logOdds, isFresh: false, label, weight, _clock.Microseconds);
         _version++;
         _events.Corrected++;
         return _health.CorrectLabel(count, scored.Header.LogOdds, label, weight);
@@ -464,7 +470,7 @@ public sealed class ScoringEngine
 
     private SettingFigures FiguresOf(int setting)
     {
-        double weight = _health.LabelWeight;
+        double weight = _bank.WeightTotal(setting);
         return new(_bank.Names[setting], _bank.LogLossTotal(setting) / weight, _bank.BrierTotal(setting) / weight, _bank.BlendWeight(setting));
     }
 

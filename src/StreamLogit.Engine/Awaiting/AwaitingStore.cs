@@ -1,3 +1,4 @@
+using System.Collections.Immutable;
 using System.Runtime.InteropServices;
 using StreamLogit.Engine.Features;
 using StreamLogit.Engine.Persistence;
@@ -21,6 +22,7 @@ internal sealed class AwaitingStore
     private const int UsualEventBytes = 256;
 
     private readonly int _settings;
+    private readonly ScoringBanks _banks;
     private readonly long _waitMicroseconds;
     private readonly long _keepMicroseconds;
     private readonly int _hotSegments;
@@ -37,14 +39,15 @@ internal sealed class AwaitingStore
     private EventPlace _keepCursor; // the first event that is still kept
     private long _nextEnd = long.MaxValue; // no wait ends and no event is let go before this time of the clock
 
-    /// <param name="settings">Settings of the bank.</param>
+    /// <param name="settings">The names of the bank's settings.</param>
     /// <param name="waitMicroseconds">How long an event waits for its label.</param>
     /// <param name="keepsAssumed">Whether events are kept as long again when their wait is over.</param>
     /// <param name="memoryBytes">Bytes of segments in memory, beyond which they go to the archive.</param>
     /// <param name="archive">The archive, or null where all stays in memory.</param>
-    public AwaitingStore(int settings, long waitMicroseconds, bool keepsAssumed, long memoryBytes, IBlockArchive? archive)
+    public AwaitingStore(ImmutableArray<string> settings, long waitMicroseconds, bool keepsAssumed, long memoryBytes, IBlockArchive? archive)
     {
-        _settings = settings;
+        _settings = settings.Length;
+        _banks = new ScoringBanks(settings);
         _waitMicroseconds = waitMicroseconds;
         _keepMicroseconds = keepsAssumed ? 2 * waitMicroseconds : waitMicroseconds;
         _hotSegments = (int)Math.Clamp(memoryBytes / SegmentBytes, 2, int.MaxValue);
@@ -95,8 +98,11 @@ internal sealed class AwaitingStore
     {
         var segment = SegmentOf(place);
         byte[] bytes = segment.Bytes ?? _reader.Read(place.Segment);
-        return new KeptEvent(bytes.AsSpan(place.Offset, segment.Length - place.Offset), _settings);
+        return new KeptEvent(bytes.AsSpan(place.Offset, segment.Length - place.Offset), _banks.SettingsOf(place.Segment));
     }
+
+    /// <summary>The log-odds that every setting of the bank gave an event when it was scored; see <see cref="ScoringBanks"/>. Readable as long as the event.</summary>
+    public ReadOnlySpan<double> LogOddsOf(EventPlace place) => _banks.LogOddsOf(At(place), place.Segment);
 
     /// <summary>What became of the event that lies there.</summary>
     public LabelMark MarkOf(EventPlace place) => SegmentOf(place).MarkOf(At(place).Header.Ordinal);
@@ -170,6 +176,7 @@ internal sealed class AwaitingStore
         }
         ReadOnlySpan<int> cursors = [_firstSegment, _waitCursor.Segment, _waitCursor.Offset, _keepCursor.Segment, _keepCursor.Offset];
         changes.Put(CursorsPart, 0, MemoryMarshal.AsBytes(cursors));
+        _banks.Save(changes, _firstSegment);
     }
 
     public void Load(StateBlocks state)
@@ -188,6 +195,7 @@ internal sealed class AwaitingStore
                 int length = _archive.Read(SegmentsPart, number, ref bytes);
                 LoadSegment(number, bytes, length, state.Find(MarksPart, number));
             }
+        _banks.Load(state, _firstSegment + _segments.Count);
     }
 
     private void LoadSegment(long number, byte[] bytes, int length, ReadOnlySpan<byte> marks)
@@ -249,7 +257,8 @@ internal sealed class AwaitingStore
 
     private Segment SegmentFor(int size)
     {
-        if (_segments.Count > 0 && _segments[^1].HasRoom(size)) return _segments[^1];
+        bool isOfPresent = _firstSegment + _segments.Count > _banks.FirstOfPresent;
+        if (_segments.Count > 0 && isOfPresent && _segments[^1].HasRoom(size)) return _segments[^1];
         if (!_spareSegments.TryPop(out var segment)) segment = new Segment();
         segment.Bytes = size <= SegmentBytes && _spareBytes.TryPop(out byte[]? spare) ? spare : new byte[Math.Max(size, SegmentBytes)];
         _segments.Add(segment);

@@ -8,7 +8,7 @@ namespace StreamLogit.Engine.Tests.Awaiting;
 
 public class AwaitingStoreTests
 {
-    private const int Settings = 3;
+    private static readonly string[] Settings = ["a", "b", "c"];
     private const long Wait = 1000;
 
     [Fact]
@@ -117,14 +117,58 @@ public class AwaitingStoreTests
         }, iter: 30, seed: "0000KQZ5Nuf5");
     }
 
+    /// <summary>A setting that the bank did not have when an event was scored takes what was published.</summary>
+    [Fact]
+    public void Load_OtherSettings_GivesTheirLogOddsByName()
+    {
+        var state = new StateBlocks();
+        var store = InMemory();
+        Add(store, "first", clock: 1, firstSlot: 1);
+        store.Save(state);
+        foreach (string[] settings in new[] { ["x"], Settings, new[] { "c", "new", "a" }, ["new", "a"] })
+        {
+            store = new AwaitingStore([.. settings], Wait, keepsAssumed: false, memoryBytes: 1 << 17, null);
+            store.Load(state);
+            Assert.True(store.TryFind("first"u8, 1, out var first));
+            Assert.Equal(settings.Select(name => name switch { "a" => 1.25, "b" => 2.25, "c" => 3.25, _ => 0.5 }), store.LogOddsOf(first).ToArray());
+            Assert.Equal("first", Encoding.UTF8.GetString(store.At(first).Id));
+            string id = string.Concat(settings);
+            store.Add(new KeptHeader { IdHash = 1, ScoredAtMicroseconds = 2, LogOdds = 7 }, [.. settings.Select((_, i) => (double)i)], new EncodedVector([9], [1]), Encoding.UTF8.GetBytes(id));
+            var changes = new StateBlocks();
+            store.Save(changes);
+            foreach (var (part, number, bytes) in changes.Changes())
+                if (bytes is null) state.Remove(part, number);
+                else state.Put(part, number, bytes);
+        }
+
+        // Scored by x; by a, b, c; by c, new, a; by new, a.
+        Assert.Equal([7.0, 7], Find("x"));
+        Assert.Equal([7.0, 0], Find("abc"));
+        Assert.Equal([1.0, 2], Find("cnewa"));
+        Assert.Equal([0.0, 1], Find("newa"));
+
+        store.Forget(1 + Wait + 1);
+        Assert.False(store.TryFind("first"u8, 1, out _));
+        store.Save(state);
+        var again = new AwaitingStore(["new", "a"], Wait, keepsAssumed: false, memoryBytes: 1 << 17, null);
+        again.Load(state);
+        Assert.Equal(4, again.Kept);
+
+        double[] Find(string id)
+        {
+            Assert.True(store.TryFind(Encoding.UTF8.GetBytes(id), 1, out var place));
+            return store.LogOddsOf(place).ToArray();
+        }
+    }
+
     private static AwaitingStore InMemory() => Store(null);
 
     // The archive takes what does not fit into two segments of 64 KiB.
-    private static AwaitingStore Store(IBlockArchive? archive) => new(Settings, Wait, keepsAssumed: false, memoryBytes: 1 << 17, archive);
+    private static AwaitingStore Store(IBlockArchive? archive) => new([.. Settings], Wait, keepsAssumed: false, memoryBytes: 1 << 17, archive);
 
     // Every id has the same hash: the worst case, and the one that shows whether ids are compared.
     private static void Add(AwaitingStore store, string id, long clock, int firstSlot) => store.Add(
-        new KeptHeader { IdHash = 1, ScoredAtMicroseconds = clock },
+        new KeptHeader { IdHash = 1, ScoredAtMicroseconds = clock, LogOdds = 0.5 },
         [firstSlot + 0.25, firstSlot + 1.25, firstSlot + 2.25],
         new EncodedVector([firstSlot, firstSlot + 1], [firstSlot + 0.5, -firstSlot - 0.5]),
         Encoding.UTF8.GetBytes(id));
