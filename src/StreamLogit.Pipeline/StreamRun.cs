@@ -1,6 +1,7 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine;
 using StreamLogit.Engine.Health;
+using StreamLogit.Engine.Learning;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Files;
@@ -54,6 +55,9 @@ public sealed class StreamRun : IDisposable
     /// <summary>Whether it goes on from an earlier run.</summary>
     public bool IsResumed { get; private set; }
 
+    /// <summary>What became of the settings of the state that this run goes on from, or null where it begins.</summary>
+    public BankChange? BankChange { get; private set; }
+
     /// <summary>Called within each commit of the loop, when all is written and nothing counts yet; tests die here.</summary>
     internal Action? BeforeCommit
     {
@@ -105,7 +109,7 @@ public sealed class StreamRun : IDisposable
         if (checkpoint is not null)
         {
             // Outputs are cut back last, when nothing else can go wrong any more.
-            Engine.Load(checkpoint.Blocks);
+            BankChange = Engine.Load(checkpoint.Blocks);
             _source.Seek(checkpoint.Position);
             IsResumed = true;
         }

@@ -20,4 +20,7 @@ internal static partial class LogMessages
 
     [LoggerMessage(5, LogLevel.Information, "Stream {Stream}: stopped on request and all is committed")]
     public static partial void Stopped(this ILogger logger, string stream);
+
+    [LoggerMessage(6, LogLevel.Information, "Stream {Stream}: the bank has changed. {Kept} settings go on; started from the blend of the state: [{Started}]; dropped: [{Dropped}]")]
+    public static partial void BankChanged(this ILogger logger, string stream, int kept, string started, string dropped);
 }

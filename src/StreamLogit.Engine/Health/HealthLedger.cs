@@ -28,9 +28,6 @@ internal sealed class HealthLedger
     /// <summary>Labels learned.</summary>
     public long Labelled => _total.Count;
 
-    /// <summary>The sum of their weights.</summary>
-    public double LabelWeight => _total.Weight;
-
     public void CountReject(RejectReason reason) => _rejects[(int)reason]++;
 
     /// <summary>Counts a label against the log-odds that were published for its event.</summary>

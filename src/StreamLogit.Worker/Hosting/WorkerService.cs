@@ -19,6 +19,8 @@ internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostAppli
             var health = run.Health;
             if (run.IsResumed) logger.GoesOn(Stream, health.Records, health.Labelled);
             else logger.Begins(Stream);
+            if (run.BankChange is { IsNone: false } change)
+                logger.BankChanged(Stream, change.Kept.Length, string.Join(", ", change.Started), string.Join(", ", change.Dropped));
 
             using var reports = time.CreateTimer(_ => Report(), null, ReportEvery, ReportEvery);
             await run.RunAsync(stoppingToken);
