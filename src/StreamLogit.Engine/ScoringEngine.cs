@@ -46,11 +46,12 @@ public sealed class ScoringEngine
     {
         Definition = definition;
         Schema = new RecordSchema(definition);
-        _encoder = new FeatureEncoder(definition, Schema);
+        _encoder = new FeatureEncoder(definition, Schema, archive);
         _bank = new Bank(definition.Learning, _encoder.SlotCount, _encoder.FirstDenseSlot);
         _clock = new StreamClock(definition.Record.AheadMicroseconds);
         _awaiting = new AwaitingStore(
-            _bank.Names, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive);
+            _bank.Names, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive,
+            _encoder.LabelKeys.Length);
         _early = new EarlyLabels(definition.Labels.EarlyMicroseconds);
         _health = new HealthLedger(definition.Health);
         _reasons = new ReasonFinder(definition.Features.Length);
@@ -120,6 +121,7 @@ public sealed class ScoringEngine
         Corrected = _events.Corrected,
         TaughtAtOnce = _events.TaughtAtOnce,
         CollidedEvents = _encoder.CollidedEvents,
+        Histories = _encoder.HistoryFigures,
         Settings = [.. Enumerable.Range(0, _bank.SettingCount).Select(FiguresOf)],
     };
 
@@ -251,6 +253,7 @@ public sealed class ScoringEngine
             double weight = double.IsNaN(record.Weight) ? 1 : record.Weight;
             _events.TaughtAtOnce++;
             Learn(record.IdHash, encoded, _logOdds, logOdds, isFresh: true, record.Label, weight, _clock.Microseconds);
+            _encoder.Learn(_encoder.LabelKeys, record.TimeMicroseconds, record.Label, weight);
         }
         else if (IsKept(probability, record.IdHash, out int standsFor))
         {
@@ -263,7 +266,7 @@ public sealed class ScoringEngine
                 Weight = record.Weight,
                 StandsFor = standsFor,
             };
-            var place = _awaiting.Add(header, _logOdds, encoded, id);
+            var place = _awaiting.Add(header, _logOdds, encoded, id, _encoder.LabelKeys);
             while (_early.Take(id, record.IdHash) is { } early) Learn(place, early.Label, early.Weight);
             if (knownAt is not { } time) return;
             _coming.Add(new ComingLabel(time, place.Segment, place.Offset, record.Label));
@@ -361,8 +364,10 @@ public sealed class ScoringEngine
     {
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
+        weight = scored.WeightOf(weight);
+        _encoder.Learn(scored.LabelKeys, header.TimeMicroseconds, label, weight);
         return Learn(
-            header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), header.LogOdds, isFresh: false, label, scored.WeightOf(weight), header.ScoredAtMicroseconds);
+            header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), header.LogOdds, isFresh: false, label, weight, header.ScoredAtMicroseconds);
     }
 
     private LabelCount Learn(
@@ -406,6 +411,8 @@ public sealed class ScoringEngine
         });
         _bank.TakeBack(logOdds, 1 - label, count.Weight);
         _bank.Learn(scored.Vector, logOdds, isFresh: false, label, weight, _clock.Microseconds);
+        _encoder.Learn(scored.LabelKeys, scored.Header.TimeMicroseconds, 1 - label, -count.Weight);
+        _encoder.Learn(scored.LabelKeys, scored.Header.TimeMicroseconds, label, weight);
         _version++;
         _events.Corrected++;
         return _health.CorrectLabel(count, scored.Header.LogOdds, label, weight);
@@ -475,9 +482,6 @@ public sealed class ScoringEngine
     }
 
     /// <summary>What gives every slot its meaning: a state may only be taken up where it is the same.</summary>
-    private string Fingerprint() => string.Join("; ", Definition.Features.Select(f => f switch
-    {
-        NumberFeature number => $"number {number.Name} scale {number.Scale}",
-        _ => $"{f.GetType().Name} {f.Name}",
-    })) + FormattableString.Invariant($"; slots {Definition.Learning.Slots}; seed {Definition.Learning.HashSeed}");
+    private string Fingerprint() => string.Join("; ", Definition.Features.Select(f => f.Identity))
+        + FormattableString.Invariant($"; slots {Definition.Learning.Slots}; seed {Definition.Learning.HashSeed}");
 }

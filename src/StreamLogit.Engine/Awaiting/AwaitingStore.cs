@@ -23,6 +23,7 @@ internal sealed class AwaitingStore
 
     private readonly int _settings;
     private readonly ScoringBanks _banks;
+    private readonly int _labelKeys;
     private readonly long _waitMicroseconds;
     private readonly long _keepMicroseconds;
     private readonly int _hotSegments;
@@ -44,9 +45,12 @@ internal sealed class AwaitingStore
     /// <param name="keepsAssumed">Whether events are kept as long again when their wait is over.</param>
     /// <param name="memoryBytes">Bytes of segments in memory, beyond which they go to the archive.</param>
     /// <param name="archive">The archive, or null where all stays in memory.</param>
-    public AwaitingStore(ImmutableArray<string> settings, long waitMicroseconds, bool keepsAssumed, long memoryBytes, IBlockArchive? archive)
+    /// <param name="labelKeys">How many keys are kept with every event for the histories that learn its label.</param>
+    public AwaitingStore(
+        ImmutableArray<string> settings, long waitMicroseconds, bool keepsAssumed, long memoryBytes, IBlockArchive? archive, int labelKeys = 0)
     {
         _settings = settings.Length;
+        _labelKeys = labelKeys;
         _banks = new ScoringBanks(settings);
         _waitMicroseconds = waitMicroseconds;
         _keepMicroseconds = keepsAssumed ? 2 * waitMicroseconds : waitMicroseconds;
@@ -98,7 +102,7 @@ internal sealed class AwaitingStore
     {
         var segment = SegmentOf(place);
         byte[] bytes = segment.Bytes ?? _reader.Read(place.Segment);
-        return new KeptEvent(bytes.AsSpan(place.Offset, segment.Length - place.Offset), _banks.SettingsOf(place.Segment));
+        return new KeptEvent(bytes.AsSpan(place.Offset, segment.Length - place.Offset), _banks.SettingsOf(place.Segment), _labelKeys);
     }
 
     /// <summary>The log-odds that every setting of the bank gave an event when it was scored; see <see cref="ScoringBanks"/>. Readable as long as the event.</summary>
@@ -122,15 +126,16 @@ internal sealed class AwaitingStore
     }
 
     /// <summary>Adds an event that was scored just now and whose id is not kept. The lengths in the header are filled in here.</summary>
-    public EventPlace Add(KeptHeader header, ReadOnlySpan<double> logOdds, in EncodedVector vector, ReadOnlySpan<byte> id)
+    public EventPlace Add(
+        KeptHeader header, ReadOnlySpan<double> logOdds, in EncodedVector vector, ReadOnlySpan<byte> id, ReadOnlySpan<ulong> labelKeys = default)
     {
         header.Entries = vector.Slots.Length;
         header.IdLength = id.Length;
-        header.TotalBytes = KeptEvent.SizeOf(_settings, header.Entries, id.Length);
+        header.TotalBytes = KeptEvent.SizeOf(_settings, _labelKeys, header.Entries, id.Length);
         var segment = SegmentFor(header.TotalBytes);
         header.Ordinal = segment.Count;
         int offset = segment.Append(header.TotalBytes);
-        KeptEvent.Write(segment.Bytes.AsSpan(offset, header.TotalBytes), header, logOdds, vector, id);
+        KeptEvent.Write(segment.Bytes.AsSpan(offset, header.TotalBytes), header, logOdds, labelKeys, vector, id);
         var place = new EventPlace(_firstSegment + _segments.Count - 1, offset);
         _index.Add(header.IdHash, place);
         Awaiting++;

@@ -5,4 +5,5 @@ namespace StreamLogit.Engine.Decisions;
 /// <param name="Contribution">
 /// What it adds to the log-odds: the sum over its entries of coefficient (value - the value's running mean before this event).
 /// </param>
-public readonly record struct Reason(int Feature, double Contribution);
+/// <param name="Figure">What the feature's <see cref="Definition.FeatureOptions.Words"/> say it with; meaningless where it has none.</param>
+public readonly record struct Reason(int Feature, double Contribution, double Figure = 0);

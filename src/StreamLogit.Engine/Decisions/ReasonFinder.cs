@@ -33,7 +33,7 @@ internal sealed class ReasonFinder(int features)
             if (place == reasons.Length) continue;
             if (found < reasons.Length) found++;
             for (int i = found - 1; i > place; i--) reasons[i] = reasons[i - 1];
-            reasons[place] = new Reason(feature, _contributions[feature]);
+            reasons[place] = new Reason(feature, _contributions[feature], vector.Figures[feature]);
         }
         return found;
     }

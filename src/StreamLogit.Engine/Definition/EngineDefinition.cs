@@ -18,6 +18,9 @@ public sealed record EngineDefinition
     /// <summary>The features, in the order in which they are encoded and summed.</summary>
     public required ImmutableArray<FeatureOptions> Features { get; init; }
 
+    /// <summary>The room for histories.</summary>
+    public HistoryOptions Histories { get; init; } = new();
+
     /// <summary>The bank of settings and what of it is published.</summary>
     public LearningOptions Learning { get; init; } = new();
 

@@ -10,4 +10,7 @@ public sealed record NumberFeature(string Field, NumberScale Scale) : FeatureOpt
 
     /// <summary>One for the value and one for its absence.</summary>
     public override int DenseCoefficients => 2;
+
+    /// <inheritdoc/>
+    public override string Identity => $"number {Name} scale {Scale}";
 }

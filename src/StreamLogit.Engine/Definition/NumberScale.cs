@@ -11,4 +11,13 @@ public enum NumberScale
 
     /// <summary>(x - mean) / standard deviation, both over the events seen before this one.</summary>
     Standard,
+
+    /// <summary>
+    /// 2 q - 1, where q is the share of the values before this one that are smaller, equal ones counted half: -1 for the smallest, 1 for the largest.
+    /// The share is off by at most 0.015 in 99 of 100 cases.
+    /// </summary>
+    Rank,
+
+    /// <summary>ln(p / (1 - p)) less that of the overall rate: for rates only.</summary>
+    LogOdds,
 }

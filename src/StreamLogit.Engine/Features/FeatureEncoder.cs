@@ -1,5 +1,7 @@
 using System.Text;
 using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Features.Histories;
+using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
@@ -14,11 +16,13 @@ internal sealed class FeatureEncoder
     private readonly SlotLedger _ledger;
     private readonly CoefficientNames _names = new();
     private readonly VectorBuilder _vector;
+    private readonly HistoryRoom _histories;
 
-    public FeatureEncoder(EngineDefinition definition, RecordSchema schema)
+    public FeatureEncoder(EngineDefinition definition, RecordSchema schema, IEvictedRows? evicted = null)
     {
         FirstDenseSlot = definition.Learning.Slots;
         var hashed = new HashedSlots(definition.Learning.Slots, definition.Learning.HashSeed);
+        _histories = new HistoryRoom(schema, hashed);
         int next = FirstDenseSlot;
         _features = [.. definition.Features.Select(options =>
         {
@@ -28,7 +32,8 @@ internal sealed class FeatureEncoder
         })];
         _ledger = new SlotLedger(next);
         MaximumEntries = _features.Sum(f => f.MaximumEntries);
-        _vector = new VectorBuilder(_ledger, MaximumEntries);
+        _vector = new VectorBuilder(_ledger, MaximumEntries, _features.Length);
+        _histories.Start(definition.Histories.MemoryBytes, evicted);
     }
 
     /// <summary>Where the slots of numbers and cycles start, which are the last ones.</summary>
@@ -50,15 +55,31 @@ internal sealed class FeatureEncoder
     public VectorBuilder Encode(RecordBatch records, int record)
     {
         _vector.Clear();
+        _histories.Open(records, record);
         for (int i = 0; i < _features.Length; i++)
         {
             _vector.Feature = i;
             _features[i].Encode(records, record, _vector);
         }
+        _histories.Add(records, record);
         Events++;
         if (_vector.HasCollision) CollidedEvents++;
         return _vector;
     }
+
+    /// <summary>The keys of the event encoded last that its label will be learned for, to be kept with the event. Always as many.</summary>
+    public ReadOnlySpan<ulong> LabelKeys => _histories.LabelKeys;
+
+    /// <summary>How the memory of histories is doing.</summary>
+    public HistoryFigures HistoryFigures => _histories.Figures();
+
+    /// <summary>Tells the histories the label of an event that was encoded before.</summary>
+    /// <param name="labelKeys">Its <see cref="LabelKeys"/>.</param>
+    /// <param name="timeMicroseconds">Its time.</param>
+    /// <param name="label">0 or 1.</param>
+    /// <param name="weight">Its importance; below 0 to take back a label that was wrong.</param>
+    public void Learn(ReadOnlySpan<ulong> labelKeys, long timeMicroseconds, int label, double weight) =>
+        _histories.Learn(labelKeys, timeMicroseconds, label, weight);
 
     /// <summary>Every slot that an event has used, with its name, dense slots first.</summary>
     public IEnumerable<(int Slot, string Name)> UsedSlots()
@@ -111,6 +132,7 @@ internal sealed class FeatureEncoder
         changes.Put(Part, 0, bytes.ToArray());
         _ledger.Save(changes);
         _names.Save(changes);
+        _histories.Save(changes);
     }
 
     public void Load(StateBlocks state)
@@ -122,6 +144,7 @@ internal sealed class FeatureEncoder
         foreach (var feature in _features) feature.Load(reader);
         _ledger.Load(state);
         _names.Load(state);
+        _histories.Load(state);
     }
 
     private Feature Create(FeatureOptions options, RecordSchema schema, HashedSlots hashed, int firstSlot) => options switch
@@ -129,6 +152,7 @@ internal sealed class FeatureEncoder
         NumberFeature number => new NumberEncoding(number, schema.IndexOf(number.Field), firstSlot),
         TimeCycleFeature cycle => new TimeCycleEncoding(cycle, firstSlot),
         NumberCycleFeature cycle => new NumberCycleEncoding(cycle, schema.IndexOf(cycle.Field), firstSlot),
+        HistoryFeature history => _histories.Create(history, firstSlot),
         CategoryFeature category => new CategoryEncoding(category, [.. category.Fields.Select(schema.IndexOf)], hashed, _names),
         _ => throw new ArgumentException($"no encoding for {options.GetType().Name}", nameof(options)),
     };

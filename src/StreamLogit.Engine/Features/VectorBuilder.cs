@@ -4,12 +4,14 @@ namespace StreamLogit.Engine.Features;
 /// The vector of one event while it is encoded, and what its reasons need: which feature each entry belongs to and
 /// the sum of the slot's values over all events before this one. One builder is used for every event.
 /// </summary>
-internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries)
+internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int features)
 {
     private readonly int[] _slots = new int[maximumEntries];
     private readonly double[] _values = new double[maximumEntries];
     private readonly int[] _features = new int[maximumEntries];
     private readonly double[] _sumsBefore = new double[maximumEntries];
+
+    private readonly double[] _figures = new double[features];
 
     public int Count { get; private set; }
 
@@ -26,6 +28,12 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries)
 
     /// <summary>For each entry, the sum of its slot's values over the events before this one.</summary>
     public ReadOnlySpan<double> SumsBefore => _sumsBefore.AsSpan(0, Count);
+
+    /// <summary>For each feature of the definition, the figure that a reason names; meaningless where it has no words.</summary>
+    public ReadOnlySpan<double> Figures => _figures;
+
+    /// <summary>Sets the figure of the feature whose entries are being added.</summary>
+    public void SetFigure(double figure) => _figures[Feature] = figure;
 
     public void Clear()
     {

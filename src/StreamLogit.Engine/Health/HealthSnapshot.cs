@@ -53,6 +53,9 @@ public sealed record HealthSnapshot
     /// <summary>Events one of whose categories has its slot from another value.</summary>
     public long CollidedEvents { get; init; }
 
+    /// <summary>How the memory of histories is doing.</summary>
+    public HistoryFigures Histories { get; init; } = new(0, 0, 0, 0, 0);
+
     /// <summary>The figures over all labels.</summary>
     public required HealthFigures Total { get; init; }
 

@@ -23,6 +23,10 @@ public sealed class RecordSchema
                 case CategoryFeature category:
                     foreach (var path in category.Fields) Add(path, FieldUse.Category);
                     break;
+                case HistoryFeature history:
+                    foreach (var path in history.Per) Add(path, FieldUse.Category);
+                    if (history.Of is not null) Add(history.Of, history.Kind is HistoryKind.Distinct or HistoryKind.New ? FieldUse.Category : FieldUse.Number);
+                    break;
             }
         }
         Fields = [.. fields];

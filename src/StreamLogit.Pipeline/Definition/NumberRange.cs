@@ -12,6 +12,8 @@ internal sealed record NumberRange(double Minimum, double Maximum, string InWord
 
     public static NumberRange PositiveToMillion { get; } = new(double.Epsilon, 1e6, "a number above 0, at most 1000000");
 
+    public static NumberRange Any { get; } = new(double.MinValue, double.MaxValue, "a number");
+
     public static NumberRange PositiveToOne { get; } = new(double.Epsilon, 1, "a number above 0, at most 1");
 
     public static NumberRange ZeroToOne { get; } = new(0, 1, "a number from 0 to 1");

@@ -8,7 +8,7 @@ public class ReasonFinderTests
     [Fact]
     public void Find_ThreeFeatures_OrdersByMagnitudeAndSumsEntries()
     {
-        var vector = new VectorBuilder(new SlotLedger(8), 8);
+        var vector = new VectorBuilder(new SlotLedger(8), 8, features: 8);
         foreach (var (feature, slot, value) in new[] { (0, 0, 2.0), (1, 1, 1.0), (1, 2, 1.0), (2, 3, 0.5) })
         {
             vector.Feature = feature;
@@ -23,7 +23,7 @@ public class ReasonFinderTests
     [Fact]
     public void Find_ValueAtItsRunningMean_ContributesNothing()
     {
-        var vector = new VectorBuilder(new SlotLedger(8), 8);
+        var vector = new VectorBuilder(new SlotLedger(8), 8, features: 8);
         for (int i = 0; i < 3; i++)
         {
             vector.Clear();

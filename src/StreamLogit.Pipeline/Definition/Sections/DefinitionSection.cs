@@ -13,6 +13,7 @@ internal static class DefinitionSection
         string? stream = definition.Required("stream", "it names the stream")?.Text();
         var record = definition.Optional("record");
         var features = definition.Required("features", "it lists what the model sees of an event");
+        var histories = definition.Optional("histories");
         var learning = definition.Optional("learning");
         var labels = LabelsSection.Read(definition.Optional("labels"));
         var decision = DecisionSection.Read(definition.Optional("decision"));

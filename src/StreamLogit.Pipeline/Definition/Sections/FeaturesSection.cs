@@ -13,17 +13,19 @@ internal static class FeaturesSection
     private const long LongestPeriodMicroseconds = 36_525L * 24 * 3600 * 1_000_000;
 
     /// <summary>The features, or null and errors.</summary>
-    public static ImmutableArray<FeatureOptions>? Read(ValueReader? value, RecordOptions record)
+    public static ImmutableArray<FeatureOptions>? Read(ValueReader? value, RecordOptions record, LabelOptions labels)
     {
         if (value?.List("features", MostFeatures) is not { } items) return null;
         var features = ImmutableArray.CreateBuilder<FeatureOptions>();
         var paths = new Dictionary<string, string>(StringComparer.Ordinal);
         foreach (var item in items)
         {
-            if (ReadFeature(item, record) is not { } feature) continue;
-            string identity = IdentityOf(feature);
-            if (paths.TryAdd(identity, item.Path)) features.Add(feature);
-            else item.Error($"is the same feature as {paths[identity]}: keep one");
+            foreach (var feature in ReadFeatures(item, record, labels))
+            {
+                string identity = IdentityOf(feature);
+                if (paths.TryAdd(identity, item.Path)) features.Add(feature);
+                else item.Error($"is the same feature as {paths[identity]}: keep one");
+            }
         }
         return features.Count == items.Length ? features.ToImmutable() : null;
     }
@@ -31,21 +33,27 @@ internal static class FeaturesSection
     // What two features share when their coefficients would have the same names, or always the same values.
     private static string IdentityOf(FeatureOptions feature) => feature switch
     {
+        HistoryFeature history => FormattableString.Invariant(
+            $"{history.Kind} of {history.Of} per {string.Join(" & ", history.Per)} {history.HalfLifeMicroseconds} {history.WithinMicroseconds}"),
         TimeCycleFeature cycle => FormattableString.Invariant($"time of {cycle.PeriodMicroseconds}"),
         _ => $"{feature.GetType().Name} {feature.Name}",
     };
 
-    private static FeatureOptions? ReadFeature(ValueReader item, RecordOptions record)
+    private static IEnumerable<FeatureOptions> ReadFeatures(ValueReader item, RecordOptions record, LabelOptions labels)
     {
-        if (item.Object() is not { } section || section.Kind("feature", "number", "category", "cycle") is not var (kind, field)) return null;
-        FeatureOptions? feature = kind switch
+        if (item.Object() is not { } section) return [];
+        if (section.Kind("feature", "number", "category", "cycle", "history", "bucket", "text") is not var (kind, field)) return [];
+        IEnumerable<FeatureOptions?> features = kind switch
         {
-            "number" => ReadNumber(section, field, record),
-            "category" => ReadCategory(field, record),
-            _ => ReadCycle(section, field, record),
+            "number" => [ReadNumber(section, field, record)],
+            "category" => [ReadFields(field, record) is { } fields ? new CategoryFeature(fields) : null],
+            "history" => HistoryFeatures.Read(section, field, labels, value => Field(value, record), value => ReadFields(value, record)),
+            "bucket" => [BucketFeatures.Read(section, Field(field, record))],
+            "text" => [TextFeatures.Read(section, Field(field, record))],
+            _ => [ReadCycle(section, field, record)],
         };
         section.End();
-        return feature;
+        return features.OfType<FeatureOptions>();
     }
 
     private static NumberFeature? ReadNumber(ObjectReader section, ValueReader value, RecordOptions record)
@@ -54,14 +62,14 @@ internal static class FeaturesSection
         var scale = NumberScale.None;
         if (section.Optional("scale") is { } written)
         {
-            var read = written.OneOf(("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard));
+            var read = written.OneOf(("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard), ("rank", NumberScale.Rank));
             if (read is null) return null;
             scale = read.Value;
         }
         return field is null ? null : new NumberFeature(field, scale);
     }
 
-    private static CategoryFeature? ReadCategory(ValueReader value, RecordOptions record)
+    private static ImmutableArray<string>? ReadFields(ValueReader value, RecordOptions record)
     {
         if (value.OneOrList("paths of fields", MostCrossedFields) is not { } items) return null;
         var fields = ImmutableArray.CreateBuilder<string>();
@@ -71,7 +79,7 @@ internal static class FeaturesSection
             if (fields.Contains(field)) item.Error($"the field {Quoted.Text(field)} is there twice: keep one");
             else fields.Add(field);
         }
-        return fields.Count == items.Length ? new CategoryFeature(fields.ToImmutable()) : null;
+        return fields.Count == items.Length ? fields.ToImmutable() : null;
     }
 
     private static FeatureOptions? ReadCycle(ObjectReader section, ValueReader value, RecordOptions record)
