@@ -1,6 +1,7 @@
 using System.Text;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Features.Histories;
+using StreamLogit.Engine.Features.Text;
 using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Engine.Persistence;
@@ -153,6 +154,8 @@ internal sealed class FeatureEncoder
         TimeCycleFeature cycle => new TimeCycleEncoding(cycle, firstSlot),
         NumberCycleFeature cycle => new NumberCycleEncoding(cycle, schema.IndexOf(cycle.Field), firstSlot),
         HistoryFeature history => _histories.Create(history, firstSlot),
+        BucketFeature bucket => new BucketEncoding(bucket, schema.IndexOf(bucket.Field), firstSlot),
+        TextFeature text => new TextEncoding(text, schema.IndexOf(text.Field), hashed, _names, firstSlot),
         CategoryFeature category => new CategoryEncoding(category, [.. category.Fields.Select(schema.IndexOf)], hashed, _names),
         _ => throw new ArgumentException($"no encoding for {options.GetType().Name}", nameof(options)),
     };

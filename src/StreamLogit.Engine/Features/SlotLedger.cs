@@ -27,12 +27,13 @@ internal sealed class SlotLedger(int slotCount)
 
     /// <param name="slot">The slot.</param>
     /// <param name="tag">Further bits of the value's hash, not 0, by which values that share a slot are told apart.</param>
-    /// <param name="sumBefore">How many events had a value at this slot before.</param>
-    public SlotUse AddHashed(int slot, uint tag, out double sumBefore)
+    /// <param name="value">The value there.</param>
+    /// <param name="sumBefore">The sum of the slot's values before.</param>
+    public SlotUse AddHashed(int slot, uint tag, double value, out double sumBefore)
     {
         ref var entry = ref _entries[slot];
         sumBefore = entry.ValueSum;
-        entry.ValueSum = sumBefore + 1;
+        entry.ValueSum = sumBefore + value;
         _dirty.Mark(slot);
         if (entry.Tag == tag) return SlotUse.Again;
         if (entry.Tag != 0) return SlotUse.Collision;

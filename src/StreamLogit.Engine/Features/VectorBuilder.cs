@@ -48,13 +48,13 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int f
         Append(slot, value);
     }
 
-    /// <summary>Adds an entry of value 1 at a hashed slot.</summary>
+    /// <summary>Adds an entry at a hashed slot.</summary>
     /// <returns>Whether the slot is used for the first time, so that it wants a name.</returns>
-    public bool AddHashed(int slot, uint tag)
+    public bool AddHashed(int slot, uint tag, double value = 1)
     {
-        var use = ledger.AddHashed(slot, tag, out _sumsBefore[Count]);
+        var use = ledger.AddHashed(slot, tag, value, out _sumsBefore[Count]);
         HasCollision |= use == SlotUse.Collision;
-        Append(slot, 1);
+        Append(slot, value);
         return use == SlotUse.First;
     }
 

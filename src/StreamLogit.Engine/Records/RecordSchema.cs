@@ -20,6 +20,8 @@ public sealed class RecordSchema
             {
                 case NumberFeature number: Add(number.Field, FieldUse.Number); break;
                 case NumberCycleFeature cycle: Add(cycle.Field, FieldUse.Number); break;
+                case BucketFeature bucket: Add(bucket.Field, FieldUse.Number); break;
+                case TextFeature text: Add(text.Field, FieldUse.Category); break;
                 case CategoryFeature category:
                     foreach (var path in category.Fields) Add(path, FieldUse.Category);
                     break;
