@@ -18,6 +18,9 @@ public sealed record BucketFeature(string Field) : FeatureOptions
     /// <inheritdoc/>
     public override string Name => Edges.IsEmpty ? FormattableString.Invariant($"{Field} in {Quantiles} quantiles") : FormattableString.Invariant($"{Field} in {Edges.Length + 1} buckets");
 
+    /// <summary>One for every bucket and one for a missing number.</summary>
+    public override int DenseCoefficients => (Edges.IsEmpty ? Quantiles : Edges.Length + 1) + 1;
+
     /// <inheritdoc/>
     public override string Identity => $"{base.Identity} {string.Join(' ', Edges.Select(edge => edge.ToString("R", System.Globalization.CultureInfo.InvariantCulture)))}";
 }

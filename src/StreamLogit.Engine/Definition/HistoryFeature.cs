@@ -23,12 +23,12 @@ public sealed record HistoryFeature(HistoryKind Kind, ImmutableArray<string> Per
     public long WithinMicroseconds { get; init; }
 
     /// <summary>
-    /// How the figure is scaled. Default <see cref="NumberScale.Log1p"/> for count, sum, mean, gap and distinct, <see cref="NumberScale.LogOdds"/> for rate,
+    /// How the figure is scaled. Default <see cref="NumberScale.StandardLog1p"/> for count, sum, mean, gap and distinct, <see cref="NumberScale.LogOdds"/> for rate,
     /// <see cref="NumberScale.None"/> for the others.
     /// </summary>
     public NumberScale Scale { get; init; } = Kind switch
     {
-        HistoryKind.Count or HistoryKind.Sum or HistoryKind.Mean or HistoryKind.Distinct or HistoryKind.Gap => NumberScale.Log1p,
+        HistoryKind.Count or HistoryKind.Sum or HistoryKind.Mean or HistoryKind.Distinct or HistoryKind.Gap => NumberScale.StandardLog1p,
         HistoryKind.Rate => NumberScale.LogOdds,
         _ => NumberScale.None,
     };

@@ -12,9 +12,12 @@ public enum NumberScale
     /// <summary>(x - mean) / standard deviation, both over the events seen before this one.</summary>
     Standard,
 
+    /// <summary><see cref="Standard"/> of <see cref="Log1p"/>.</summary>
+    StandardLog1p,
+
     /// <summary>
     /// 2 q - 1, where q is the share of the values before this one that are smaller, equal ones counted half: -1 for the smallest, 1 for the largest.
-    /// The share is off by at most 0.015 in 99 of 100 cases.
+    /// The share is off by at most 0.02 in 99 of 100 cases.
     /// </summary>
     Rank,
 

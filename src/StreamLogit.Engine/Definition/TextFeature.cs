@@ -21,6 +21,9 @@ public sealed record TextFeature(string Field) : FeatureOptions
     /// <inheritdoc/>
     public override string Name => $"text of {Field}";
 
+    /// <summary>One for a missing text.</summary>
+    public override int DenseCoefficients => 1;
+
     /// <inheritdoc/>
     public override string Identity => FormattableString.Invariant($"{base.Identity} words {string.Join(' ', WordLengths)} characters {string.Join(' ', CharacterLengths)} most {Most}");
 }

@@ -10,13 +10,15 @@ internal sealed class Scaling(NumberScale scale)
     private const double LargestStandardised = 1e6;
 
     private readonly QuantileSketch? _quantiles = scale == NumberScale.Rank ? new QuantileSketch() : null;
+    private readonly bool _isStandard = scale is NumberScale.Standard or NumberScale.StandardLog1p;
     private RunningMoments _moments;
 
     /// <summary>The scaled value of a number, which is taken in afterwards.</summary>
     public double Next(double number)
     {
+        if (scale is NumberScale.Log1p or NumberScale.StandardLog1p) number = Math.CopySign(Elementary.Log1p(Math.Abs(number)), number);
         double scaled = Scaled(number);
-        if (scale == NumberScale.Standard) _moments.Add(number);
+        if (_isStandard) _moments.Add(number);
         _quantiles?.Add(number);
         return scaled;
     }
@@ -24,7 +26,7 @@ internal sealed class Scaling(NumberScale scale)
     public void Save(BinaryWriter writer)
     {
         _quantiles?.Save(writer);
-        if (scale != NumberScale.Standard) return;
+        if (!_isStandard) return;
         writer.Write(_moments.Count);
         writer.Write(_moments.Mean);
         writer.Write(_moments.SumOfSquares);
@@ -33,7 +35,7 @@ internal sealed class Scaling(NumberScale scale)
     public void Load(BinaryReader reader)
     {
         _quantiles?.Load(reader);
-        if (scale != NumberScale.Standard) return;
+        if (!_isStandard) return;
         _moments.Count = reader.ReadInt64();
         _moments.Mean = reader.ReadDouble();
         _moments.SumOfSquares = reader.ReadDouble();
@@ -41,9 +43,8 @@ internal sealed class Scaling(NumberScale scale)
 
     private double Scaled(double number) => scale switch
     {
-        NumberScale.None => number,
-        NumberScale.Log1p => Math.CopySign(Elementary.Log1p(Math.Abs(number)), number),
-        NumberScale.Standard => Standardised(number),
+        NumberScale.None or NumberScale.Log1p => number,
+        NumberScale.Standard or NumberScale.StandardLog1p => Standardised(number),
         NumberScale.Rank => 2 * _quantiles!.ShareBelow(number) - 1,
         _ => throw new InvalidOperationException($"{scale} is no scale of a number"),
     };

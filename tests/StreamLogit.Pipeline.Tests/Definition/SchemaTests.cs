@@ -81,6 +81,7 @@ public sealed partial class SchemaTests
     [Theory]
     [InlineData("record", "maxBytes")]
     [InlineData("record", "maxDepth")]
+    [InlineData("histories", "memoryMiB")]
     [InlineData("learning", "hashSeed")]
     [InlineData("health", "lastLabels")]
     [InlineData("scores", "reasons")]
@@ -122,6 +123,7 @@ public sealed partial class SchemaTests
 
         Assert.Equal(absent.Engine.Record with { LabelValues = read.Engine.Record.LabelValues }, read.Engine.Record);
         Assert.Equal(absent.Engine.Record.LabelValues.OrderBy(pair => pair.Key), read.Engine.Record.LabelValues.OrderBy(pair => pair.Key));
+        Assert.Equal(absent.Engine.Histories, read.Engine.Histories);
         Assert.Equal(absent.Engine.Learning, read.Engine.Learning);
         Assert.Equal(absent.Engine.Labels, read.Engine.Labels);
         Assert.Equal(absent.Engine.Decision, read.Engine.Decision);

@@ -27,7 +27,7 @@ internal static class DefinitionSection
 
         var files = new FilePaths(folder);
         var recordOptions = RecordSection.Read(record, labels);
-        var featureOptions = FeaturesSection.Read(features, recordOptions);
+        var featureOptions = FeaturesSection.Read(features, recordOptions, labels);
         var (learningOptions, warmStartPath) = LearningSection.Read(learning, featureOptions, files, use);
         var sourceOptions = SourceSection.Read(source, files);
         var (output, decisionOptions) = ScoresSection.Read(scores, decision, files, use);
@@ -38,6 +38,7 @@ internal static class DefinitionSection
                 Stream = stream ?? "",
                 Record = recordOptions,
                 Features = featureOptions ?? [],
+                Histories = HistoriesSection.Read(histories),
                 Learning = learningOptions,
                 Labels = labels,
                 Decision = decisionOptions,

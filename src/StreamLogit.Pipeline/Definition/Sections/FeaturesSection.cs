@@ -18,16 +18,20 @@ internal static class FeaturesSection
         if (value?.List("features", MostFeatures) is not { } items) return null;
         var features = ImmutableArray.CreateBuilder<FeatureOptions>();
         var paths = new Dictionary<string, string>(StringComparer.Ordinal);
+        bool isRight = true;
         foreach (var item in items)
         {
+            int before = features.Count;
             foreach (var feature in ReadFeatures(item, record, labels))
             {
                 string identity = IdentityOf(feature);
-                if (paths.TryAdd(identity, item.Path)) features.Add(feature);
+                isRight &= paths.TryAdd(identity, item.Path);
+                if (paths[identity] == item.Path) features.Add(feature);
                 else item.Error($"is the same feature as {paths[identity]}: keep one");
             }
+            isRight &= features.Count > before;
         }
-        return features.Count == items.Length ? features.ToImmutable() : null;
+        return isRight ? features.ToImmutable() : null;
     }
 
     // What two features share when their coefficients would have the same names, or always the same values.
@@ -62,7 +66,7 @@ internal static class FeaturesSection
         var scale = NumberScale.None;
         if (section.Optional("scale") is { } written)
         {
-            var read = written.OneOf(("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard), ("rank", NumberScale.Rank));
+            var read = written.OneOf(("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard), ("standard-log1p", NumberScale.StandardLog1p), ("rank", NumberScale.Rank));
             if (read is null) return null;
             scale = read.Value;
         }

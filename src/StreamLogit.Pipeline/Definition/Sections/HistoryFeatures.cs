@@ -74,7 +74,7 @@ internal static class HistoryFeatures
     {
         if (scale is null) return null;
         (string, NumberScale)[] known =
-            [("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard), ("rank", NumberScale.Rank), ("log-odds", NumberScale.LogOdds)];
+            [("none", NumberScale.None), ("log1p", NumberScale.Log1p), ("standard", NumberScale.Standard), ("standard-log1p", NumberScale.StandardLog1p), ("rank", NumberScale.Rank), ("log-odds", NumberScale.LogOdds)];
         var read = scale.OneOf(known);
         if (read != NumberScale.LogOdds || kind == HistoryKind.Rate) return read;
         scale.Error("only a history of the kind \"rate\" takes the scale \"log-odds\": name another");
@@ -89,7 +89,7 @@ internal static class HistoryFeatures
             : [];
     }
 
-    private static IEnumerable<HistoryFeature> ReadHalfLives(HistoryFeature feature, ValueReader halfLife)
+    private static List<HistoryFeature> ReadHalfLives(HistoryFeature feature, ValueReader halfLife)
     {
         var features = new List<HistoryFeature>();
         foreach (var item in halfLife.OneOrList("durations", MostHalfLives) ?? [])
