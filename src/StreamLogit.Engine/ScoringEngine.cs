@@ -3,6 +3,7 @@ using StreamLogit.Engine.Awaiting;
 using StreamLogit.Engine.Decisions;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Features.Histories;
 using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Engine.Numerics;
@@ -76,7 +77,10 @@ public sealed class ScoringEngine
     public LabelledEventTaker? Corrected { get; set; }
 
     /// <summary>The parts of the state that the engine reads from its archive, where it has one, and not from the blocks that it loads.</summary>
-    public static IReadOnlyList<string> ArchivedParts { get; } = [AwaitingStore.SegmentsPart];
+    public static IReadOnlyList<string> ArchivedParts { get; } = [AwaitingStore.SegmentsPart, KeyTable.EvictedPart];
+
+    /// <summary>The one of them that has very many small blocks, of about a hundred bytes.</summary>
+    public static string SmallBlocksPart => KeyTable.EvictedPart;
 
     /// <summary>The slots that events have used so far, with their names.</summary>
     public IEnumerable<(int Slot, string Name)> UsedSlots => _encoder.UsedSlots();
@@ -181,6 +185,7 @@ public sealed class ScoringEngine
     public BankChange Load(StateBlocks state)
     {
         var change = LoadModel(state);
+        _encoder.LoadHistories(state);
         _awaiting.Load(state);
         _early.Load(state);
         _coming.Load(state);

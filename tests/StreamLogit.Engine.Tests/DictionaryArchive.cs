@@ -20,6 +20,13 @@ internal sealed class DictionaryArchive(DictionaryArchive? saved = null) : IBloc
         return bytes.Length;
     }
 
+    public bool TryRead(string part, long number, ref byte[] target, out int length)
+    {
+        bool isThere = _blocks.Find(part, number) is not null || saved?._blocks.Find(part, number) is not null;
+        length = isThere ? Read(part, number, ref target) : 0;
+        return isThere;
+    }
+
     public void Remove(string part, long number) => _blocks.Remove(part, number);
 
     public IEnumerable<long> Numbers(string part) =>

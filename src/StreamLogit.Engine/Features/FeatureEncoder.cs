@@ -19,7 +19,7 @@ internal sealed class FeatureEncoder
     private readonly VectorBuilder _vector;
     private readonly HistoryRoom _histories;
 
-    public FeatureEncoder(EngineDefinition definition, RecordSchema schema, IEvictedRows? evicted = null)
+    public FeatureEncoder(EngineDefinition definition, RecordSchema schema, IBlockArchive? archive = null)
     {
         FirstDenseSlot = definition.Learning.Slots;
         var hashed = new HashedSlots(definition.Learning.Slots, definition.Learning.HashSeed);
@@ -34,7 +34,7 @@ internal sealed class FeatureEncoder
         _ledger = new SlotLedger(next);
         MaximumEntries = _features.Sum(f => f.MaximumEntries);
         _vector = new VectorBuilder(_ledger, MaximumEntries, _features.Length);
-        _histories.Start(definition.Histories.MemoryBytes, evicted);
+        _histories.Start(definition.Histories.MemoryBytes, archive);
     }
 
     /// <summary>Where the slots of numbers and cycles start, which are the last ones.</summary>
@@ -123,6 +123,9 @@ internal sealed class FeatureEncoder
         }
     }
 
+    /// <summary>Takes up what is remembered of keys, after <see cref="Load"/>.</summary>
+    public void LoadHistories(StateBlocks state) => _histories.Load(state);
+
     public void Save(StateBlocks changes)
     {
         using var bytes = new MemoryStream();
@@ -136,6 +139,7 @@ internal sealed class FeatureEncoder
         _histories.Save(changes);
     }
 
+    /// <summary>Takes up a saved state, but for the histories.</summary>
     public void Load(StateBlocks state)
     {
         byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException($"the state has no {Part}");
@@ -145,7 +149,6 @@ internal sealed class FeatureEncoder
         foreach (var feature in _features) feature.Load(reader);
         _ledger.Load(state);
         _names.Load(state);
-        _histories.Load(state);
     }
 
     private Feature Create(FeatureOptions options, RecordSchema schema, HashedSlots hashed, int firstSlot) => options switch

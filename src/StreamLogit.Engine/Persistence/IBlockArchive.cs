@@ -14,6 +14,10 @@ public interface IBlockArchive
     /// <exception cref="InvalidStateException">There is no such block.</exception>
     int Read(string part, long number, ref byte[] target);
 
+    /// <summary>Reads a block into the front of <paramref name="target"/>, which is made longer where it is too short.</summary>
+    /// <returns>Whether there is such a block; <paramref name="length"/> is its length in bytes.</returns>
+    bool TryRead(string part, long number, ref byte[] target, out int length);
+
     /// <summary>Drops a block.</summary>
     void Remove(string part, long number);
 

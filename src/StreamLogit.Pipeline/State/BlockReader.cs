@@ -10,12 +10,15 @@ internal sealed class BlockReader : IDisposable
 
     public BlockReader(string path) => _database = StateDatabase.Open(path, SqliteOpenMode.ReadOnly);
 
-    public int Read(string part, long number, ref byte[] target)
+    public int Read(string part, long number, ref byte[] target) =>
+        Find(part, number, ref target) ?? throw new InvalidStateException($"the state has no block {number} of its part '{part}'");
+
+    /// <summary>The length of a block, or null where there is no such block.</summary>
+    public int? Find(string part, long number, ref byte[] target)
     {
         try
         {
-            return _database.ReadBlock(part, number, ref target)
-                ?? throw new InvalidStateException($"the state has no block {number} of its part '{part}'");
+            return _database.ReadBlock(part, number, ref target);
         }
         catch (SqliteException e)
         {

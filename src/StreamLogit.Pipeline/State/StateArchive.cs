@@ -41,7 +41,13 @@ public sealed class StateArchive : IBlockArchive, IDisposable
     public void Remove(string part, long number) => _next.Remove(part, number);
 
     /// <inheritdoc/>
-    public int Read(string part, long number, ref byte[] target)
+    public int Read(string part, long number, ref byte[] target) =>
+        TryRead(part, number, ref target, out int length)
+            ? length
+            : throw new InvalidStateException($"the state has no block {number} of its part '{part}'");
+
+    /// <inheritdoc/>
+    public bool TryRead(string part, long number, ref byte[] target, out int length)
     {
         byte[]? bytes = _next.Find(part, number);
         if (bytes is null)
@@ -51,10 +57,16 @@ public sealed class StateArchive : IBlockArchive, IDisposable
                 for (int i = _taken.Count - 1; i >= 0 && bytes is null; i--) bytes = _taken[i].Find(part, number);
             }
         }
-        if (bytes is null) return _committed.Read(part, number, ref target);
-        if (target.Length < bytes.Length) target = new byte[bytes.Length];
+        if (bytes is null)
+        {
+            int? found = _committed.Find(part, number, ref target);
+            length = found ?? 0;
+            return found is not null;
+        }
+        length = bytes.Length;
+        if (target.Length < length) target = new byte[length];
         bytes.CopyTo(target, 0);
-        return bytes.Length;
+        return true;
     }
 
     /// <inheritdoc/>

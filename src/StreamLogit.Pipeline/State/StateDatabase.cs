@@ -1,6 +1,7 @@
 using System.Collections.Immutable;
 using System.IO.Hashing;
 using Microsoft.Data.Sqlite;
+using StreamLogit.Engine;
 using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Pipeline.State;
@@ -8,7 +9,7 @@ namespace StreamLogit.Pipeline.State;
 /// <summary>The tables of a state.</summary>
 /// <remarks>
 /// SQLite does not check what it reads for flipped bits, and a coefficient with a flipped bit looks like any other; so every block
-/// carries its XXH3.
+/// carries its XXH3. The one part that has very many small blocks has a table for itself, in which a block costs a few bytes besides its own.
 /// </remarks>
 internal sealed class StateDatabase : IDisposable
 {
@@ -16,12 +17,16 @@ internal sealed class StateDatabase : IDisposable
     public const string FileName = "state.db";
 
     private const string ReadBlockSql = "SELECT hash, bytes FROM blocks WHERE part = $part AND number = $number";
+    private const string ReadSmallBlockSql = "SELECT hash, bytes FROM small_blocks WHERE number = $number";
     private const int MostFreePages = 4096;
 
     private readonly SqliteConnection _connection;
     private readonly SqliteCommand _putBlock;
     private readonly SqliteCommand _removeBlock;
     private readonly SqliteCommand _readBlock;
+    private readonly SqliteCommand _putSmallBlock;
+    private readonly SqliteCommand _removeSmallBlock;
+    private readonly SqliteCommand _readSmallBlock;
 
     private StateDatabase(string path, SqliteConnection connection)
     {
@@ -31,6 +36,10 @@ internal sealed class StateDatabase : IDisposable
             + "ON CONFLICT(part, number) DO UPDATE SET hash = excluded.hash, bytes = excluded.bytes", "$part", "$number", "$hash", "$bytes");
         _readBlock = Command(ReadBlockSql, "$part", "$number");
         _removeBlock = Command("DELETE FROM blocks WHERE part = $part AND number = $number", "$part", "$number");
+        _putSmallBlock = Command("INSERT INTO small_blocks(number, hash, bytes) VALUES ($number, $hash, $bytes) "
+            + "ON CONFLICT(number) DO UPDATE SET hash = excluded.hash, bytes = excluded.bytes", "$number", "$hash", "$bytes");
+        _readSmallBlock = Command(ReadSmallBlockSql, "$number");
+        _removeSmallBlock = Command("DELETE FROM small_blocks WHERE number = $number", "$number");
     }
 
     /// <summary>Where it lies.</summary>
@@ -58,6 +67,16 @@ internal sealed class StateDatabase : IDisposable
             connection.Dispose();
             throw;
         }
+    }
+
+    /// <summary>Opens a new database that need not outlive the process.</summary>
+    /// <exception cref="SqliteException">It cannot be made.</exception>
+    public static StateDatabase OpenTemporary(string path)
+    {
+        var database = Open(path, SqliteOpenMode.ReadWriteCreate);
+        database.Execute("PRAGMA journal_mode = OFF");
+        database.Execute("PRAGMA synchronous = OFF");
+        return database;
     }
 
     /// <summary>Begins a transaction. Disposing of it without a commit takes all its writes back.</summary>
@@ -135,12 +154,13 @@ internal sealed class StateDatabase : IDisposable
     }
 
     /// <summary>The length of a block, which is read into the front of <paramref name="target"/>; null where there is no such block.</summary>
-    public int? ReadBlock(string part, long number, ref byte[] target) => ReadBlock(_readBlock, part, number, ref target);
+    public int? ReadBlock(string part, long number, ref byte[] target) =>
+        ReadBlock(IsSmall(part) ? _readSmallBlock : _readBlock, part, number, ref target);
 
     private int? ReadBlock(SqliteCommand command, string part, long number, ref byte[] target)
     {
-        command.Parameters[0].Value = part;
-        command.Parameters[1].Value = number;
+        if (!IsSmall(part)) command.Parameters[0].Value = part;
+        command.Parameters[command.Parameters.Count - 1].Value = number;
         using var reader = command.ExecuteReader();
         if (!reader.Read()) return null;
         int length = (int)reader.GetBytes(1, 0, null, 0, 0);
@@ -154,7 +174,8 @@ internal sealed class StateDatabase : IDisposable
     /// <summary>The numbers of the blocks of a part, in their order.</summary>
     public IReadOnlyList<long> ReadNumbers(string part)
     {
-        using var command = Command("SELECT number FROM blocks WHERE part = $part ORDER BY number", "$part");
+        string sql = IsSmall(part) ? "SELECT number FROM small_blocks ORDER BY number" : "SELECT number FROM blocks WHERE part = $part ORDER BY number";
+        using var command = Command(sql, "$part");
         command.Parameters[0].Value = part;
         using var reader = command.ExecuteReader();
         var numbers = new List<long>();
@@ -169,6 +190,9 @@ internal sealed class StateDatabase : IDisposable
         using var reader = command.ExecuteReader();
         var parts = new List<StatePart>();
         while (reader.Read()) parts.Add(new StatePart(reader.GetString(0), reader.GetInt64(1), reader.GetInt64(2)));
+        using var small = Command("SELECT count(*), sum(length(bytes)) FROM small_blocks HAVING count(*) > 0");
+        using var smallReader = small.ExecuteReader();
+        if (smallReader.Read()) parts.Add(new StatePart(ScoringEngine.SmallBlocksPart, smallReader.GetInt64(0), smallReader.GetInt64(1)));
         return parts;
     }
 
@@ -187,17 +211,18 @@ internal sealed class StateDatabase : IDisposable
 
     public void WriteBlocks(StateBlocks changes, SqliteTransaction transaction)
     {
-        _putBlock.Transaction = transaction;
-        _removeBlock.Transaction = transaction;
+        foreach (var command in new[] { _putBlock, _removeBlock, _putSmallBlock, _removeSmallBlock }) command.Transaction = transaction;
         foreach (var (part, number, bytes) in changes.Changes())
         {
-            var command = bytes is null ? _removeBlock : _putBlock;
-            command.Parameters[0].Value = part;
-            command.Parameters[1].Value = number;
+            bool isSmall = IsSmall(part);
+            var command = bytes is null ? (isSmall ? _removeSmallBlock : _removeBlock) : isSmall ? _putSmallBlock : _putBlock;
+            int next = 0;
+            if (!isSmall) command.Parameters[next++].Value = part;
+            command.Parameters[next++].Value = number;
             if (bytes is not null)
             {
-                command.Parameters[2].Value = Hash(bytes);
-                command.Parameters[3].Value = bytes;
+                command.Parameters[next++].Value = Hash(bytes);
+                command.Parameters[next].Value = bytes;
             }
             command.ExecuteNonQuery();
         }
@@ -208,8 +233,13 @@ internal sealed class StateDatabase : IDisposable
         _putBlock.Dispose();
         _removeBlock.Dispose();
         _readBlock.Dispose();
+        _putSmallBlock.Dispose();
+        _removeSmallBlock.Dispose();
+        _readSmallBlock.Dispose();
         _connection.Dispose();
     }
+
+    private static bool IsSmall(string part) => part == ScoringEngine.SmallBlocksPart;
 
     private static long Hash(ReadOnlySpan<byte> bytes) => unchecked((long)XxHash3.HashToUInt64(bytes));
 

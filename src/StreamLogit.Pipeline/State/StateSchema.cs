@@ -44,6 +44,7 @@ internal static class StateSchema
             CREATE TABLE outputs(name TEXT PRIMARY KEY, mark INTEGER NOT NULL) WITHOUT ROWID;
             CREATE TABLE blocks(part TEXT NOT NULL, number INTEGER NOT NULL, hash INTEGER NOT NULL, bytes BLOB NOT NULL,
                 PRIMARY KEY(part, number));
+            CREATE TABLE small_blocks(number INTEGER PRIMARY KEY, hash INTEGER NOT NULL, bytes BLOB NOT NULL);
             PRAGMA application_id = {ApplicationId};
             PRAGMA user_version = {FormatVersion};
             COMMIT;

@@ -43,19 +43,19 @@ internal sealed class HistoryRoom(RecordSchema schema, HashedSlots hashed)
             HistoryKind.Gap => new GapHistory(options, table, firstSlot),
             HistoryKind.Distinct => new DistinctHistory(options, table, layout.With(new DistinctValues(field, options.Values, halfLife)), firstSlot),
             HistoryKind.New => new NewHistory(options, table, _clock, firstSlot),
-            HistoryKind.Rate => new RateHistory(options, table, layout.With(new LabelCount(halfLife)), OverallOf(halfLife), firstSlot),
+            HistoryKind.Rate => new RateHistory(options, table, layout.With(new KnownLabels(halfLife)), OverallOf(halfLife), firstSlot),
             _ => throw new ArgumentException($"no history of the kind {options.Kind}", nameof(options)),
         };
     }
 
     /// <summary>Makes the tables ready, when all histories are made.</summary>
     /// <param name="memoryBytes">The memory for their rows.</param>
-    /// <param name="evicted">Where rows go that memory has no room for, or null where there is to be room for all.</param>
-    public void Start(long memoryBytes, IEvictedRows? evicted)
+    /// <param name="archive">Where rows go that memory has no room for, or null where there is to be room for all.</param>
+    public void Start(long memoryBytes, IBlockArchive? archive)
     {
         _tables = [.. _byFields.Values];
         _memory = new HistoryMemory(memoryBytes, Math.Max(1, _tables.Length));
-        for (int i = 0; i < _tables.Length; i++) _tables[i].Start(FormattableString.Invariant($"{Part}/{i}"), i, _memory, evicted);
+        for (int i = 0; i < _tables.Length; i++) _tables[i].Start(FormattableString.Invariant($"{Part}/{i}"), i, _memory, archive);
         _labelledTables = [.. _tables.Where(t => t.HasLabels)];
         _labelKeys = new ulong[_labelledTables.Length];
     }

@@ -30,7 +30,7 @@ internal sealed class HistoryTable(ImmutableArray<int> fields, ulong seed)
     public bool IsForgettable { get; set; } = true;
 
     /// <summary>Whether it wants labels.</summary>
-    public bool HasLabels => _accumulators.Any(a => a is LabelCount);
+    public bool HasLabels => _accumulators.Any(a => a is KnownLabels);
 
     /// <summary>The key of the event, or 0 where a field of it is missing.</summary>
     public ulong Key { get; private set; }
@@ -47,13 +47,13 @@ internal sealed class HistoryTable(ImmutableArray<int> fields, ulong seed)
     public KeyTable Keys => _keys ?? throw new InvalidOperationException("the table has not been started");
 
     /// <summary>Called once when the layout has everything.</summary>
-    public void Start(string part, int table, HistoryMemory memory, IEvictedRows? evicted)
+    public void Start(string part, int table, HistoryMemory memory, IBlockArchive? archive)
     {
         Layout.Arrange();
         _accumulators = [.. Layout.Accumulators];
         _decayed = [.. Layout.DecayedWords];
         _weights = new double[_decayed.Length];
-        _keys = new KeyTable(Layout.Words, part, table, memory, evicted);
+        _keys = new KeyTable(Layout.Words, part, table, memory, archive);
     }
 
     /// <summary>Finds the row of the event's key and lets the time pass for it since its clock.</summary>
@@ -93,7 +93,7 @@ internal sealed class HistoryTable(ImmutableArray<int> fields, ulong seed)
         var row = Keys[found];
         double age = (double)RowPool.ClockOf(row) - timeMicroseconds;
         foreach (var accumulator in _accumulators)
-            if (accumulator is LabelCount labels) labels.Learn(row, label, weight * Decay.Over(age, labels.HalfLifeMicroseconds));
+            if (accumulator is KnownLabels labels) labels.Learn(row, label, weight * Decay.Over(age, labels.HalfLifeMicroseconds));
         Keys.MarkChanged(found);
     }
 

@@ -11,8 +11,11 @@ namespace StreamLogit.Engine.Features.Histories;
 /// A key is the 64-bit hash of its values, and two keys with one hash would share a row. Among n keys the chance that any two do is n^2 / 2^65:
 /// 3 in a million for 10 million keys.
 /// </remarks>
-internal sealed class KeyTable(int words, string part, int table, HistoryMemory memory, IEvictedRows? evicted)
+internal sealed class KeyTable(int words, string part, int table, HistoryMemory memory, IBlockArchive? archive)
 {
+    /// <summary>The part of the archive with the rows put out, by the hash of their key: very many small blocks.</summary>
+    public const string EvictedPart = "histories/evicted";
+
     // Of every so many rows in turn, this share is put out, those unseen for the longest. All are looked at equally often.
     private const int EvictionWindow = 256;
     private const int EvictedOfWindow = 32;
@@ -22,6 +25,7 @@ internal sealed class KeyTable(int words, string part, int table, HistoryMemory 
     private readonly RowPool _rows = new(words, part);
     private readonly List<long> _blocksToRemove = [];
     private readonly long[] _clocks = new long[EvictionWindow];
+    private byte[] _bytes = [];
     private int _hand;
 
     /// <summary>The time before which a row means no more than none and may be dropped.</summary>
@@ -97,16 +101,19 @@ internal sealed class KeyTable(int words, string part, int table, HistoryMemory 
 
     private bool TryBringBack(ulong key, Span<double> row)
     {
-        bool isThere = evicted is not null && Evictions > 0 && evicted.Read(key, MemoryMarshal.AsBytes(row)) >= 0;
-        if (isThere) Misses++;
-        else RowPool.KeyOf(row) = key;
+        RowPool.KeyOf(row) = key;
+        if (archive is null || Evictions == 0 || !archive.TryRead(EvictedPart, (long)key, ref _bytes, out int length)) return false;
+        var target = MemoryMarshal.AsBytes(row);
+        if (length > target.Length) throw new InvalidStateException($"a row of {part} that comes back is too long");
+        _bytes.AsSpan(0, length).CopyTo(target);
         if (RowPool.KeyOf(row) != key) throw new InvalidStateException($"a row of {part} that comes back is that of another key");
-        return isThere;
+        Misses++;
+        return true;
     }
 
     private void MakeRoom()
     {
-        if (evicted is null || TryGrow())
+        if (archive is null || TryGrow())
         {
             _rows.AddChunk();
             return;
@@ -145,14 +152,14 @@ internal sealed class KeyTable(int words, string part, int table, HistoryMemory 
         if (RowPool.ClockOf(row) < ForgettableMicroseconds) return;
         // Many rows end in zeros, as where few of the values that a row has room for have been seen.
         var words = MemoryMarshal.Cast<double, ulong>(row);
-        evicted!.Put(words[0], MemoryMarshal.AsBytes(words[..(words.LastIndexOfAnyExcept(0ul) + 1)]));
+        archive!.Write(EvictedPart, (long)words[0], MemoryMarshal.AsBytes(words[..(words.LastIndexOfAnyExcept(0ul) + 1)]));
     }
 
     private bool TryMakeRoomFor(long block)
     {
         while (_rows.Chunks < _rows.ChunksFor(block))
         {
-            if (evicted is not null && !TryGrow()) return false;
+            if (archive is not null && !TryGrow()) return false;
             _rows.AddChunk();
         }
         return true;

@@ -14,7 +14,7 @@ internal sealed class HistoryRun
     private readonly RecordDecoder _decoder;
     private readonly RecordBatch _batch;
     private readonly StateBlocks _saved = new();
-    private KeptRows? _rows;
+    private CrashingArchive? _archive;
 
     public HistoryRun(IEnumerable<HistoryFeature> histories, long? memoryBytes = null)
     {
@@ -22,12 +22,12 @@ internal sealed class HistoryRun
         if (memoryBytes is not null)
         {
             _definition = _definition with { Histories = new HistoryOptions { MemoryBytes = memoryBytes.Value } };
-            _rows = new KeptRows();
+            _archive = new CrashingArchive();
         }
         _schema = new RecordSchema(_definition);
         _decoder = new RecordDecoder(_schema);
         _batch = new RecordBatch(_schema);
-        Encoder = new FeatureEncoder(_definition, _schema, _rows);
+        Encoder = new FeatureEncoder(_definition, _schema, _archive);
     }
 
     public FeatureEncoder Encoder { get; private set; }
@@ -63,15 +63,16 @@ internal sealed class HistoryRun
     public void Save()
     {
         Encoder.Save(_saved);
-        _rows?.Save(_saved);
+        _archive?.Save();
     }
 
     /// <summary>Goes on from the last save with an encoder that has seen nothing, as after a crash.</summary>
     public void Restart(long? memoryBytes = null)
     {
-        _rows = _rows?.AfterCrash();
+        _archive = _archive?.AfterCrash();
         var definition = memoryBytes is null ? _definition : _definition with { Histories = new HistoryOptions { MemoryBytes = memoryBytes.Value } };
-        Encoder = new FeatureEncoder(definition, _schema, _rows);
+        Encoder = new FeatureEncoder(definition, _schema, _archive);
         Encoder.Load(_saved);
+        Encoder.LoadHistories(_saved);
     }
 }

@@ -5,7 +5,7 @@ using StreamLogit.Engine.Records;
 namespace StreamLogit.Engine.Features.Histories.Figures;
 
 /// <summary><see cref="HistoryKind.Rate"/>: (bad + prior overall) / (labels + prior).</summary>
-internal sealed class RateHistory(HistoryFeature options, HistoryTable table, LabelCount labels, OverallRate overall, int firstSlot)
+internal sealed class RateHistory(HistoryFeature options, HistoryTable table, KnownLabels labels, OverallRate overall, int firstSlot)
     : HistoryEncoding(options, table, firstSlot)
 {
     protected override double Figure(HistoryTable table, RecordBatch records, int record)

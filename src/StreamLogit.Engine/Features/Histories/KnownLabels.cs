@@ -1,7 +1,7 @@
 namespace StreamLogit.Engine.Features.Histories;
 
 /// <summary>The decayed number of known labels of a key and of those that are 1, each decayed from the time of its event.</summary>
-internal sealed class LabelCount(long halfLifeMicroseconds) : Accumulator(halfLifeMicroseconds)
+internal sealed class KnownLabels(long halfLifeMicroseconds) : Accumulator(halfLifeMicroseconds)
 {
     public override int DecayedWords => 2;
 
