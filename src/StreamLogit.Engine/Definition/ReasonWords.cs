@@ -1,4 +1,5 @@
 using System.Collections.Immutable;
+using System.Globalization;
 
 namespace StreamLogit.Engine.Definition;
 
@@ -11,20 +12,16 @@ public sealed record ReasonWords(ImmutableArray<ReasonPhrase> Phrases, string Un
     /// <summary>The figure that stands for <see cref="Unknown"/>. <see cref="Missing"/> is NaN.</summary>
     public const double UnknownFigure = double.PositiveInfinity;
 
-    /// <summary>The words for a figure, without a number where <paramref name="number"/> is null.</summary>
-    /// <param name="figure">The figure.</param>
-    /// <param name="number">The number between them.</param>
-    /// <returns>The phrase.</returns>
-    public ReasonPhrase PhraseFor(double figure, out double? number)
+    /// <summary>The phrase for a figure, or null for one that has none: unknown or missing.</summary>
+    public ReasonPhrase? PhraseFor(double figure)
     {
-        number = null;
-        if (double.IsNaN(figure)) return new ReasonPhrase(figure, Missing);
         foreach (var phrase in Phrases)
-        {
-            if (!(figure < phrase.Below)) continue;
-            if (phrase.After is not null) number = Math.Abs(figure) / phrase.Unit;
-            return phrase;
-        }
-        return new ReasonPhrase(figure, Unknown);
+            if (figure < phrase.Below) return phrase;
+        return null;
     }
+
+    /// <summary>The words for a figure.</summary>
+    public string Of(double figure) => PhraseFor(figure) is { } phrase
+        ? phrase.After is null ? phrase.Before : phrase.Before + phrase.NumberOf(figure).ToString(phrase.Format, CultureInfo.InvariantCulture) + phrase.After
+        : double.IsNaN(figure) ? Missing : Unknown;
 }

@@ -15,16 +15,16 @@ public sealed class ScoreJson
     // The names and punctuation of a score, and numbers of at most 26 characters.
     private const int FixedLength = 256;
 
-    private readonly byte[][] _features;
+    private readonly ReasonJson[] _reasons;
     private readonly byte[] _cutoff;
     private readonly int _reasonLength;
 
     /// <summary>A writer for the scores of a definition.</summary>
     public ScoreJson(EngineDefinition definition)
     {
-        _features = [.. definition.Features.Select(feature => JsonText.Escape(feature.Name))];
+        _reasons = [.. definition.Features.Select(feature => new ReasonJson(feature))];
         _cutoff = JsonText.Escape(definition.Decision.Cutoff.ToString("R", CultureInfo.InvariantCulture));
-        _reasonLength = _features.Select(feature => feature.Length).DefaultIfEmpty().Max() + RoundedNumber.MaximumLength + 32;
+        _reasonLength = _reasons.Select(reason => reason.MaximumLength).DefaultIfEmpty().Max();
     }
 
     /// <summary>Adds a score to a buffer, without a line end.</summary>
@@ -52,11 +52,8 @@ public sealed class ScoreJson
         Text(",\"reasons\":["u8, room, ref at);
         for (int i = 0; i < reasons.Length; i++)
         {
-            Text(i == 0 ? "{\"feature\":\""u8 : ",{\"feature\":\""u8, room, ref at);
-            Text(_features[reasons[i].Feature], room, ref at);
-            Text("\",\"contribution\":"u8, room, ref at);
-            at += RoundedNumber.Write(reasons[i].Contribution, room[at..]);
-            room[at++] = (byte)'}';
+            if (i > 0) room[at++] = (byte)',';
+            at += _reasons[reasons[i].Feature].Write(reasons[i], room[at..]);
         }
         Text("]}"u8, room, ref at);
         buffer.Advance(at);

@@ -62,13 +62,57 @@ internal static class DefinitionInWords
     {
         NumberFeature { Scale: NumberScale.None } => "a number as it is; a coefficient of its own where it is missing",
         NumberFeature { Scale: NumberScale.Log1p } => "a number x as sign(x) ln(1 + |x|); a coefficient of its own where it is missing",
+        NumberFeature { Scale: NumberScale.Rank } => "the rank of a number among those before, from -1 to 1; a coefficient of its own where it is missing",
+        NumberFeature { Scale: NumberScale.StandardLog1p } =>
+            "a number x as sign(x) ln(1 + |x|), less the running mean of that and over its running standard deviation; a coefficient of its own where it is missing",
         NumberFeature => "a number, less its running mean and over its running standard deviation; a coefficient of its own where it is missing",
         CategoryFeature { Fields.Length: 1 } => "a coefficient for every value, \"missing\" among them",
         CategoryFeature => "a coefficient for every combination of values",
         TimeCycleFeature => "the time of the event in its cycle, as sine and cosine",
         NumberCycleFeature => "a number in its cycle, as sine and cosine",
+        HistoryFeature history => Describe(history),
+        BucketFeature { Edges.IsEmpty: false } bucket => FormattableString.Invariant($"a coefficient for each bucket between the edges {string.Join(", ", bucket.Edges)}"),
+        BucketFeature => "a coefficient for each bucket between running quantiles",
+        TextFeature text => Describe(text),
         _ => feature.ToString(),
     };
+
+    private static string Describe(HistoryFeature history)
+    {
+        string key = string.Join(" and ", history.Per);
+        string what = history.Kind switch
+        {
+            HistoryKind.Count => $"the number of earlier events of the same {key}",
+            HistoryKind.Sum => $"the sum of {history.Of} over earlier events of the same {key}",
+            HistoryKind.Mean => $"the mean of {history.Of} over earlier events of the same {key}",
+            HistoryKind.Deviation => $"how far {history.Of} is from its mean over earlier events of the same {key}, in standard deviations",
+            HistoryKind.Gap => $"the seconds since the last event of the same {key}",
+            HistoryKind.Distinct => $"the number of different values of {history.Of} among earlier events of the same {key}",
+            HistoryKind.New => $"whether {history.Of} is new for {key} within {history.Span}",
+            _ => $"the share of bad labels known by then among earlier events of the same {key}",
+        };
+        string decay = history.HalfLifeMicroseconds > 0 ? $", each event counting half as much after {history.Span}" : "";
+        string scale = history.Scale switch
+        {
+            NumberScale.Log1p => "; as log1p",
+            NumberScale.Standard => "; standardised",
+            NumberScale.StandardLog1p => "; as log1p, standardised",
+            NumberScale.Rank => "; as rank",
+            NumberScale.LogOdds => "; as log-odds against the share of all",
+            _ => "",
+        };
+        return what + decay + scale;
+    }
+
+    private static string Describe(TextFeature text)
+    {
+        string[] runs =
+        [
+            .. text.WordLengths.Select(length => FormattableString.Invariant($"{length} {(length == 1 ? "word" : "words")}")),
+            .. text.CharacterLengths.Select(length => FormattableString.Invariant($"{length} {(length == 1 ? "character" : "characters")}")),
+        ];
+        return FormattableString.Invariant($"a coefficient for every run of {string.Join(", ", runs)}; at most {text.Most} different runs of each length");
+    }
 
     private static IEnumerable<string> Files(StreamDefinition definition)
     {
@@ -97,6 +141,9 @@ internal static class DefinitionInWords
     private static string Memory(EngineDefinition engine)
     {
         return FormattableString.Invariant(
-            $"{FigureText.Bytes(CoefficientTables.Bytes(engine.Learning))} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), and room for every event that awaits its label");
+            $"{FigureText.Bytes(CoefficientTables.Bytes(engine.Learning))} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), {Histories(engine)}and room for every event that awaits its label");
     }
+
+    private static string Histories(EngineDefinition engine) =>
+        engine.Features.Any(feature => feature is HistoryFeature) ? $"up to {FigureText.Bytes(engine.Histories.MemoryBytes)} for histories, " : "";
 }

@@ -39,6 +39,12 @@ internal static class HealthTables
         table.Add("labels repeated", FigureText.Count(health.Repeated));
         table.Add("labels corrected", FigureText.Count(health.Corrected));
         table.Add("labels before their event", FigureText.Count(health.Early));
+        if (health.Histories.Lookups > 0)
+        {
+            table.Add("keys in memory", FigureText.Count(health.Histories.Keys));
+            table.Add("keys put out", FigureText.Count(health.Histories.Evictions));
+            table.Add("keys taken back", FigureText.Count(health.Histories.Misses));
+        }
         return table;
     }
 
