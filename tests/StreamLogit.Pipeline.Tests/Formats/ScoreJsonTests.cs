@@ -54,6 +54,26 @@ public sealed class ScoreJsonTests
     }
 
     [Fact]
+    public void Write_History_SaysItInWords()
+    {
+        var count = new HistoryFeature(HistoryKind.Count, ["card"]) { HalfLifeMicroseconds = 3_600_000_000, Span = "1h" };
+        var gap = new HistoryFeature(HistoryKind.Gap, ["a \"b\"", "c"]);
+        var json = new ReasonJson(count);
+        Assert.Equal(
+            """{"feature":"count per card over 1h","words":"card seen 6 times in the last hour","contribution":0.5}""", Written(json, new Reason(0, 0.5, 5.7)));
+        Assert.Contains("\"card missing\"", Written(json, new Reason(0, 0, double.NaN)), StringComparison.Ordinal);
+        Assert.Contains("\"a \\\"b\\\" and c last seen 3 hours before\"", Written(new ReasonJson(gap), new Reason(0, 0, 10_900)), StringComparison.Ordinal);
+        Assert.Contains("never seen before", Written(new ReasonJson(gap), new Reason(0, 0, ReasonWords.UnknownFigure)), StringComparison.Ordinal);
+        Assert.InRange(Written(json, new Reason(0, -1e300, double.MaxValue)).Length, 300, json.MaximumLength);
+
+        static string Written(ReasonJson json, Reason reason)
+        {
+            var room = new byte[json.MaximumLength];
+            return Encoding.UTF8.GetString(room, 0, json.Write(reason, room));
+        }
+    }
+
+    [Fact]
     public void Write_AnyDoubles_ReadBackToTheSameBits() => Gen.Double.Where(double.IsFinite).Array[2].Sample(values =>
     {
         var score = Write("t", values[0], values[1]);

@@ -25,9 +25,12 @@ internal static class FeaturesSection
             foreach (var feature in ReadFeatures(item, record, labels))
             {
                 string identity = IdentityOf(feature);
-                isRight &= paths.TryAdd(identity, item.Path);
-                if (paths[identity] == item.Path) features.Add(feature);
-                else item.Error($"is the same feature as {paths[identity]}: keep one");
+                if (!paths.TryAdd(identity, item.Path))
+                {
+                    item.Error($"is the same feature as {paths[identity]}: keep one");
+                    isRight = false;
+                }
+                features.Add(feature);
             }
             isRight &= features.Count > before;
         }

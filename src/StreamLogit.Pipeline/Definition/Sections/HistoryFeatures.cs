@@ -93,8 +93,13 @@ internal static class HistoryFeatures
     {
         var features = new List<HistoryFeature>();
         foreach (var item in halfLife.OneOrList("durations", MostHalfLives) ?? [])
-            if (item.Duration(ShortestMicroseconds, LongestMicroseconds) is { } length)
+        {
+            if (item.Duration(ShortestMicroseconds, LongestMicroseconds) is not { } length) continue;
+            if (features.Find(other => other.HalfLifeMicroseconds == length) is { } same)
+                item.Error($"the half-life {Quoted.Text(same.Span)} is as long: keep one");
+            else
                 features.Add(feature with { HalfLifeMicroseconds = length, Span = item.Value.Text });
+        }
         return features;
     }
 }
