@@ -6,7 +6,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Stages;
 
-/// <summary>A seeded stream with labels that come late or never, labelled events, garbage, and lines that are too long.</summary>
+/// <summary>A seeded stream of card payments, with labels that come late or never, labelled events, garbage, and lines that are too long.</summary>
 internal static class LoopStream
 {
     public const int MaximumBytes = 400;
@@ -21,7 +21,13 @@ internal static class LoopStream
             new CategoryFeature(["country"]),
             new CategoryFeature(["country", "channel"]),
             new TimeCycleFeature(86_400_000_000, "1d"),
+            new HistoryFeature(HistoryKind.Count, ["card"]) { HalfLifeMicroseconds = 600_000_000, Span = "10m" },
+            new HistoryFeature(HistoryKind.Distinct, ["card"]) { Of = "country", HalfLifeMicroseconds = 600_000_000, Span = "10m" },
+            new HistoryFeature(HistoryKind.Rate, ["card"]) { HalfLifeMicroseconds = 3_600_000_000, Span = "1h" },
+            new HistoryFeature(HistoryKind.New, ["card"]) { Of = "country", WithinMicroseconds = 600_000_000, Span = "10m" },
         ],
+        // Less than there are cards, so that some are put out and come back.
+        Histories = new HistoryOptions { MemoryBytes = 1 },
         Learning = new LearningOptions { Slots = 1024 },
         Labels = new LabelOptions { WaitMicroseconds = 3600L * 1_000_000, EarlyMicroseconds = 60_000_000 },
         Decision = new DecisionOptions { Cutoff = 0.3 },
@@ -47,6 +53,7 @@ internal static class LoopStream
     private static byte[] Create(int lines, int kinds)
     {
         var random = new Random(1);
+        var cards = new Random(2);
         var text = new StringBuilder();
         var labels = new PriorityQueue<string, int>();
         for (int i = 0; i < lines; i++)
@@ -66,7 +73,7 @@ internal static class LoopStream
                     case 2: break;
                     case 3: text.Append(CultureInfo.InvariantCulture, $$"""{"id":"t-nobody-{{i}}","time":"{{time}}","label":1}"""); break;
                     default:
-                        string fields = $"\"amount\":{random.Next(100_000) / 100.0},\"country\":\"c{random.Next(20)}\",\"channel\":\"{(random.Next(3) == 0 ? "web" : "desk")}\"";
+                        string fields = $"\"amount\":{random.Next(100_000) / 100.0},\"country\":\"c{random.Next(20)}\",\"channel\":\"{(random.Next(3) == 0 ? "web" : "desk")}\",\"card\":\"k{cards.Next(900)}\"";
                         bool isLabelled = random.Next(4) == 0;
                         text.Append(CultureInfo.InvariantCulture, $$"""{"id":"t-{{i}}","time":"{{time}}",{{fields}}{{(isLabelled ? $",\"label\":{random.Next(2)}" : "")}}}""");
                         if (!isLabelled && random.Next(5) > 0) labels.Enqueue($"t-{i}", i + random.Next(1, 2000));

@@ -67,6 +67,7 @@ public sealed class ResumeTests : IDisposable
         Assert.Equal(run.Health.Records, run.Progress.Records);
         Assert.Equal(4, run.Health.RejectsByReason.Count);
         Assert.True(run.Health.Labelled > 500);
+        Assert.True(run.Health.Histories is { Evictions: > 100, Misses: > 100 }, run.Health.Histories.ToString());
         Assert.True(run.Progress.Commits >= Lines / 128);
         Assert.False(run.IsResumed);
     }
