@@ -14,7 +14,8 @@ internal sealed class HistoryRun
     private readonly RecordDecoder _decoder;
     private readonly RecordBatch _batch;
     private readonly StateBlocks _saved = new();
-    private CrashingArchive? _archive;
+    private readonly DictionaryArchive _savedArchive = new();
+    private DictionaryArchive? _archive;
 
     public HistoryRun(IEnumerable<HistoryFeature> histories, long? memoryBytes = null)
     {
@@ -22,7 +23,7 @@ internal sealed class HistoryRun
         if (memoryBytes is not null)
         {
             _definition = _definition with { Histories = new HistoryOptions { MemoryBytes = memoryBytes.Value } };
-            _archive = new CrashingArchive();
+            _archive = new DictionaryArchive(_savedArchive);
         }
         _schema = new RecordSchema(_definition);
         _decoder = new RecordDecoder(_schema);
@@ -63,13 +64,13 @@ internal sealed class HistoryRun
     public void Save()
     {
         Encoder.Save(_saved);
-        _archive?.Save();
+        _archive?.MoveTo(_savedArchive);
     }
 
     /// <summary>Goes on from the last save with an encoder that has seen nothing, as after a crash.</summary>
     public void Restart(long? memoryBytes = null)
     {
-        _archive = _archive?.AfterCrash();
+        if (_archive is not null) _archive = new DictionaryArchive(_savedArchive);
         var definition = memoryBytes is null ? _definition : _definition with { Histories = new HistoryOptions { MemoryBytes = memoryBytes.Value } };
         Encoder = new FeatureEncoder(definition, _schema, _archive);
         Encoder.Load(_saved);
