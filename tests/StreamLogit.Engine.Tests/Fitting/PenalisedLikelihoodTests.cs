@@ -229,6 +229,20 @@ public sealed class PenalisedLikelihoodTests
         Assert.Throws<ArgumentException>(() => new SparseRows(columns).Add(new EncodedVector([1], [1]), 2));
     }
 
+    [Fact]
+    public void Bytes_ManyOneHotRows_AreFourAnEntryAndNineARow()
+    {
+        var rows = new SparseRows(new SparseColumns());
+        int[] slots = new int[5];
+        for (int i = 0; i < 20_000; i++)
+        {
+            for (int k = 0; k < 5; k++) slots[k] = 100 * k + i % (7 * k + 5);
+            rows.Add(new EncodedVector(slots, [1, 1, 1, 1, 1]), i & 1);
+        }
+        rows.Trim();
+        Assert.Equal(20_000 * (5 * 4 + 9), rows.Bytes);
+    }
+
     private static SparseTable Weather(bool weighted)
     {
         var table = new SparseTable();

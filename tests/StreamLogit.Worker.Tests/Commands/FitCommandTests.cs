@@ -47,6 +47,22 @@ public sealed class FitCommandTests : IDisposable
         Assert.True(File.Exists(path));
     }
 
+    [Theory]
+    [InlineData("DOTNET_EnableAVX512")]
+    [InlineData("DOTNET_EnableAVX2")]
+    [InlineData("DOTNET_EnableHWIntrinsic")]
+    public void Fit_InstructionsOff_GivesTheSameBits(string variable)
+    {
+        foreach (string[] method in (string[][])[[], ["--l2", "1"]])
+        {
+            string[] arguments = ["fit", DemoStreams.File("pump-stations.json"), Recording, "--json", .. method];
+            var without = StreamLogitProcess.RunWith([(variable, "0")], arguments);
+
+            Assert.Equal(0, without.ExitCode);
+            Assert.Equal(StreamLogitProcess.Run(arguments).Output, without.Output);
+        }
+    }
+
     [Fact]
     public void Fit_OneClass_FailsAndStoresNothing()
     {
