@@ -11,7 +11,7 @@ namespace StreamLogit.Benchmarks;
 
 /// <summary>
 /// The nightly refit on the recording that tests/flights/prepare.sh makes, with the features of the reference run: one-hot origin, destination,
-/// hour and weekday, and ln(1 + distance) / 3 - 2.
+/// hour and weekday, and ln(1 + miles) / 3 - 2.
 /// </summary>
 /// <remarks>
 /// Twice: as the reference, for which every label is known at the midnight after its event and the first day does not count; and with the labels known
@@ -25,7 +25,6 @@ internal sealed class NightlyRefitOfFlights
     private readonly NightlyRefit _honest;
     private readonly SortedDictionary<long, List<(int[] Slots, double[] Values, int Label)>> _unfinished = [];
     private readonly ScoringEngine _engine;
-    private readonly int _distanceSlot;
     private double _referenceLoss, _honestLoss;
     private long _referenceCount, _honestCount;
 
@@ -38,11 +37,10 @@ internal sealed class NightlyRefitOfFlights
             Features =
             [
                 new CategoryFeature(["origin"]), new CategoryFeature(["destination"]), new CategoryFeature(["hour"]), new CategoryFeature(["weekday"]),
-                new NumberFeature("distance", NumberScale.Log1p),
+                new NumberFeature("logDistance", NumberScale.None),
             ],
             Learning = new LearningOptions { Slots = 1 << 18, Bank = [new SgdSetting(0.01, 0, 0)] },
         };
-        _distanceSlot = definition.Learning.Slots;
         _reference = new NightlyRefit(new NightlyRefitOptions { TrailingDays = days });
         _honest = new NightlyRefit(new NightlyRefitOptions { TrailingDays = days });
         _engine = new ScoringEngine(definition) { GiveReasons = false, Labelled = Take };
@@ -85,10 +83,7 @@ internal sealed class NightlyRefitOfFlights
 
     private void Take(in LabelledEvent labelled)
     {
-        double[] values = labelled.Vector.Values.ToArray();
-        for (int i = 0; i < values.Length; i++)
-            if (labelled.Vector.Slots[i] == _distanceSlot) values[i] = values[i] / 3 - 2;
-        var x = new EncodedVector(labelled.Vector.Slots, values);
+        var x = labelled.Vector;
         long day = NightlyRefit.DayOf(labelled.ScoredAtMicroseconds), today = NightlyRefit.DayOf(labelled.KnownAtMicroseconds);
 
         _honest.GoTo(today);
@@ -97,7 +92,7 @@ internal sealed class NightlyRefitOfFlights
 
         foreach (long old in _unfinished.Keys.TakeWhile(d => d <= today - NoLabelIsLaterDays).ToList()) Finish(old);
         if (!_unfinished.TryGetValue(day, out var rows)) _unfinished.Add(day, rows = []);
-        rows.Add((labelled.Vector.Slots.ToArray(), values, labelled.Label));
+        rows.Add((x.Slots.ToArray(), x.Values.ToArray(), labelled.Label));
     }
 
     private void Finish(long day)
