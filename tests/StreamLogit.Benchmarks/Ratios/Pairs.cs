@@ -7,12 +7,18 @@ internal static class Pairs
 {
     private const int Rounds = 9;
 
+    // Until the runtime has replaced all code by its best code.
+    private const int WarmUps = 12;
+
     /// <summary>The median over the rounds of (time of the first) / (time of the second).</summary>
     public static double MedianRatio(Action first, Action second)
     {
         var ratios = new double[Rounds];
-        first();
-        second();
+        for (int i = 0; i < WarmUps; i++)
+        {
+            first();
+            second();
+        }
         for (int i = 0; i < Rounds; i++) ratios[i] = Seconds(first) / Seconds(second);
         Array.Sort(ratios);
         return ratios[Rounds / 2];
@@ -22,7 +28,7 @@ internal static class Pairs
     public static double MedianSeconds(Action work)
     {
         var times = new double[Rounds];
-        work();
+        for (int i = 0; i < WarmUps; i++) work();
         for (int i = 0; i < Rounds; i++) times[i] = Seconds(work);
         Array.Sort(times);
         return times[Rounds / 2];
