@@ -45,6 +45,7 @@ internal static class ShowCommand
             json.WriteStartObject();
             json.WriteString("name", setting.Name);
             json.WriteNumber("intercept", setting.Intercept);
+            json.WriteNumber("nonZero", setting.NonZero);
             json.WriteStartArray("coefficients");
             foreach (var coefficient in setting.Coefficients)
             {
@@ -71,11 +72,11 @@ internal static class ShowCommand
 
     private static void WriteTables(SavedModel model, int top)
     {
-        var settings = new ResultTable("setting", "weight in the blend", "intercept");
+        var settings = new ResultTable("setting", "weight in the blend", "intercept", "not zero");
         for (int i = 0; i < model.Snapshot.Settings.Length; i++)
         {
             var setting = model.Snapshot.Settings[i];
-            settings.Add(setting.Name, FigureText.Mean(model.Snapshot.Blend[i].Weight), FigureText.Coefficient(setting.Intercept));
+            settings.Add(setting.Name, FigureText.Mean(model.Snapshot.Blend[i].Weight), FigureText.Coefficient(setting.Intercept), setting.NonZero.ToString(CultureInfo.InvariantCulture));
         }
         settings.Write(Terminal.Output);
         Console.Out.WriteLine();
