@@ -17,22 +17,22 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
     private const double SmallestRoot = 1e-8;
     private const double Ln2 = 0.693147180559945309;
 
-    private readonly double[] _step;
-    private readonly double[] _sumFactor;
-    private readonly double[] _interceptSum;
-    private readonly double[] _gradient;
+    private readonly AlignedDoubles _step;
+    private readonly AlignedDoubles _sumFactor;
+    private readonly AlignedDoubles _interceptSum;
+    private readonly AlignedDoubles _gradient;
     private readonly LazyScale<T> _sumScale;
     private readonly bool _sumsForget;
 
     public AdagradLearner(ReadOnlySpan<AdagradSetting> settings, SlotBlocks blocks)
         : base(ReadOnlySpan<SettingOptions>.CastUp(settings), blocks, SlotRows)
     {
-        _step = new double[RowLength];
-        _sumFactor = new double[RowLength];
-        _interceptSum = new double[RowLength];
-        _gradient = new double[RowLength];
+        _step = new AlignedDoubles(RowLength);
+        _sumFactor = new AlignedDoubles(RowLength);
+        _interceptSum = new AlignedDoubles(RowLength);
+        _gradient = new AlignedDoubles(RowLength);
         _sumScale = new LazyScale<T>(Table, blocks, RowLength, row: 1);
-        Array.Fill(_sumFactor, 1);
+        _sumFactor.Span.Fill(1);
         for (int lane = 0; lane < settings.Length; lane++)
         {
             _step[lane] = settings[lane].Step;
@@ -52,12 +52,12 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
         {
             // The negative gradient of the intercept; that of a coefficient is x times as much.
             T gradient = T.Of(lesson.SignedWeight) * MissProbability(in lesson, lane);
-            gradient.Store(ref _gradient[0], lane);
-            T step = T.Load(in _step[0], lane);
-            T sumFactor = T.Load(in _sumFactor[0], lane);
-            T sum = T.Load(in _interceptSum[0], lane) * sumFactor + gradient * gradient;
-            sum.Store(ref _interceptSum[0], lane);
-            (T.Load(in Intercepts[0], lane) + step * gradient / (T.Of(SmallestRoot) + T.Sqrt(sum))).Store(ref Intercepts[0], lane);
+            gradient.Store(ref _gradient.First, lane);
+            T step = T.Load(in _step.First, lane);
+            T sumFactor = T.Load(in _sumFactor.First, lane);
+            T sum = T.Load(in _interceptSum.First, lane) * sumFactor + gradient * gradient;
+            sum.Store(ref _interceptSum.First, lane);
+            (T.Load(in Intercepts.First, lane) + step * gradient / (T.Of(SmallestRoot) + T.Sqrt(sum))).Store(ref Intercepts.First, lane);
             if (Forgetting.IsNeeded) Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds));
             if (_sumsForget) _sumScale.Multiply(lane, sumFactor);
         }
@@ -74,9 +74,9 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
         nuint length = (nuint)RowLength;
         for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
         {
-            T gradient = T.Load(in _gradient[0], lane);
+            T gradient = T.Load(in _gradient.First, lane);
             T sumScale = _sumScale.At(lane);
-            T step = T.Load(in _step[0], lane) / Scale.At(lane);
+            T step = T.Load(in _step.First, lane) / Scale.At(lane);
             T inverseSumScale = T.Of(1) / sumScale;
             for (nuint i = 0; i < count; i++)
             {

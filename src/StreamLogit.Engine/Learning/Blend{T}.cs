@@ -13,20 +13,20 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
 
     private readonly int _settingCount;
     private readonly double _switchRate;
-    private readonly double[] _weight;
-    private readonly double[] _share;
-    private readonly double[] _lossAboveBest;
-    private readonly double[] _logLossTotal;
-    private readonly double[] _brierTotal;
-    private readonly double[] _weightTotal;
+    private readonly AlignedDoubles _weight;
+    private readonly AlignedDoubles _share;
+    private readonly AlignedDoubles _lossAboveBest;
+    private readonly AlignedDoubles _logLossTotal;
+    private readonly AlignedDoubles _brierTotal;
+    private readonly AlignedDoubles _weightTotal;
 
     // Of the log-odds in _logOdds: e^-|z| and the probabilities of the labels 1 and 0, as long as _isCached.
-    private readonly double[] _logOdds;
-    private readonly double[] _exp;
-    private readonly double[] _probability;
-    private readonly double[] _complement;
-    private readonly double[] _loss;
-    private double[] _miss;
+    private readonly AlignedDoubles _logOdds;
+    private readonly AlignedDoubles _exp;
+    private readonly AlignedDoubles _probability;
+    private readonly AlignedDoubles _complement;
+    private readonly AlignedDoubles _loss;
+    private AlignedDoubles _miss;
     private bool _isCached;
 
     public Blend(int settingCount, double switchRate)
@@ -34,32 +34,32 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         int rowLength = RowWidth.Padded(settingCount);
         _settingCount = settingCount;
         _switchRate = switchRate;
-        _weight = new double[rowLength];
-        _share = new double[rowLength];
-        _lossAboveBest = new double[rowLength];
-        _logLossTotal = new double[rowLength];
-        _brierTotal = new double[rowLength];
-        _weightTotal = new double[rowLength];
-        _logOdds = new double[rowLength];
-        _exp = new double[rowLength];
-        _probability = new double[rowLength];
-        _complement = new double[rowLength];
-        _loss = new double[rowLength];
+        _weight = new AlignedDoubles(rowLength);
+        _share = new AlignedDoubles(rowLength);
+        _lossAboveBest = new AlignedDoubles(rowLength);
+        _logLossTotal = new AlignedDoubles(rowLength);
+        _brierTotal = new AlignedDoubles(rowLength);
+        _weightTotal = new AlignedDoubles(rowLength);
+        _logOdds = new AlignedDoubles(rowLength);
+        _exp = new AlignedDoubles(rowLength);
+        _probability = new AlignedDoubles(rowLength);
+        _complement = new AlignedDoubles(rowLength);
+        _loss = new AlignedDoubles(rowLength);
         _miss = _complement;
-        Array.Fill(_weight, KeepsLosses ? 1 : 1.0 / settingCount, 0, settingCount);
-        Array.Fill(_share, switchRate / settingCount, 0, settingCount);
-        Array.Fill(_lossAboveBest, NoSetting, settingCount, rowLength - settingCount);
+        _weight.Span[..settingCount].Fill(KeepsLosses ? 1 : 1.0 / settingCount);
+        _share.Span[..settingCount].Fill(switchRate / settingCount);
+        _lossAboveBest.Span[settingCount..].Fill(NoSetting);
     }
 
     public override bool KeepsLosses => _switchRate == 0;
 
-    public override ReadOnlySpan<double> MissProbability => _miss;
+    public override ReadOnlySpan<double> MissProbability => _miss.Span;
 
     public override double LogOdds(ReadOnlySpan<double> settingLogOdds)
     {
         ComputeProbabilities(settingLogOdds);
-        double one = LaneSum.OfProducts<T>(in _weight[0], in _probability[0], (nuint)_weight.Length);
-        double zero = LaneSum.OfProducts<T>(in _weight[0], in _complement[0], (nuint)_weight.Length);
+        double one = LaneSum.OfProducts<T>(in _weight.First, in _probability.First, (nuint)_weight.Length);
+        double zero = LaneSum.OfProducts<T>(in _weight.First, in _complement.First, (nuint)_weight.Length);
         return one > SmallestSum && zero > SmallestSum
             ? LaneMath.LogOfNormal(new Lanes1(one)).Value - LaneMath.LogOfNormal(new Lanes1(zero)).Value
             : LogOfSum(1) - LogOfSum(-1);
@@ -67,18 +67,18 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
 
     public override void Learn(ReadOnlySpan<double> scoredLogOdds, int label, double weight)
     {
-        if (!_isCached || !scoredLogOdds.SequenceEqual(_logOdds.AsSpan(0, scoredLogOdds.Length))) ComputeProbabilities(scoredLogOdds);
-        double[] hit = label == 1 ? _probability : _complement;
+        if (!_isCached || !scoredLogOdds.SequenceEqual(_logOdds.Span[..scoredLogOdds.Length])) ComputeProbabilities(scoredLogOdds);
+        AlignedDoubles hit = label == 1 ? _probability : _complement;
         _miss = label == 1 ? _complement : _probability;
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
         {
-            T logOdds = T.Load(in _logOdds[0], lane);
-            T loss = LaneMath.SoftplusOf(label == 1 ? T.Of(0) - logOdds : logOdds, T.Load(in _exp[0], lane)) * T.Of(weight);
-            T miss = T.Load(in _miss[0], lane);
-            loss.Store(ref _loss[0], lane);
-            (T.Load(in _logLossTotal[0], lane) + loss).Store(ref _logLossTotal[0], lane);
-            (T.Load(in _brierTotal[0], lane) + T.Of(weight) * (miss * miss)).Store(ref _brierTotal[0], lane);
-            (T.Load(in _weightTotal[0], lane) + T.Of(weight)).Store(ref _weightTotal[0], lane);
+            T logOdds = T.Load(in _logOdds.First, lane);
+            T loss = LaneMath.SoftplusOf(label == 1 ? T.Of(0) - logOdds : logOdds, T.Load(in _exp.First, lane)) * T.Of(weight);
+            T miss = T.Load(in _miss.First, lane);
+            loss.Store(ref _loss.First, lane);
+            (T.Load(in _logLossTotal.First, lane) + loss).Store(ref _logLossTotal.First, lane);
+            (T.Load(in _brierTotal.First, lane) + T.Of(weight) * (miss * miss)).Store(ref _brierTotal.First, lane);
+            (T.Load(in _weightTotal.First, lane) + T.Of(weight)).Store(ref _weightTotal.First, lane);
         }
         if (KeepsLosses) MoveExponentialWeights();
         else MoveFixedShare(hit, weight);
@@ -142,14 +142,14 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
 
     private void ComputeProbabilities(ReadOnlySpan<double> settingLogOdds)
     {
-        settingLogOdds.CopyTo(_logOdds);
+        settingLogOdds.CopyTo(_logOdds.Span);
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
         {
-            T logOdds = T.Load(in _logOdds[0], lane);
+            T logOdds = T.Load(in _logOdds.First, lane);
             T exp = LaneMath.ExpOfMinusAbs(logOdds);
-            exp.Store(ref _exp[0], lane);
-            LaneMath.SigmoidOf(logOdds, exp).Store(ref _probability[0], lane);
-            LaneMath.SigmoidOf(T.Of(0) - logOdds, exp).Store(ref _complement[0], lane);
+            exp.Store(ref _exp.First, lane);
+            LaneMath.SigmoidOf(logOdds, exp).Store(ref _probability.First, lane);
+            LaneMath.SigmoidOf(T.Of(0) - logOdds, exp).Store(ref _complement.First, lane);
         }
         _isCached = true;
     }
@@ -165,18 +165,18 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         }
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
         {
-            T loss = T.Load(in _lossAboveBest[0], lane) - T.Of(best);
-            loss.Store(ref _lossAboveBest[0], lane);
-            LaneMath.Exp(T.Of(0) - loss).Store(ref _weight[0], lane);
+            T loss = T.Load(in _lossAboveBest.First, lane) - T.Of(best);
+            loss.Store(ref _lossAboveBest.First, lane);
+            LaneMath.Exp(T.Of(0) - loss).Store(ref _weight.First, lane);
         }
     }
 
-    private void MoveFixedShare(double[] hit, double weight)
+    private void MoveFixedShare(AlignedDoubles hit, double weight)
     {
-        double total = LaneSum.OfProducts<T>(in _weight[0], in hit[0], (nuint)_weight.Length);
+        double total = LaneSum.OfProducts<T>(in _weight.First, in hit.First, (nuint)_weight.Length);
         if (weight == 1 && total > SmallestSum)
         {
-            Mix(in hit[0], total);
+            Mix(in hit.First, total);
             return;
         }
 
@@ -186,10 +186,10 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
         {
             // Places beyond the last setting may be above the greatest.
-            T exponent = T.Of(least) - T.Load(in _loss[0], lane);
-            LaneMath.Exp(T.Select(T.Greater(exponent, T.Of(0)), T.Of(0), exponent)).Store(ref _loss[0], lane);
+            T exponent = T.Of(least) - T.Load(in _loss.First, lane);
+            LaneMath.Exp(T.Select(T.Greater(exponent, T.Of(0)), T.Of(0), exponent)).Store(ref _loss.First, lane);
         }
-        Mix(in _loss[0], LaneSum.OfProducts<T>(in _weight[0], in _loss[0], (nuint)_weight.Length));
+        Mix(in _loss.First, LaneSum.OfProducts<T>(in _weight.First, in _loss.First, (nuint)_weight.Length));
     }
 
     private void Mix(ref readonly double likelihood, double total)
@@ -197,8 +197,8 @@ internal sealed class Blend<T> : Blend where T : struct, ILanes<T>
         T keep = T.Of((1 - _switchRate) / total);
         for (nuint lane = 0; lane < (nuint)_weight.Length; lane += (nuint)T.Width)
         {
-            T kept = T.Load(in _weight[0], lane) * T.Load(in likelihood, lane) * keep;
-            (kept + T.Load(in _share[0], lane)).Store(ref _weight[0], lane);
+            T kept = T.Load(in _weight.First, lane) * T.Load(in likelihood, lane) * keep;
+            (kept + T.Load(in _share.First, lane)).Store(ref _weight.First, lane);
         }
     }
 

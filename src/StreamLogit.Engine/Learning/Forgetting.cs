@@ -8,11 +8,11 @@ namespace StreamLogit.Engine.Learning;
 internal sealed class Forgetting<T> where T : struct, ILanes<T>
 {
     private const double Ln2 = 0.693147180559945309;
-    private readonly double[] _ratePerMicrosecond;
+    private readonly AlignedDoubles _ratePerMicrosecond;
 
     public Forgetting(int rowLength, ReadOnlySpan<SettingOptions> settings)
     {
-        _ratePerMicrosecond = new double[rowLength];
+        _ratePerMicrosecond = new AlignedDoubles(rowLength);
         for (int lane = 0; lane < settings.Length; lane++)
         {
             long halfLife = settings[lane].ForgetHalfLifeMicroseconds;
@@ -27,9 +27,9 @@ internal sealed class Forgetting<T> where T : struct, ILanes<T>
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public T Factor(nuint lane, double elapsedMicroseconds) =>
-        LaneMath.Exp(T.Of(0) - T.Load(in _ratePerMicrosecond[0], lane) * T.Of(elapsedMicroseconds));
+        LaneMath.Exp(T.Of(0) - T.Load(in _ratePerMicrosecond.First, lane) * T.Of(elapsedMicroseconds));
 
     /// <summary>A mask of the settings that forget.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public T Mask(nuint lane) => T.Greater(T.Load(in _ratePerMicrosecond[0], lane), T.Of(0));
+    public T Mask(nuint lane) => T.Greater(T.Load(in _ratePerMicrosecond.First, lane), T.Of(0));
 }

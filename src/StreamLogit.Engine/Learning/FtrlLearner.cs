@@ -16,26 +16,26 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
     /// <summary>Rows of settings that a slot has.</summary>
     public const int SlotRows = 3;
 
-    private readonly double[] _step;
-    private readonly double[] _beta;
-    private readonly double[] _l1;
-    private readonly double[] _l2;
-    private readonly double[] _interceptZ;
-    private readonly double[] _interceptN;
-    private readonly double[] _gradient;
+    private readonly AlignedDoubles _step;
+    private readonly AlignedDoubles _beta;
+    private readonly AlignedDoubles _l1;
+    private readonly AlignedDoubles _l2;
+    private readonly AlignedDoubles _interceptZ;
+    private readonly AlignedDoubles _interceptN;
+    private readonly AlignedDoubles _gradient;
 
     public FtrlLearner(ReadOnlySpan<FtrlSetting> settings, SlotBlocks blocks)
         : base(ReadOnlySpan<SettingOptions>.CastUp(settings), blocks, SlotRows)
     {
-        _step = new double[RowLength];
-        _beta = new double[RowLength];
-        _l1 = new double[RowLength];
-        _l2 = new double[RowLength];
-        _interceptZ = new double[RowLength];
-        _interceptN = new double[RowLength];
-        _gradient = new double[RowLength];
-        Array.Fill(_step, 1);
-        Array.Fill(_beta, 1);
+        _step = new AlignedDoubles(RowLength);
+        _beta = new AlignedDoubles(RowLength);
+        _l1 = new AlignedDoubles(RowLength);
+        _l2 = new AlignedDoubles(RowLength);
+        _interceptZ = new AlignedDoubles(RowLength);
+        _interceptN = new AlignedDoubles(RowLength);
+        _gradient = new AlignedDoubles(RowLength);
+        _step.Span.Fill(1);
+        _beta.Span.Fill(1);
         for (int lane = 0; lane < settings.Length; lane++)
             (_step[lane], _beta[lane], _l1[lane], _l2[lane]) = settings[lane];
     }
@@ -49,7 +49,7 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         {
             // The gradient of the intercept; that of a coefficient is x times as much.
             T gradient = T.Of(-lesson.SignedWeight) * MissProbability(in lesson, lane);
-            gradient.Store(ref _gradient[0], lane);
+            gradient.Store(ref _gradient.First, lane);
             LearnIntercept(lane, gradient);
             if (Forgetting.IsNeeded) Scale.Multiply(lane, Forgetting.Factor(lane, lesson.ElapsedMicroseconds));
         }
@@ -67,8 +67,8 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         bool forgets = Forgetting.IsNeeded;
         for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
         {
-            var rule = new Rule(T.Load(in _step[0], lane), T.Load(in _beta[0], lane), T.Load(in _l1[0], lane), T.Load(in _l2[0], lane));
-            T gradient = T.Load(in _gradient[0], lane);
+            var rule = new Rule(T.Load(in _step.First, lane), T.Load(in _beta.First, lane), T.Load(in _l1.First, lane), T.Load(in _l2.First, lane));
+            T gradient = T.Load(in _gradient.First, lane);
             T scale = Scale.At(lane);
             T isForgetting = Forgetting.Mask(lane);
             for (nuint i = 0; i < count; i++)
@@ -115,12 +115,12 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
 
     private void LearnIntercept(nuint lane, T gradient)
     {
-        T z = T.Load(in _interceptZ[0], lane);
-        T n = T.Load(in _interceptN[0], lane);
-        var free = new Rule(T.Load(in _step[0], lane), T.Load(in _beta[0], lane), T.Of(0), T.Of(0));
-        free.Move(ref z, ref n, T.Load(in Intercepts[0], lane), gradient).Store(ref Intercepts[0], lane);
-        z.Store(ref _interceptZ[0], lane);
-        n.Store(ref _interceptN[0], lane);
+        T z = T.Load(in _interceptZ.First, lane);
+        T n = T.Load(in _interceptN.First, lane);
+        var free = new Rule(T.Load(in _step.First, lane), T.Load(in _beta.First, lane), T.Of(0), T.Of(0));
+        free.Move(ref z, ref n, T.Load(in Intercepts.First, lane), gradient).Store(ref Intercepts.First, lane);
+        z.Store(ref _interceptZ.First, lane);
+        n.Store(ref _interceptN.First, lane);
     }
 
     private readonly struct Rule(T step, T beta, T l1, T l2)

@@ -17,7 +17,7 @@ internal sealed class LazyScale<T> where T : struct, ILanes<T>
     private readonly SlotBlocks _blocks;
     private readonly int _rowLength;
     private readonly int _row;
-    private readonly double[] _scale;
+    private readonly AlignedDoubles _scale;
 
     /// <param name="table">The table.</param>
     /// <param name="blocks">Which of its slots were written.</param>
@@ -29,8 +29,8 @@ internal sealed class LazyScale<T> where T : struct, ILanes<T>
         _blocks = blocks;
         _rowLength = rowLength;
         _row = row;
-        _scale = new double[rowLength];
-        Array.Fill(_scale, 1);
+        _scale = new AlignedDoubles(rowLength);
+        _scale.Span.Fill(1);
     }
 
     public double this[int lane]
@@ -40,7 +40,7 @@ internal sealed class LazyScale<T> where T : struct, ILanes<T>
     }
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public T At(nuint lane) => T.Load(in _scale[0], lane);
+    public T At(nuint lane) => T.Load(in _scale.First, lane);
 
     /// <summary>Multiplies every number of the settings by a factor from 0 to 1 and returns their scales.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
@@ -49,7 +49,7 @@ internal sealed class LazyScale<T> where T : struct, ILanes<T>
         T scale = At(lane) * factor;
         T isSmall = T.Greater(T.Of(SmallestScale), scale);
         if (T.Any(isSmall)) scale = Fold(lane, scale, isSmall);
-        scale.Store(ref _scale[0], lane);
+        scale.Store(ref _scale.First, lane);
         return scale;
     }
 

@@ -9,7 +9,7 @@ internal sealed class LearnerGroup
 {
     private readonly ImmutableArray<int> _settings;
     private readonly bool _isWholeBank;
-    private readonly double[] _row;
+    private readonly AlignedDoubles _row;
 
     private LearnerGroup(string rule, ILearner learner, ImmutableArray<int> settings, int bankSize)
     {
@@ -17,7 +17,7 @@ internal sealed class LearnerGroup
         Learner = learner;
         _settings = settings;
         _isWholeBank = settings.Length == bankSize;
-        _row = new double[learner.RowLength];
+        _row = new AlignedDoubles(learner.RowLength);
     }
 
     public ILearner Learner { get; }
@@ -68,7 +68,7 @@ internal sealed class LearnerGroup
     {
         if (_isWholeBank && bank.Length == _row.Length) return bank;
         for (int lane = 0; lane < _settings.Length; lane++) _row[lane] = bank[_settings[lane]];
-        return _row;
+        return _row.Span;
     }
 
     private static ILearner CreateLearner<T>(SettingOptions[] settings, SlotBlocks blocks, int firstDenseSlot)

@@ -24,16 +24,16 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
 
     private readonly int _firstSlot;
     private readonly int _size;
-    private readonly double[] _priorVariance;
-    private readonly double[] _inverseFactor;
-    private readonly double[] _mean;
-    private readonly double[] _variance;
-    private readonly double[] _upper;
-    private readonly double[] _dense; // x
+    private readonly AlignedDoubles _priorVariance;
+    private readonly AlignedDoubles _inverseFactor;
+    private readonly AlignedDoubles _mean;
+    private readonly AlignedDoubles _variance;
+    private readonly AlignedDoubles _upper;
+    private readonly AlignedDoubles _dense; // x
     private readonly int[] _indices; // where it is not 0
-    private readonly double[] _projection; // U'x
-    private readonly double[] _gain; // Px
-    private readonly double[] _logOdds;
+    private readonly AlignedDoubles _projection; // U'x
+    private readonly AlignedDoubles _gain; // Px
+    private readonly AlignedDoubles _logOdds;
     private readonly Forgetting<T> _forgetting;
     private int _count; // entries in _indices
 
@@ -47,19 +47,19 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         _firstSlot = firstDenseSlot;
         _size = dense + 1;
         RowLength = RowWidth.Padded(settings.Length);
-        _priorVariance = new double[RowLength];
-        _inverseFactor = new double[RowLength];
-        _mean = new double[_size * RowLength];
-        _variance = new double[_size * RowLength];
-        _upper = new double[_size * (_size - 1) / 2 * RowLength];
-        _dense = new double[dense];
+        _priorVariance = new AlignedDoubles(RowLength);
+        _inverseFactor = new AlignedDoubles(RowLength);
+        _mean = new AlignedDoubles(_size * RowLength);
+        _variance = new AlignedDoubles(_size * RowLength);
+        _upper = new AlignedDoubles(_size * (_size - 1) / 2 * RowLength);
+        _dense = new AlignedDoubles(dense);
         _indices = new int[_size];
-        _projection = new double[_size * RowLength];
-        _gain = new double[_size * RowLength];
-        _logOdds = new double[RowLength];
+        _projection = new AlignedDoubles(_size * RowLength);
+        _gain = new AlignedDoubles(_size * RowLength);
+        _logOdds = new AlignedDoubles(RowLength);
         _forgetting = new Forgetting<T>(RowLength, ReadOnlySpan<SettingOptions>.CastUp(settings));
-        Array.Fill(_priorVariance, 1);
-        Array.Fill(_inverseFactor, 1);
+        _priorVariance.Span.Fill(1);
+        _inverseFactor.Span.Fill(1);
         for (int lane = 0; lane < settings.Length; lane++)
         {
             _priorVariance[lane] = settings[lane].PriorVariance;
@@ -70,7 +70,7 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
 
     public int RowLength { get; }
 
-    public ReadOnlySpan<double> LogOdds => _logOdds;
+    public ReadOnlySpan<double> LogOdds => _logOdds.Span;
 
     public int RowsPerSlot => 0;
 
@@ -82,7 +82,7 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
             T z = Project(lane, offset, out T variance);
-            (z / T.Sqrt(T.Of(1) + T.Of(PiOver8) * variance)).Store(ref _logOdds[0], lane);
+            (z / T.Sqrt(T.Of(1) + T.Of(PiOver8) * variance)).Store(ref _logOdds.First, lane);
         }
     }
 
@@ -170,7 +170,7 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
     // The entries of x that this rule sees, in the order of their indices; the last is the 1 of the intercept.
     private void CopyDense(in EncodedVector x)
     {
-        Array.Clear(_dense);
+        _dense.Span.Clear();
         for (int i = 0; i < x.Slots.Length; i++)
             if (TryIndex(x.Slots[i], out int index)) _dense[index] += x.Values[i];
         _count = 0;
@@ -184,9 +184,9 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
     private T Project(nuint lane, double offset, out T variance)
     {
         int last = _size - 1;
-        T z = T.Load(in _mean[0], Place(last, lane)) + T.Of(offset);
+        T z = T.Load(in _mean.First, Place(last, lane)) + T.Of(offset);
         for (int k = 0; k < _count - 1; k++)
-            z += T.Load(in _mean[0], Place(_indices[k], lane)) * T.Of(_dense[_indices[k]]);
+            z += T.Load(in _mean.First, Place(_indices[k], lane)) * T.Of(_dense[_indices[k]]);
 
         variance = T.Of(0);
         for (int j = _indices[0], before = 0; j <= last; j++)
@@ -195,9 +195,9 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
             T f = T.Of(!isEntry ? 0 : j == last ? 1 : _dense[j]);
             int column = Column(j);
             for (int k = 0; k < before; k++)
-                f += T.Load(in _upper[0], Place(column + _indices[k], lane)) * T.Of(_dense[_indices[k]]);
-            f.Store(ref _projection[0], Place(j, lane));
-            variance += T.Load(in _variance[0], Place(j, lane)) * f * f;
+                f += T.Load(in _upper.First, Place(column + _indices[k], lane)) * T.Of(_dense[_indices[k]]);
+            f.Store(ref _projection.First, Place(j, lane));
+            variance += T.Load(in _variance.First, Place(j, lane)) * f * f;
             if (isEntry) before++;
         }
         return z;
@@ -207,20 +207,20 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
     [MethodImpl(MethodImplOptions.NoInlining)]
     private void UpdateCovariance(nuint lane, T precision)
     {
-        for (int i = 0; i < _indices[0]; i++) T.Of(0).Store(ref _gain[0], Place(i, lane));
+        for (int i = 0; i < _indices[0]; i++) T.Of(0).Store(ref _gain.First, Place(i, lane));
         T alpha = T.Of(1);
         for (int j = _indices[0]; j < _size; j++)
         {
             nuint place = Place(j, lane);
-            T f = T.Load(in _projection[0], place);
-            T variance = T.Load(in _variance[0], place);
+            T f = T.Load(in _projection.First, place);
+            T variance = T.Load(in _variance.First, place);
             T v = variance * f;
             T scaled = precision * f;
             T nextAlpha = alpha + scaled * v;
             T reduced = variance * (alpha / nextAlpha);
-            T.Select(T.Greater(reduced, T.Of(SmallestVariance)), reduced, T.Of(SmallestVariance)).Store(ref _variance[0], place);
+            T.Select(T.Greater(reduced, T.Of(SmallestVariance)), reduced, T.Of(SmallestVariance)).Store(ref _variance.First, place);
             UpdateColumn(lane, j, T.Of(0) - scaled / alpha, v);
-            v.Store(ref _gain[0], place);
+            v.Store(ref _gain.First, place);
             alpha = nextAlpha;
         }
     }
@@ -228,8 +228,8 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
     [MethodImpl(MethodImplOptions.NoInlining)]
     private void UpdateColumn(nuint lane, int j, T factor, T v)
     {
-        ref double upper = ref MemoryMarshal.GetArrayDataReference(_upper);
-        ref double gain = ref MemoryMarshal.GetArrayDataReference(_gain);
+        ref double upper = ref _upper.First;
+        ref double gain = ref _gain.First;
         nuint stride = (nuint)RowLength;
         nuint upperPlace = Place(Column(j), lane);
         nuint gainPlace = lane;
@@ -248,30 +248,30 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         for (int i = 0; i < _size; i++)
         {
             nuint place = Place(i, lane);
-            (T.Load(in _mean[0], place) + gradient * T.Load(in _gain[0], place)).Store(ref _mean[0], place);
+            (T.Load(in _mean.First, place) + gradient * T.Load(in _gain.First, place)).Store(ref _mean.First, place);
         }
     }
 
     [MethodImpl(MethodImplOptions.NoInlining)]
     private void Forget(nuint lane, double elapsedMicroseconds)
     {
-        T inverse = T.Load(in _inverseFactor[0], lane);
+        T inverse = T.Load(in _inverseFactor.First, lane);
         if (_forgetting.IsNeeded)
         {
             T factor = _forgetting.Factor(lane, elapsedMicroseconds);
             for (int i = 0; i < _size - 1; i++)
             {
                 nuint place = Place(i, lane);
-                (T.Load(in _mean[0], place) * factor).Store(ref _mean[0], place);
+                (T.Load(in _mean.First, place) * factor).Store(ref _mean.First, place);
             }
             inverse = inverse / factor / factor;
         }
-        T prior = T.Load(in _priorVariance[0], lane);
+        T prior = T.Load(in _priorVariance.First, lane);
         for (int i = 0; i < _size; i++)
         {
             nuint place = Place(i, lane);
-            T variance = T.Load(in _variance[0], place) * inverse;
-            T.Select(T.Greater(variance, prior), prior, variance).Store(ref _variance[0], place);
+            T variance = T.Load(in _variance.First, place) * inverse;
+            T.Select(T.Greater(variance, prior), prior, variance).Store(ref _variance.First, place);
         }
     }
 }

@@ -10,20 +10,20 @@ namespace StreamLogit.Engine.Learning;
 internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
 {
     private readonly StepSchedule<T> _schedule;
-    private readonly double[] _weightDecay;
-    private readonly double[] _isOvershootProof; // 1 or 0
-    private readonly double[] _learned;
-    private readonly double[] _move; // of the intercept at the label at hand, over the scale
+    private readonly AlignedDoubles _weightDecay;
+    private readonly AlignedDoubles _isOvershootProof; // 1 or 0
+    private readonly AlignedDoubles _learned;
+    private readonly AlignedDoubles _move; // of the intercept at the label at hand, over the scale
     private readonly bool _scales;
     private readonly bool _isAnyOvershootProof;
 
     public SgdLearner(ReadOnlySpan<SgdSetting> settings, SlotBlocks blocks)
         : base(ReadOnlySpan<SettingOptions>.CastUp(settings), blocks, rowsPerSlot: 1)
     {
-        _weightDecay = new double[RowLength];
-        _isOvershootProof = new double[RowLength];
-        _learned = new double[RowLength];
-        _move = new double[RowLength];
+        _weightDecay = new AlignedDoubles(RowLength);
+        _isOvershootProof = new AlignedDoubles(RowLength);
+        _learned = new AlignedDoubles(RowLength);
+        _move = new AlignedDoubles(RowLength);
         double[] steps = new double[settings.Length], decays = new double[settings.Length];
         for (int lane = 0; lane < settings.Length; lane++)
         {
@@ -44,14 +44,14 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
         double squaredLength = _isAnyOvershootProof ? SquaredLength(in x) : 0;
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
-            T k = T.Load(in _learned[0], lane) + T.Of(1);
-            k.Store(ref _learned[0], lane);
+            T k = T.Load(in _learned.First, lane) + T.Of(1);
+            k.Store(ref _learned.First, lane);
             T step = _schedule.Step(lane, k);
             T move = step * T.Of(lesson.SignedWeight) * MissProbability(in lesson, lane);
             if (_isAnyOvershootProof) move = OvershootProof(in lesson, lane, step, squaredLength, move);
-            (T.Load(in Intercepts[0], lane) + move).Store(ref Intercepts[0], lane);
+            (T.Load(in Intercepts.First, lane) + move).Store(ref Intercepts.First, lane);
             if (_scales) move *= T.Of(1) / Scale.Multiply(lane, Factor(in lesson, lane, step));
-            move.Store(ref _move[0], lane);
+            move.Store(ref _move.First, lane);
         }
         AddMove(in x);
     }
@@ -66,7 +66,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
         nuint length = (nuint)RowLength;
         for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
         {
-            T move = T.Load(in _move[0], lane);
+            T move = T.Load(in _move.First, lane);
             nuint i = 0;
             for (; i + 4 <= count; i += 4)
             {
@@ -102,7 +102,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     private T Factor(in Lesson lesson, nuint lane, T step)
     {
-        T factor = T.Of(1) - step * T.Load(in _weightDecay[0], lane);
+        T factor = T.Of(1) - step * T.Load(in _weightDecay.First, lane);
         factor = T.Select(T.Greater(factor, T.Of(0)), factor, T.Of(0));
         return Forgetting.IsNeeded ? factor * Forgetting.Factor(lane, lesson.ElapsedMicroseconds) : factor;
     }
@@ -112,7 +112,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
     {
         T distance = MarginMove.ByGradientFlow(Margin(in lesson, lane), step * T.Of(lesson.Weight * squaredLength));
         T proof = distance / T.Of(lesson.Label == 1 ? squaredLength : -squaredLength);
-        return T.Select(T.Greater(T.Load(in _isOvershootProof[0], lane), T.Of(0)), proof, move);
+        return T.Select(T.Greater(T.Load(in _isOvershootProof.First, lane), T.Of(0)), proof, move);
     }
 
     // With the 1 of the intercept.

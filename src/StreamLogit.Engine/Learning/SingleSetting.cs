@@ -11,17 +11,17 @@ internal sealed class SingleSetting(bool keepsLosses, int widestLanes) : Blend
 {
     private const int Most = RowWidth.Widest;
     private readonly int _lanes = RowWidth.Lanes(Most, widestLanes);
-    private readonly double[] _againstLabel = new double[Most];
-    private readonly double[] _exp = new double[Most];
-    private readonly double[] _weight = new double[Most];
-    private readonly double[] _loss = new double[Most];
-    private readonly double[] _miss = new double[1];
+    private readonly AlignedDoubles _againstLabel = new AlignedDoubles(Most);
+    private readonly AlignedDoubles _exp = new AlignedDoubles(Most);
+    private readonly AlignedDoubles _weight = new AlignedDoubles(Most);
+    private readonly AlignedDoubles _loss = new AlignedDoubles(Most);
+    private readonly AlignedDoubles _miss = new AlignedDoubles(1);
     private int _waiting;
     private double _logLossTotal;
     private double _brierTotal;
     private double _weightTotal;
 
-    public override ReadOnlySpan<double> MissProbability => _miss;
+    public override ReadOnlySpan<double> MissProbability => _miss.Span;
 
     public override bool KeepsLosses => keepsLosses;
 
@@ -106,8 +106,8 @@ internal sealed class SingleSetting(bool keepsLosses, int widestLanes) : Blend
     {
         for (nuint lane = 0; lane < Most; lane += (nuint)T.Width)
         {
-            T loss = LaneMath.SoftplusOf(T.Load(in _againstLabel[0], lane), T.Load(in _exp[0], lane));
-            (loss * T.Load(in _weight[0], lane)).Store(ref _loss[0], lane);
+            T loss = LaneMath.SoftplusOf(T.Load(in _againstLabel.First, lane), T.Load(in _exp.First, lane));
+            (loss * T.Load(in _weight.First, lane)).Store(ref _loss.First, lane);
         }
     }
 }

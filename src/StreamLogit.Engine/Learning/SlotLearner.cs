@@ -9,8 +9,8 @@ namespace StreamLogit.Engine.Learning;
 /// <summary>What the rules have in common that keep some rows of settings for every slot. A coefficient is scale * its place in the first row.</summary>
 internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
 {
-    private readonly double[] _logOdds;
-    private readonly double[] _weighted;
+    private readonly AlignedDoubles _logOdds;
+    private readonly AlignedDoubles _weighted;
 
     protected SlotLearner(ReadOnlySpan<SettingOptions> settings, SlotBlocks blocks, int rowsPerSlot)
     {
@@ -20,9 +20,9 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
         Table = new SlotTable(blocks.PaddedSlotCount, RowLength * rowsPerSlot);
         Scale = new LazyScale<T>(Table, blocks, RowLength, row: 0);
         Forgetting = new Forgetting<T>(RowLength, settings);
-        Intercepts = new double[RowLength];
-        _logOdds = new double[RowLength];
-        _weighted = new double[RowLength];
+        Intercepts = new AlignedDoubles(RowLength);
+        _logOdds = new AlignedDoubles(RowLength);
+        _weighted = new AlignedDoubles(RowLength);
     }
 
     public int RowLength { get; }
@@ -31,7 +31,7 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
 
     public abstract int NumbersPerSetting { get; }
 
-    public ReadOnlySpan<double> LogOdds => _logOdds;
+    public ReadOnlySpan<double> LogOdds => _logOdds.Span;
 
     protected SlotBlocks Blocks { get; }
 
@@ -41,7 +41,7 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
 
     protected Forgetting<T> Forgetting { get; }
 
-    protected double[] Intercepts { get; }
+    protected AlignedDoubles Intercepts { get; }
 
     public abstract void Learn(in EncodedVector x, in Lesson lesson);
 
@@ -69,8 +69,8 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
             if (i + 1 < count) sum1 += Product(ref table, ref slots, ref values, i + 1, stride, lane);
             if (i + 2 < count) sum2 += Product(ref table, ref slots, ref values, i + 2, stride, lane);
             T sum = sum0 + sum1 + (sum2 + sum3);
-            T logOdds = T.Load(in Intercepts[0], lane) + T.Of(offset) + Scale.At(lane) * sum;
-            logOdds.Store(ref _logOdds[0], lane);
+            T logOdds = T.Load(in Intercepts.First, lane) + T.Of(offset) + Scale.At(lane) * sum;
+            logOdds.Store(ref _logOdds.First, lane);
         }
     }
 
@@ -80,7 +80,7 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
         for (int i = 0; i < x.Slots.Length; i++)
         {
             ref double row = ref Unsafe.Add(ref Table.First, (nint)x.Slots[i] * Table.RowLength);
-            coefficients[i] += LaneSum.OfProducts<T>(in _weighted[0], in row, (nuint)RowLength);
+            coefficients[i] += LaneSum.OfProducts<T>(in _weighted.First, in row, (nuint)RowLength);
         }
     }
 
@@ -127,7 +127,7 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
 
     /// <summary>The log-odds of what was the case, from the last <see cref="Score"/>.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    protected T Margin(in Lesson lesson, nuint lane) => T.Load(in _logOdds[0], lane) * T.Of(2 * lesson.Label - 1);
+    protected T Margin(in Lesson lesson, nuint lane) => T.Load(in _logOdds.First, lane) * T.Of(2 * lesson.Label - 1);
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     private static T Product(ref double table, ref int slots, ref double values, nuint i, nuint stride, nuint lane) =>

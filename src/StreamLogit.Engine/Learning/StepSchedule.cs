@@ -6,8 +6,8 @@ namespace StreamLogit.Engine.Learning;
 /// <summary>The step of every setting for its k-th label: step / k^decay, without rounding of the power where decay is 0, 1/2 or 1.</summary>
 internal sealed class StepSchedule<T> where T : struct, ILanes<T>
 {
-    private readonly double[] _step;
-    private readonly double[] _decay;
+    private readonly AlignedDoubles _step;
+    private readonly AlignedDoubles _decay;
     private readonly bool _isConstant = true;
     private readonly bool _needsPower;
 
@@ -16,10 +16,10 @@ internal sealed class StepSchedule<T> where T : struct, ILanes<T>
     /// <param name="decays">The power by which it falls.</param>
     public StepSchedule(int rowLength, ReadOnlySpan<double> steps, ReadOnlySpan<double> decays)
     {
-        _step = new double[rowLength];
-        _decay = new double[rowLength];
-        steps.CopyTo(_step);
-        decays.CopyTo(_decay);
+        _step = new AlignedDoubles(rowLength);
+        _decay = new AlignedDoubles(rowLength);
+        steps.CopyTo(_step.Span);
+        decays.CopyTo(_decay.Span);
         foreach (double decay in decays)
         {
             if (decay != 0) _isConstant = false;
@@ -30,13 +30,13 @@ internal sealed class StepSchedule<T> where T : struct, ILanes<T>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public T Step(nuint lane, T k)
     {
-        T step = T.Load(in _step[0], lane);
+        T step = T.Load(in _step.First, lane);
         return _isConstant ? step : step / Power(lane, k);
     }
 
     private T Power(nuint lane, T k)
     {
-        T decay = T.Load(in _decay[0], lane);
+        T decay = T.Load(in _decay.First, lane);
         T power = _needsPower ? LaneMath.Exp(decay * LaneMath.Log(k)) : T.Of(1);
         power = T.Select(Equal(decay, T.Of(0.5)), T.Sqrt(k), power);
         return T.Select(Equal(decay, T.Of(1)), k, power);

@@ -45,7 +45,6 @@ internal static class ShowCommand
             json.WriteStartObject();
             json.WriteString("name", setting.Name);
             json.WriteNumber("intercept", setting.Intercept);
-            json.WriteNumber("nonZero", setting.NonZero);
             json.WriteStartArray("coefficients");
             foreach (var coefficient in setting.Coefficients)
             {
