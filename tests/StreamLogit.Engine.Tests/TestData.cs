@@ -3,10 +3,10 @@ using System.Text.Json;
 
 namespace StreamLogit.Engine.Tests;
 
-/// <summary>The files of tests/data, found from the folder of the test program upwards. See SOURCES.md there.</summary>
+/// <summary>The files of tests/data. See SOURCES.md there.</summary>
 internal static class TestData
 {
-    public static string Folder { get; } = FindFolder();
+    public static string Folder { get; } = RepositoryFiles.At("tests", "data");
 
     /// <summary>The values in reference.json.</summary>
     public static JsonElement Reference { get; } = JsonDocument.Parse(File.ReadAllText(Path.Combine(Folder, "reference.json"))).RootElement;
@@ -23,15 +23,5 @@ internal static class TestData
             string[] fields = line.Split(',');
             return places.Select(place => double.Parse(fields[place], CultureInfo.InvariantCulture)).ToArray();
         })];
-    }
-
-    private static string FindFolder()
-    {
-        for (DirectoryInfo? folder = new(AppContext.BaseDirectory); folder is not null; folder = folder.Parent)
-        {
-            string data = Path.Combine(folder.FullName, "tests", "data");
-            if (File.Exists(Path.Combine(data, "SOURCES.md"))) return data;
-        }
-        throw new DirectoryNotFoundException("tests/data is in no folder above the test program.");
     }
 }

@@ -13,7 +13,7 @@ public sealed partial class ExampleTests
     public static TheoryData<string, string> Examples()
     {
         var examples = new TheoryData<string, string>();
-        foreach (string file in Directory.EnumerateFiles(Path.Combine(RepositoryFiles.Root, "docs"), "*.md").Append(Path.Combine(RepositoryFiles.Root, "README.md")))
+        foreach (string file in Directory.EnumerateFiles(RepositoryFiles.At("docs"), "*.md").Append(RepositoryFiles.At("README.md")))
         {
             if (!File.Exists(file)) continue;
             int number = 0;
@@ -22,7 +22,7 @@ public sealed partial class ExampleTests
                 if (block.Groups[1].Value.Contains("\"stream\":", StringComparison.Ordinal)) examples.Add($"{Path.GetFileName(file)} {++number}", block.Groups[1].Value);
             }
         }
-        string demo = Path.Combine(RepositoryFiles.Root, "demo-streams");
+        string demo = RepositoryFiles.At("demo-streams");
         foreach (string file in Directory.Exists(demo) ? Directory.EnumerateFiles(demo, "*.json*", SearchOption.AllDirectories) : [])
         {
             if (!file.EndsWith(".jsonl", StringComparison.Ordinal)) examples.Add(Path.GetRelativePath(RepositoryFiles.Root, file), File.ReadAllText(file));

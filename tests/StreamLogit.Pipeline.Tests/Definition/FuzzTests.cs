@@ -10,7 +10,7 @@ public sealed class FuzzTests
 {
     private const int Samples = 10_000;
 
-    private static readonly string Complete = File.ReadAllText(Path.Combine(RepositoryFiles.Root, "docs/stream-definition.md"))
+    private static readonly string Complete = File.ReadAllText(RepositoryFiles.At("docs/stream-definition.md"))
         .Split("```jsonc\n")[1].Split("```")[0];
 
     private static readonly string[] Tokens =

@@ -2,7 +2,6 @@ using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Fitting;
 using StreamLogit.Pipeline.Fits;
 using StreamLogit.Pipeline.Options;
-using StreamLogit.Pipeline.Tests.Definition;
 
 namespace StreamLogit.Pipeline.Tests.Fits;
 
@@ -107,7 +106,7 @@ public sealed class FitRunTests : IDisposable
     }
 
     private static IEnumerable<(int Launch, int Temperature, int Fail)> LaunchRows() =>
-        File.ReadLines(Path.Combine(RepositoryFiles.Root, "tests", "data", "oring_launch_order.csv")).Skip(1).Select(line => line.Split(','))
+        File.ReadLines(RepositoryFiles.At("tests", "data", "oring_launch_order.csv")).Skip(1).Select(line => line.Split(','))
             .Select(cells => (Whole(cells[0]), Whole(cells[1]), Whole(cells[4])));
 
     private static int Whole(string cell) => int.Parse(cell, System.Globalization.CultureInfo.InvariantCulture);

@@ -83,15 +83,17 @@ public sealed class BacktestCommandTests : IDisposable
     [Theory]
     [InlineData()]
     [InlineData("--vary", "learning.switchRate=0")]
-    public void Replay_Stopped_GivesTheResultSoFarAndExitsWith1(params string[] options)
+    public async Task Replay_Stopped_GivesTheResultSoFarAndExitsWith1(params string[] options)
     {
         // A pipe that never ends: the replay waits for more when it is asked to stop.
         string pipe = _folder["pipe.jsonl"];
         using (var make = Process.Start("mkfifo", [pipe])) make.WaitForExit();
         using var process = StreamLogitProcess.Start(["replay", Definition, pipe, .. options, "--json"]);
-        using var writer = new FileStream(pipe, FileMode.Open, FileAccess.Write);
-        writer.Write(File.ReadAllBytes(Recording));
-        writer.Flush();
+        // Opened for reading too, since a pipe without a reader would keep the test waiting for ever.
+        using var writer = new FileStream(pipe, FileMode.Open, FileAccess.ReadWrite);
+        byte[] records = await File.ReadAllBytesAsync(Recording, TestContext.Current.CancellationToken);
+        await Task.Run(() => writer.Write(records), TestContext.Current.CancellationToken)
+            .WaitAsync(StreamLogitProcess.Patience, TestContext.Current.CancellationToken);
         process.Terminate();
         var result = process.WaitForEnd();
 

@@ -8,7 +8,8 @@ namespace StreamLogit.Worker.Tests.Running;
 internal sealed class StreamLogitProcess : IDisposable
 {
     public static readonly string Program = Path.Combine(AppContext.BaseDirectory, "streamlogit.dll");
-    private static readonly TimeSpan Patience = TimeSpan.FromMinutes(3);
+    /// <summary>How long a test waits for the program before it fails.</summary>
+    public static readonly TimeSpan Patience = TimeSpan.FromMinutes(3);
 
     private readonly Process _process;
     private readonly Task<byte[]> _output;
@@ -69,7 +70,7 @@ internal sealed class StreamLogitProcess : IDisposable
             _process.Kill();
             throw new TimeoutException("The program did not end. It said: " + string.Join('\n', _errorLines));
         }
-        _errors.Wait();
+        if (!Task.WaitAll([_errors, _output], Patience)) throw new TimeoutException("The program ended, but something holds its output open.");
         _errorLinesSeen.AddRange(_errorLines);
         return new ProgramResult(_process.ExitCode, _output.Result, string.Concat(_errorLinesSeen.Select(line => line + "\n")));
     }
@@ -88,8 +89,8 @@ internal sealed class StreamLogitProcess : IDisposable
     /// <summary>Waits until a file has so many bytes, or the program has ended.</summary>
     public void WaitForLength(string path, long bytes)
     {
-        var wait = new SpinWait();
-        while (!HasExited && !(File.Exists(path) && new FileInfo(path).Length >= bytes)) wait.SpinOnce();
+        if (!SpinWait.SpinUntil(() => HasExited || (File.Exists(path) && new FileInfo(path).Length >= bytes), Patience))
+            throw new TimeoutException($"'{path}' did not grow to {bytes} bytes. The program said: " + string.Join('\n', _errorLines));
     }
 
     /// <summary>Ends the process without giving it a chance to do anything: SIGKILL.</summary>
@@ -99,7 +100,7 @@ internal sealed class StreamLogitProcess : IDisposable
     public void Terminate()
     {
         using var kill = Process.Start("kill", ["-TERM", _process.Id.ToString(CultureInfo.InvariantCulture)]);
-        kill.WaitForExit();
+        kill.WaitForExit(Patience);
     }
 
     public void Dispose()

@@ -1,4 +1,4 @@
-namespace StreamLogit.Pipeline.Tests;
+namespace StreamLogit.Tests;
 
 /// <summary>A folder that is gone when the test is over.</summary>
 internal sealed class TemporaryFolder : IDisposable
