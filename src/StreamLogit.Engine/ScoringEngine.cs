@@ -54,7 +54,7 @@ public sealed class ScoringEngine
             _bank.Names, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive,
             _encoder.LabelKeys.Length);
         _early = new EarlyLabels(definition.Labels.EarlyMicroseconds);
-        _health = new HealthLedger(definition.Health);
+        _health = new HealthLedger(definition, Schema, _bank.Names);
         _reasons = new ReasonFinder(definition.Features.Length);
         _logOdds = new double[_bank.SettingCount];
         _coefficients = new double[_encoder.MaximumEntries];
@@ -69,6 +69,13 @@ public sealed class ScoringEngine
 
     /// <summary>Whether scores are given their reasons, which costs time and changes nothing else. Default true.</summary>
     public bool GiveReasons { get; set; } = true;
+
+    /// <summary>Whether health is counted. Off only to measure what it costs.</summary>
+    internal bool CountsHealth
+    {
+        get => _health.IsOn;
+        set => _health.IsOn = value;
+    }
 
     /// <summary>Is shown every event whose label becomes known, before the engine learns from it; for fits, baselines and comparisons. Changes nothing.</summary>
     public LabelledEventTaker? Labelled { get; set; }
@@ -112,22 +119,26 @@ public sealed class ScoringEngine
     }
 
     /// <summary>How the published probabilities are doing.</summary>
-    public HealthSnapshot Health() => _health.Snapshot(_clock.Now) with
+    public HealthSnapshot Health()
     {
-        Records = _records,
-        Events = _encoder.Events,
-        Awaiting = _awaiting.Awaiting,
-        AwaitingBytes = _awaiting.MemoryBytes + _coming.Bytes,
-        Early = _early.Count,
-        Expired = _events.Expired,
-        Thinned = _events.Thinned,
-        Repeated = _events.Repeated,
-        Corrected = _events.Corrected,
-        TaughtAtOnce = _events.TaughtAtOnce,
-        CollidedEvents = _encoder.CollidedEvents,
-        Histories = _encoder.HistoryFigures,
-        Settings = [.. Enumerable.Range(0, _bank.SettingCount).Select(FiguresOf)],
-    };
+        TellSettings();
+        return _health.Snapshot(_clock.Now) with
+        {
+            Records = _records,
+            Events = _encoder.Events,
+            Awaiting = _awaiting.Awaiting,
+            AwaitingBytes = _awaiting.MemoryBytes + _coming.Bytes,
+            Early = _early.Count,
+            Expired = _events.Expired,
+            Thinned = _events.Thinned,
+            Repeated = _events.Repeated,
+            Corrected = _events.Corrected,
+            TaughtAtOnce = _events.TaughtAtOnce,
+            CollidedEvents = _encoder.CollidedEvents,
+            Histories = _encoder.HistoryFigures,
+            Settings = [.. Enumerable.Range(0, _bank.SettingCount).Select(FiguresOf)],
+        };
+    }
 
     /// <summary>The coefficients with their names.</summary>
     public ModelSnapshot Model()
@@ -248,17 +259,27 @@ public sealed class ScoringEngine
         var encoded = vector.Vector;
         double logOdds = _bank.Score(encoded, record.TimeMicroseconds, _logOdds);
         double probability = Elementary.Sigmoid(logOdds);
+        bool isAlert = probability >= Definition.Decision.Cutoff;
+        ulong slices = _health.CountEvent(records, index, vector, logOdds, probability, isAlert, _clock.Microseconds);
         long? knownAt = KnownAt(record);
         bool isLabelled = record.Kind == RecordKind.LabelledEvent && knownAt is null;
         if (!isLabelled || Definition.Decision.PublishLabelled)
-            Publish(index, logOdds, probability, vector, eventsBefore, scores);
+            Publish(index, logOdds, probability, isAlert, vector, eventsBefore, scores);
 
         if (isLabelled)
         {
-            double weight = double.IsNaN(record.Weight) ? 1 : record.Weight;
             _events.TaughtAtOnce++;
-            Learn(record.IdHash, encoded, _logOdds, logOdds, isFresh: true, record.Label, weight, _clock.Microseconds);
-            _encoder.Learn(_encoder.LabelKeys, record.TimeMicroseconds, record.Label, weight);
+            var label = new CountedLabel
+            {
+                LogOdds = logOdds,
+                Weight = double.IsNaN(record.Weight) ? 1 : record.Weight,
+                ClockMicroseconds = _clock.Microseconds,
+                Slices = slices,
+                Label = record.Label,
+                Alert = isAlert ? 1 : 0,
+            };
+            Learn(record.IdHash, encoded, _logOdds, isFresh: true, label, _clock.Microseconds);
+            _encoder.Learn(_encoder.LabelKeys, record.TimeMicroseconds, label.Label, label.Weight);
         }
         else if (IsKept(probability, record.IdHash, out int standsFor))
         {
@@ -269,6 +290,8 @@ public sealed class ScoringEngine
                 TimeMicroseconds = record.TimeMicroseconds,
                 LogOdds = logOdds,
                 Weight = record.Weight,
+                Slices = slices,
+                Alert = isAlert ? 1 : 0,
                 StandsFor = standsFor,
             };
             var place = _awaiting.Add(header, _logOdds, encoded, id, _encoder.LabelKeys);
@@ -325,6 +348,11 @@ public sealed class ScoringEngine
     private void MoveClock(RecordBatch records, long timeMicroseconds)
     {
         _clock.MoveTo(timeMicroseconds);
+        if (_health.IsMinuteOver(_clock.Microseconds))
+        {
+            TellSettings();
+            _health.StartMinute(_clock.Microseconds);
+        }
         LetGo();
         RejectEarlyLabels(records, _clock.Microseconds);
     }
@@ -336,8 +364,9 @@ public sealed class ScoringEngine
         while (_awaiting.TryTakeExpired(_clock.Microseconds, out var place))
         {
             _events.Expired++;
+            _health.CountExpired();
             if (Definition.Labels.Unlabelled == UnlabelledEvents.Negative)
-                _awaiting.Mark(place, new LabelMark(EventState.AssumedGood, LearnFirst(place, label: 0, weight: double.NaN)));
+                _awaiting.Mark(place, new LabelMark(EventState.AssumedGood, LearnFirst(place, label: 0, weight: double.NaN, isAssumed: true)));
             else
                 _awaiting.Mark(place, new LabelMark(EventState.Gone, default));
         }
@@ -357,43 +386,52 @@ public sealed class ScoringEngine
         };
         if (known is null)
         {
-            _awaiting.Mark(place, new LabelMark(state, LearnFirst(place, label, weight)));
+            _awaiting.Mark(place, new LabelMark(state, LearnFirst(place, label, weight, isAssumed: false)));
             return;
         }
         if (known == label) _events.Repeated++;
         _awaiting.Mark(place, new LabelMark(state, known == label ? mark.Count : Correct(place, label, weight, mark.Count)));
     }
 
-    /// <summary>Learns from an event as it was at scoring.</summary>
-    private LabelCount LearnFirst(EventPlace place, int label, double weight)
+    /// <summary>Learns from an event as it was at scoring. A label that is only assumed, because the wait is over, has taken no time to come.</summary>
+    private LabelCount LearnFirst(EventPlace place, int label, double weight, bool isAssumed)
     {
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
-        weight = scored.WeightOf(weight);
-        _encoder.Learn(scored.LabelKeys, header.TimeMicroseconds, label, weight);
-        return Learn(
-            header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), header.LogOdds, isFresh: false, label, weight, header.ScoredAtMicroseconds);
+        var counted = Counted(header, label, scored.WeightOf(weight));
+        if (!isAssumed) counted.DelayMicroseconds = _clock.Microseconds - header.ScoredAtMicroseconds;
+        _encoder.Learn(scored.LabelKeys, header.TimeMicroseconds, label, counted.Weight);
+        return Learn(header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), isFresh: false, counted, header.ScoredAtMicroseconds);
     }
 
+    private CountedLabel Counted(in KeptHeader header, int label, double weight) => new()
+    {
+        LogOdds = header.LogOdds,
+        Weight = weight,
+        ClockMicroseconds = _clock.Microseconds,
+        Slices = header.Slices,
+        Label = label,
+        Alert = header.Alert,
+    };
+
     private LabelCount Learn(
-        ulong idHash, in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, double publishedLogOdds, bool isFresh, int label, double weight,
-        long scoredAtMicroseconds)
+        ulong idHash, in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, bool isFresh, in CountedLabel label, long scoredAtMicroseconds)
     {
         Labelled?.Invoke(new LabelledEvent
         {
             IdHash = idHash,
             Vector = vector,
             SettingLogOdds = scoredLogOdds,
-            LogOdds = publishedLogOdds,
-            Label = label,
-            Weight = weight,
+            LogOdds = label.LogOdds,
+            Label = label.Label,
+            Weight = label.Weight,
             TakenBackWeight = 0,
             ScoredAtMicroseconds = scoredAtMicroseconds,
             KnownAtMicroseconds = _clock.Microseconds,
         });
-        _bank.Learn(vector, scoredLogOdds, isFresh, label, weight, _clock.Microseconds);
+        _bank.Learn(vector, scoredLogOdds, isFresh, label.Label, label.Weight, _clock.Microseconds);
         _version++;
-        return _health.CountLabel(_clock.Microseconds, publishedLogOdds, label, weight);
+        return _health.CountLabel(label);
     }
 
     /// <summary>Learns the opposite of what was learned before, from the same features; health counts the event by its final truth.</summary>
@@ -420,7 +458,7 @@ public sealed class ScoringEngine
         _encoder.Learn(scored.LabelKeys, scored.Header.TimeMicroseconds, label, weight);
         _version++;
         _events.Corrected++;
-        return _health.CorrectLabel(count, scored.Header.LogOdds, label, weight);
+        return _health.CorrectLabel(count, Counted(scored.Header, label, weight));
     }
 
     /// <summary>Whether an event is kept for its label, and how many events like it it stands for.</summary>
@@ -447,7 +485,8 @@ public sealed class ScoringEngine
         _health.CountReject(records.Records[index].Reason);
     }
 
-    private void Publish(int record, double logOdds, double probability, VectorBuilder vector, long eventsBefore, ScoreBatch scores)
+    private void Publish(
+        int record, double logOdds, double probability, bool isAlert, VectorBuilder vector, long eventsBefore, ScoreBatch scores)
     {
         ref var score = ref scores.Add(out var reasons);
         score = new Score
@@ -455,13 +494,26 @@ public sealed class ScoringEngine
             Record = record,
             Probability = probability,
             LogOdds = logOdds,
-            IsAlert = probability >= Definition.Decision.Cutoff,
+            IsAlert = isAlert,
             Version = _version,
         };
         if (!GiveReasons || reasons.Length == 0) return;
         var coefficients = _coefficients.AsSpan(0, vector.Count);
         _bank.PublishedCoefficients(vector.Vector, coefficients);
         score.ReasonCount = _reasons.Find(vector, coefficients, eventsBefore, reasons);
+    }
+
+    /// <summary>Tells health what the settings of the bank have come to.</summary>
+    private void TellSettings()
+    {
+        var totals = _health.Settings;
+        for (int setting = 0; setting < _bank.SettingCount; setting++)
+        {
+            totals.LogLoss[setting] = _bank.LogLossTotal(setting);
+            totals.Brier[setting] = _bank.BrierTotal(setting);
+            totals.Weight[setting] = _bank.WeightTotal(setting);
+        }
+        _bank.BlendWeights(totals.BlendWeight);
     }
 
     private void StartFrom(FittedModel fitted)

@@ -20,6 +20,12 @@ internal struct KeptHeader
     /// <summary>The importance weight that the event gave, or NaN.</summary>
     public double Weight;
 
+    /// <summary>Which value of each sliced field it had, as health codes them.</summary>
+    public ulong Slices;
+
+    /// <summary>1 where the decision was <c>alert</c>, else 0.</summary>
+    public int Alert;
+
     /// <summary>How many events it stands for, where others like it were not kept.</summary>
     public int StandsFor;
 

@@ -10,13 +10,17 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int f
     private readonly double[] _values = new double[maximumEntries];
     private readonly int[] _features = new int[maximumEntries];
     private readonly double[] _sumsBefore = new double[maximumEntries];
-
+    private readonly int[] _unseen = new int[features];
     private readonly double[] _figures = new double[features];
+    private int _unseenCount;
 
     public int Count { get; private set; }
 
     /// <summary>Whether a category of this event met a slot that another value had taken before it.</summary>
     public bool HasCollision { get; private set; }
+
+    /// <summary>The features with a category value whose slot no event used before.</summary>
+    public ReadOnlySpan<int> UnseenFeatures => _unseen.AsSpan(0, _unseenCount);
 
     /// <summary>The feature whose entries are being added.</summary>
     public int Feature { get; set; }
@@ -39,6 +43,7 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int f
     {
         Count = 0;
         HasCollision = false;
+        _unseenCount = 0;
     }
 
     /// <summary>Adds an entry at a dense slot.</summary>
@@ -55,7 +60,10 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int f
         var use = ledger.AddHashed(slot, tag, value, out _sumsBefore[Count]);
         HasCollision |= use == SlotUse.Collision;
         Append(slot, value);
-        return use == SlotUse.First;
+        if (use != SlotUse.First) return false;
+        // A text may have many new values and is one feature.
+        if (_unseenCount == 0 || _unseen[_unseenCount - 1] != Feature) _unseen[_unseenCount++] = Feature;
+        return true;
     }
 
     private void Append(int slot, double value)

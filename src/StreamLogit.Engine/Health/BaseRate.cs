@@ -1,5 +1,3 @@
-using StreamLogit.Engine.Numerics;
-
 namespace StreamLogit.Engine.Health;
 
 /// <summary>
@@ -19,7 +17,4 @@ internal struct BaseRate
         Ones += weight * label;
         Labels += weight;
     }
-
-    /// <summary>-ln of the probability that a base rate gave to a label, in nats.</summary>
-    public static double LogLoss(double probability, int label) => -Elementary.Log(label == 1 ? probability : 1 - probability);
 }

@@ -1,127 +1,293 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Health.Alarms;
+using StreamLogit.Engine.Health.Detection;
+using StreamLogit.Engine.Health.Drift;
+using StreamLogit.Engine.Health.RollUps;
+using StreamLogit.Engine.Health.Slices;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
 
 namespace StreamLogit.Engine.Health;
 
-/// <summary>Counts what happens and keeps the sums from which health is told, always of the probabilities that were published.</summary>
+/// <summary>
+/// Counts what happens and keeps the sums from which health is told, always of the probabilities that were published. Labels are counted in short runs; what is counted, and
+/// every bit of it, is the same however long the runs are, so anybody may look or save at any time.
+/// </summary>
 internal sealed class HealthLedger
 {
     private const string Part = "health/counts";
-    private static readonly RejectReason[] Reasons = [.. Enum.GetValues<RejectReason>().Where(r => r != RejectReason.None)];
+    private const long MicrosecondsOfMinute = 60_000_000;
+    private const long MinutesOfHour = 60;
+    private const long MinutesOfDay = 24 * MinutesOfHour;
+    private const long MostMinutesTogether = 5;
+    private const double FewRecords = 8;
 
     private readonly HealthOptions _options;
-    private readonly MinuteRing _minutes;
+    private readonly ImmutableArray<string> _settingNames;
+    private readonly HealthRow _row;
+    private readonly RollUp _stream;
+    private readonly double[] _open; // the numbers of the open minute
+    private readonly Tally _openTally;
+    private readonly SettingShares _settingShares;
     private readonly LastLabels _last;
-    private readonly long[] _rejects = new long[Reasons.Max(r => (int)r) + 1];
-    private LabelSums _total;
+    private readonly LabelRun _waiting = new(); // labels that are to be counted in one run
+    private readonly SlicedField[] _slices;
+    private readonly DriftLedger _drift;
+    private readonly ChangeDetectors _detectors;
+    private readonly AlarmWatch _alarms;
+    private readonly AlarmMetrics _alarmMetrics;
+    private readonly HealthReader _reader;
+    private readonly long[] _rejects = new long[(int)Enum.GetValues<RejectReason>().Max() + 1];
     private BaseRate _baseRate;
+    private long _labelled;
+    private long _minute; // the first one of those that are open together
+    private long _openMinute; // that of the clock
+    private long _minuteEnd = long.MinValue; // in microseconds; before the first time, every minute is over
+    private long _hourEnd = long.MinValue; // in minutes
+    private long _dayEnd = long.MinValue;
 
-    public HealthLedger(HealthOptions options)
+    public HealthLedger(EngineDefinition definition, RecordSchema schema, ImmutableArray<string> settingNames)
     {
-        _options = options;
-        _minutes = new MinuteRing(options.Windows.Select(w => (int)(w.LengthMicroseconds / 60_000_000)).DefaultIfEmpty(1).Max());
-        _last = new LastLabels(options.LastLabels);
+        _options = definition.Health;
+        _settingNames = settingNames;
+        var levels = HealthLevels.Of(_options);
+        _row = new HealthRow(settingNames.Length);
+        _stream = _row.CreateRollUp("health/stream", levels);
+        _open = _stream.Levels[0].Numbers;
+        _openTally = _stream.Levels[0].Tally;
+        Settings = new SettingTotals(settingNames.Length);
+        _settingShares = new SettingShares(Settings);
+        _last = new LastLabels(_options.LastLabels);
+        _slices = [.. _options.Slices.Select(path => new SlicedField(path, schema.IndexOf(path), _options.SliceValues, levels))];
+        _drift = new DriftLedger(definition, schema);
+        _detectors = new ChangeDetectors(_options.LabelsPerFalseAlarm, _options.DetectAfterLabels);
+        _alarms = new AlarmWatch(_options.Alarms);
+        _alarmMetrics = new AlarmMetrics(_stream, _row, _slices, _drift, _detectors);
+        _reader = new HealthReader(_options, settingNames, _row, _stream, _settingShares, _last, _slices, _drift);
     }
+
+    /// <summary>Whether anything but the number of labels is counted. Off only to measure what counting costs.</summary>
+    public bool IsOn { get; set; } = true;
 
     /// <summary>Labels learned.</summary>
-    public long Labelled => _total.Count;
+    public long Labelled => _labelled;
 
-    public void CountReject(RejectReason reason) => _rejects[(int)reason]++;
+    /// <summary>What the settings of the bank have come to. To be filled in before <see cref="StartMinute"/> and <see cref="Snapshot"/>.</summary>
+    public SettingTotals Settings { get; }
 
-    /// <summary>Counts a label against the log-odds that were published for its event.</summary>
-    public LabelCount CountLabel(long clockMicroseconds, double logOdds, int label, double weight)
+    private double OpenRecords
     {
-        double baseRate = _baseRate.Probability;
-        _baseRate.Learn(label, weight);
-        var sums = LabelSums.Of(logOdds, baseRate, label, weight);
-        _total.Add(sums);
-        return new LabelCount(_minutes.Add(clockMicroseconds, sums), _last.Add(sums), baseRate, (float)weight);
+        get
+        {
+            ref var stream = ref HealthRow.Stream(_open);
+            return stream.Events + stream.Rejects + HealthRow.Labels(_open).Count + _waiting.Count;
+        }
     }
 
-    /// <summary>Counts a label as its opposite, in every window that it is still in.</summary>
-    /// <param name="counted">How it was counted.</param>
-    /// <param name="logOdds">The log-odds that were published.</param>
-    /// <param name="label">What it is now.</param>
-    /// <param name="weight">What it weighs now.</param>
-    /// <returns>How it is counted now.</returns>
-    public LabelCount CorrectLabel(in LabelCount counted, double logOdds, int label, double weight)
+    /// <summary>Whether the clock has left the open minute, so that <see cref="StartMinute"/> is due.</summary>
+    public bool IsMinuteOver(long clockMicroseconds) => clockMicroseconds >= _minuteEnd && IsOn;
+
+    /// <summary>
+    /// Closes the open minute and opens that of the clock. A minute with fewer than eight records stays open for those after it, up to five of the same hour, so that
+    /// slow streams are not all bookkeeping.
+    /// </summary>
+    public void StartMinute(long clockMicroseconds)
     {
-        var wrong = LabelSums.Of(logOdds, counted.BaseRate, 1 - label, counted.Weight);
-        var right = LabelSums.Of(logOdds, counted.BaseRate, label, weight);
-        _baseRate.Ones += right.Positive - wrong.Positive;
-        _baseRate.Labels += right.Weight - wrong.Weight;
-        _total.Subtract(wrong);
-        _total.Add(right);
-        _minutes.Replace(counted.Minute, wrong, right);
-        _last.Replace(counted.Sequence, right);
-        return counted with { Weight = (float)weight };
+        long minute = MinuteOf(clockMicroseconds);
+        bool isFirst = _minuteEnd == long.MinValue;
+        _openMinute = minute;
+        _minuteEnd = (minute + 1) * MicrosecondsOfMinute;
+        if (minute - _minute < MostMinutesTogether && minute < _hourEnd && OpenRecords < FewRecords) return;
+
+        CountWaiting();
+        if (!isFirst && !_stream.Levels[0].IsOpenEmpty)
+        {
+            _settingShares.AddTo(_open, Math.Min(minute - _minute, MostMinutesTogether));
+            _settingShares.Close();
+        }
+        bool isNewHour = minute >= _hourEnd, isNewDay = minute >= _dayEnd;
+        if (isNewHour) _hourEnd = (FloorDiv(minute, MinutesOfHour) + 1) * MinutesOfHour;
+        if (isNewDay) _dayEnd = (FloorDiv(minute, MinutesOfDay) + 1) * MinutesOfDay;
+        _stream.MoveTo(minute);
+        foreach (var field in _slices) field.MoveTo(minute, isNewDay && !isFirst);
+        if (isNewHour) _drift.StartHour(minute);
+        _minute = minute;
+        if (!isFirst && !_alarms.IsEmpty) _alarms.Look(minute - 1, _alarmMetrics);
+    }
+
+    /// <summary>Counts an event that was scored.</summary>
+    /// <returns>The codes of its slices, to be kept until its label comes.</returns>
+    public ulong CountEvent(RecordBatch records, int record, VectorBuilder vector, double logOdds, double probability, bool isAlert, long clockMicroseconds)
+    {
+        if (!IsOn) return 0;
+        ref var sums = ref HealthRow.Stream(_open);
+        sums.Events++;
+        sums.Probability += probability;
+        if (isAlert) sums.Alerts++;
+        if (vector.UnseenFeatures.Length > 0) _drift.CountUnseen(vector, clockMicroseconds);
+        if (_drift.IsNextCounted()) _drift.Count(records, record, vector, logOdds, clockMicroseconds);
+        ulong codes = 0;
+        for (int i = 0; i < _slices.Length; i++) codes |= (ulong)_slices[i].CodeOf(records, record) << (16 * i);
+        return codes;
+    }
+
+    public void CountReject(RejectReason reason)
+    {
+        _rejects[(int)reason]++;
+        if (_minuteEnd == long.MinValue) return; // there is no time yet to count it at
+        HealthRow.Stream(_open).Rejects++;
+        _openTally.Use(HealthRow.FirstRejectCell + (int)reason)++;
+    }
+
+    /// <summary>Counts an event whose wait ended without a label.</summary>
+    public void CountExpired() => HealthRow.Stream(_open).Expired++;
+
+    /// <summary>Counts a label against the log-odds that were published for its event, at the clock, whose minute is open.</summary>
+    /// <returns>Where it was counted.</returns>
+    public LabelCount CountLabel(in CountedLabel label)
+    {
+        double baseRate = _baseRate.Probability;
+        _baseRate.Learn(label.Label, label.Weight);
+        var count = new LabelCount((int)_openMinute, (uint)_labelled, baseRate, (float)label.Weight);
+        _labelled++;
+        if (!IsOn) return count;
+        _waiting.Add(label, baseRate);
+        if (_waiting.Count == LabelRun.Capacity) CountWaiting();
+        return count;
+    }
+
+    /// <summary>Counts a label as its opposite, in all sums that still hold its time. The change detectors stay as they are.</summary>
+    /// <param name="counted">Where it was counted.</param>
+    /// <param name="label">What it is now; the clock and the delay do not matter.</param>
+    /// <returns>How it is counted now.</returns>
+    public LabelCount CorrectLabel(in LabelCount counted, in CountedLabel label)
+    {
+        CountWaiting();
+        var wrong = label;
+        wrong.Label = 1 - label.Label;
+        wrong.Weight = counted.Weight;
+        _baseRate.Ones += label.Weight * label.Label - wrong.Weight * wrong.Label;
+        _baseRate.Labels += label.Weight - wrong.Weight;
+        var correction = new LabelCorrection(wrong, label, counted.BaseRate);
+        _stream.Change(counted.Minute, correction.Sums, correction.Bin, correction.Cell);
+        for (int i = 0; i < _slices.Length; i++)
+            _slices[i].At((ushort)(label.Slices >> (16 * i))).RollUp.Change(counted.Minute, correction.Sums, correction.Bin, correction.Cell);
+        _last.Replace(_labelled - (uint)((uint)_labelled - counted.Sequence), correction.Right);
+        HealthRow.Stream(_open).Corrections++;
+        return counted with { Weight = (float)label.Weight };
     }
 
     /// <summary>The figures of now.</summary>
     public HealthSnapshot Snapshot(long? clockMicroseconds)
     {
-        var windows = _options.Windows
-            .Select(w => new WindowFigures(w.Name, _minutes.Window(clockMicroseconds ?? 0, w.LengthMicroseconds).ToFigures()))
-            .Append(new WindowFigures(FormattableString.Invariant($"last {_options.LastLabels} labels"), _last.Window().ToFigures()));
-        return new HealthSnapshot
+        CountWaiting();
+        long clock = clockMicroseconds ?? 0;
+        return _reader.Read(MinuteOf(clock), clock, Math.Clamp(MinuteOf(clock) - _minute + 1, 1, MostMinutesTogether)) with
         {
             ClockMicroseconds = clockMicroseconds,
-            Labelled = _total.Count,
+            Labelled = Labelled,
             Rejected = _rejects.Sum(),
-            RejectsByReason = Reasons.Where(r => _rejects[(int)r] > 0).ToImmutableSortedDictionary(r => r.Code(), r => _rejects[(int)r], StringComparer.Ordinal),
-            Total = _total.ToFigures(),
-            Windows = [.. windows],
+            RejectsByReason = Enumerable.Range(0, _rejects.Length).Where(r => _rejects[r] > 0)
+                .ToImmutableSortedDictionary(r => ((RejectReason)r).Code(), r => _rejects[r], StringComparer.Ordinal),
+            Detectors = _detectors.Figures,
+            Changes = _detectors.Changes,
+            Alarms = _alarms.Figures,
+            AlarmChanges = _alarms.Changes,
         };
     }
 
     public void Save(StateBlocks changes)
     {
+        CountWaiting();
         using var bytes = new MemoryStream();
         using var writer = new BinaryWriter(bytes);
-        WriteSums(writer, _total);
+        writer.Write(_minute);
+        writer.Write(_openMinute);
+        writer.Write(_minuteEnd);
+        writer.Write(_hourEnd);
+        writer.Write(_dayEnd);
         writer.Write(_baseRate.Ones);
         writer.Write(_baseRate.Labels);
+        writer.Write(_labelled);
         writer.Write(_rejects.Length);
         foreach (long count in _rejects) writer.Write(count);
+        writer.Write(_settingNames.Length);
+        foreach (string name in _settingNames) writer.Write(name);
+        _settingShares.Save(writer);
         changes.Put(Part, 0, bytes.ToArray());
-        _minutes.Save(changes);
+        _stream.Save(changes);
         _last.Save(changes);
+        foreach (var field in _slices) field.Save(changes);
+        _drift.Save(changes);
+        _detectors.Save(changes);
+        _alarms.Save(changes);
     }
 
     public void Load(StateBlocks state)
     {
         byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException($"the state has no {Part}");
         using var reader = new BinaryReader(new MemoryStream(bytes));
-        _total = ReadSums(reader);
+        _minute = reader.ReadInt64();
+        _openMinute = reader.ReadInt64();
+        _minuteEnd = reader.ReadInt64();
+        _hourEnd = reader.ReadInt64();
+        _dayEnd = reader.ReadInt64();
         _baseRate.Ones = reader.ReadDouble();
         _baseRate.Labels = reader.ReadDouble();
+        _labelled = reader.ReadInt64();
         int reasons = reader.ReadInt32();
         for (int i = 0; i < reasons; i++) _rejects[i] = reader.ReadInt64();
-        _minutes.Load(state);
+        var names = new string[reader.ReadInt32()];
+        foreach (ref string name in names.AsSpan()) name = reader.ReadString();
+        _settingShares.Load(reader, [.. names.Select(name => _settingNames.IndexOf(name))]);
+        _stream.Load(state, HealthRow.PlacesOf(names, _settingNames.AsSpan()));
         _last.Load(state);
+        foreach (var field in _slices) field.Load(state);
+        _drift.Load(state);
+        _detectors.Load(state);
+        _alarms.Load(state);
     }
 
-    private static void WriteSums(BinaryWriter writer, in LabelSums sums)
+    private void CountWaiting()
     {
-        writer.Write(sums.Count);
-        writer.Write(sums.Weight);
-        writer.Write(sums.LogLoss);
-        writer.Write(sums.BaseRateLogLoss);
-        writer.Write(sums.Brier);
-        writer.Write(sums.Probability);
-        writer.Write(sums.Positive);
+        if (_waiting.Count == 0) return;
+        _waiting.ComputeBaseRate();
+        _waiting.ComputeLosses();
+        _waiting.AddTo(ref HealthRow.Labels(_open), _openTally);
+        _last.Add(_waiting);
+        _detectors.Add(_waiting);
+        CountDelays(_waiting.Delays);
+        for (int field = 0; field < _slices.Length; field++)
+        {
+            for (int i = 0; i < _waiting.Count; i++)
+            {
+                var slice = _slices[field].At((ushort)(_waiting.Slices[i] >> (16 * field))).RollUp;
+                _waiting.AddTo(i, ref LabelSums.Of(slice.Numbers), slice.Tally);
+            }
+        }
+        _drift.CountLabels(_waiting);
+        _waiting.Clear();
     }
 
-    private static LabelSums ReadSums(BinaryReader reader) => new()
+    private void CountDelays(ReadOnlySpan<long> delays)
     {
-        Count = reader.ReadInt64(),
-        Weight = reader.ReadDouble(),
-        LogLoss = reader.ReadDouble(),
-        BaseRateLogLoss = reader.ReadDouble(),
-        Brier = reader.ReadDouble(),
-        Probability = reader.ReadDouble(),
-        Positive = reader.ReadDouble(),
-    };
+        ref var stream = ref HealthRow.Stream(_open);
+        foreach (long delay in delays)
+        {
+            if (delay <= 0) continue;
+            stream.LateLabels++;
+            stream.DelaySeconds += delay / 1e6;
+            _openTally.Use(HealthRow.FirstDelayCell + DelayBins.Of(delay))++;
+        }
+    }
+
+    private static long MinuteOf(long microseconds) => FloorDiv(microseconds, MicrosecondsOfMinute);
+
+    private static long FloorDiv(long value, long divisor)
+    {
+        long quotient = Math.DivRem(value, divisor, out long rest);
+        return rest < 0 ? quotient - 1 : quotient;
+    }
 }

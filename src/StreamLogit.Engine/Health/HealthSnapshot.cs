@@ -1,4 +1,7 @@
 using System.Collections.Immutable;
+using StreamLogit.Engine.Health.Alarms;
+using StreamLogit.Engine.Health.Detection;
+using StreamLogit.Engine.Health.Drift;
 
 namespace StreamLogit.Engine.Health;
 
@@ -61,6 +64,30 @@ public sealed record HealthSnapshot
 
     /// <summary>The figures over windows of the stream's clock, and over the last labels.</summary>
     public ImmutableArray<WindowFigures> Windows { get; init; } = [];
+
+    /// <summary>What happened on the stream since its start, besides what labels tell.</summary>
+    public StreamFigures Stream { get; init; } = StreamFigures.Of(new StreamSums());
+
+    /// <summary>The figures of the slices: field by field, the most frequent values first, the rest of a field's values behind them.</summary>
+    public ImmutableArray<SliceFigures> Slices { get; init; } = [];
+
+    /// <summary>How the figures went over time.</summary>
+    public HealthHistory History { get; init; } = HealthHistory.Empty;
+
+    /// <summary>The period that drift is measured against; null before the first event.</summary>
+    public ReferenceFigures? Reference { get; init; }
+
+    /// <summary>How the change detectors stand.</summary>
+    public ImmutableArray<DetectorFigures> Detectors { get; init; } = [];
+
+    /// <summary>The changes that they found last, the latest first, at most 64.</summary>
+    public ImmutableArray<DetectedChange> Changes { get; init; } = [];
+
+    /// <summary>How the alarms stand, in the definition's order.</summary>
+    public ImmutableArray<AlarmFigures> Alarms { get; init; } = [];
+
+    /// <summary>When alarms were raised and fell quiet, the latest first, at most 100.</summary>
+    public ImmutableArray<AlarmChange> AlarmChanges { get; init; } = [];
 
     /// <summary>The figures of every setting of the bank, in its order.</summary>
     public ImmutableArray<SettingFigures> Settings { get; init; } = [];

@@ -152,6 +152,9 @@ internal sealed class Bank
         return weights[setting];
     }
 
+    /// <summary>The weight of every setting in the blend.</summary>
+    public void BlendWeights(Span<double> weights) => _blend.Weights(weights);
+
     /// <summary>The sum of weight * log-loss of a setting over the labels learned, in nats.</summary>
     public double LogLossTotal(int setting) => _blend.LogLossTotal(setting);
 

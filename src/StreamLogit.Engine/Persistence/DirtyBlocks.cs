@@ -16,6 +16,9 @@ internal sealed class DirtyBlocks
         _isDirty = new bool[(length + slotsPerBlock - 1) >> _shift];
     }
 
+    /// <summary>How many blocks there are.</summary>
+    public int Count => _isDirty.Length;
+
     public void Mark(int element) => _isDirty[element >> _shift] = true;
 
     public void MarkAll() => _isDirty.AsSpan().Fill(true);

@@ -3,12 +3,12 @@ using StreamLogit.Engine.Definition;
 
 namespace StreamLogit.Engine.Records;
 
-/// <summary>The fields that the features of a definition read, each once, and the parts that every record has.</summary>
+/// <summary>The fields that the features and slices of a definition read, each once, and the parts that every record has.</summary>
 public sealed class RecordSchema
 {
     private readonly Dictionary<string, int> _indices = new(StringComparer.Ordinal);
 
-    /// <summary>Collects the fields of a definition's features in the order in which they are first named.</summary>
+    /// <summary>Collects the fields of a definition's features, and then of its slices, in the order in which they are first named.</summary>
     public RecordSchema(EngineDefinition definition)
     {
         ArgumentNullException.ThrowIfNull(definition);
@@ -31,6 +31,7 @@ public sealed class RecordSchema
                     break;
             }
         }
+        foreach (var path in definition.Health.Slices) Add(path, FieldUse.Category);
         Fields = [.. fields];
 
         void Add(string path, FieldUse use)

@@ -24,6 +24,20 @@ internal static class Pairs
         return ratios[Rounds / 2];
     }
 
+    /// <summary>
+    /// The least time of the first over the least time of the second, each over many short rounds in turn: for small differences on a machine that does other things too.
+    /// </summary>
+    public static double LeastRatio(Action first, Action second)
+    {
+        double ofFirst = double.MaxValue, ofSecond = double.MaxValue;
+        for (int i = 0; i < 20 * Rounds; i++)
+        {
+            ofFirst = Math.Min(ofFirst, Seconds(first));
+            ofSecond = Math.Min(ofSecond, Seconds(second));
+        }
+        return ofFirst / ofSecond;
+    }
+
     /// <summary>The median time of one piece of work.</summary>
     public static double MedianSeconds(Action work)
     {

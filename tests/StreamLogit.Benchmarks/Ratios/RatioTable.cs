@@ -13,6 +13,9 @@ internal static class RatioTable
         ("engine-12-features-million-events-per-second", () => EngineRatios.MillionEventsPerSecond(settings: 1), 10, false),
         ("engine-16-settings-million-setting-updates-per-second", () => 16 * EngineRatios.MillionEventsPerSecond(settings: 16), 60, false),
         ("engine-allocated-bytes-per-event", () => EngineRatios.AllocatedBytesPerEvent(), 0, true),
+        ("engine-with-health/without-time", () => HealthRatios.OnAgainstOff(eventsPerMinute: 6000), 1.1, true),
+        ("engine-with-health/without-time, 20 events a minute", () => HealthRatios.OnAgainstOff(eventsPerMinute: 20), 1.1, true),
+        ("engine-with-health/without-time, one slice", () => HealthRatios.OnAgainstOff(eventsPerMinute: 6000, "c0"), 1.2, true),
         ("engine-rows/scikit-learn-rows", () => EngineRatios.AgainstScikitLearn(settings: 1), 1.5, false),
         ("engine-16-setting-updates/scikit-learn-updates", () => EngineRatios.AgainstScikitLearn(settings: 16), 5, false),
     ];

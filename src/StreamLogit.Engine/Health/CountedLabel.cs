@@ -1,0 +1,26 @@
+namespace StreamLogit.Engine.Health;
+
+/// <summary>A label on its way into health, with all that it takes to take it back later.</summary>
+internal struct CountedLabel
+{
+    /// <summary>The log-odds that were published for its event.</summary>
+    public double LogOdds;
+
+    /// <summary>Its weight, 0 or more.</summary>
+    public double Weight;
+
+    /// <summary>The stream's clock when it came.</summary>
+    public long ClockMicroseconds;
+
+    /// <summary>How long its event waited for it, on the stream's clock; 0 where it came with its event.</summary>
+    public long DelayMicroseconds;
+
+    /// <summary>Which value of each sliced field its event had, four codes of 16 bits.</summary>
+    public ulong Slices;
+
+    /// <summary>0 or 1.</summary>
+    public int Label;
+
+    /// <summary>1 where the decision on its event was <c>alert</c>, else 0.</summary>
+    public int Alert;
+}
