@@ -62,6 +62,7 @@ public sealed partial class ExampleTests
         foreach (string kind in SchemaFile.Choices(SchemaFile.Root["properties"]!["features"]!["items"]!)) tables.Add($"Feature `{kind}`", $"$defs/{kind}");
         var entries = SchemaFile.Root["properties"]!["learning"]!["properties"]!["bank"]!["anyOf"]![1]!["items"]!;
         foreach (string rule in SchemaFile.Choices(entries)) tables.Add($"Update rule `{rule}`", $"$defs/{rule}");
+        tables.Add("Alarms", "$defs/alarm");
         return tables;
     }
 

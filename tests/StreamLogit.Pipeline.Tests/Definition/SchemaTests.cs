@@ -84,6 +84,9 @@ public sealed partial class SchemaTests
     [InlineData("histories", "memoryMiB")]
     [InlineData("learning", "hashSeed")]
     [InlineData("health", "lastLabels")]
+    [InlineData("health", "sliceValues")]
+    [InlineData("health", "labelsPerFalseAlarm")]
+    [InlineData("health", "detectAfterLabels")]
     [InlineData("scores", "reasons")]
     [InlineData("state", "everyEvents")]
     public void Ranges_InTheSchema_AreThoseOfTheReader(string section, string key)
@@ -92,6 +95,14 @@ public sealed partial class SchemaTests
         var error = Definitions.Errors(Definitions.With($$"""  "{{section}}": { "folder": "s", "{{key}}": -1 } """)).Single(error => error.Path == $"{section}.{key}");
 
         Assert.StartsWith($"expected a whole number from {schema["minimum"]} to {schema["maximum"]}, ", error.Message, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void AlarmMetrics_InTheSchema_AreThoseOfTheReader()
+    {
+        var error = Definitions.ErrorWith("\"health\": { \"alarms\": [ { \"metric\": \"?\", \"window\": \"1d\", \"above\": 1 } ] }");
+
+        Assert.Equal(NamesAfter("expected one of ", error.Message), SchemaFile.Root["$defs"]!["alarm"]!["properties"]!["metric"]!["enum"]!.AsArray().Select(name => name!.GetValue<string>()));
     }
 
     [Fact]
@@ -128,7 +139,9 @@ public sealed partial class SchemaTests
         Assert.Equal(absent.Engine.Labels, read.Engine.Labels);
         Assert.Equal(absent.Engine.Decision, read.Engine.Decision);
         Assert.Equal(absent.Engine.Health.Windows, read.Engine.Health.Windows);
-        Assert.Equal(absent.Engine.Health.LastLabels, read.Engine.Health.LastLabels);
+        Assert.Equal(
+            absent.Engine.Health with { Windows = read.Engine.Health.Windows, Slices = read.Engine.Health.Slices, Alarms = read.Engine.Health.Alarms },
+            read.Engine.Health);
         Assert.Equal((absent.Source, absent.State, absent.Recording), (read.Source, read.State, read.Recording));
     }
 

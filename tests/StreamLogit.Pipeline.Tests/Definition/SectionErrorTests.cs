@@ -82,7 +82,16 @@ public sealed class SectionErrorTests
     [InlineData("\"health\": { \"windows\": [ \"90s\" ] }", "2:26: health.windows[0]: a window is a whole number of minutes, found the string \"90s\"")]
     [InlineData("\"health\": { \"windows\": [ \"1d\", \"24h\" ] }", "2:32: health.windows[1]: the window \"1d\" is as long: keep one")]
     [InlineData("\"health\": { \"lastLabels\": 0 }", "2:27: health.lastLabels: expected a whole number from 1 to 1000000, found the number 0")]
-    [InlineData("\"health\": { \"slices\": [] }", "2:13: health.slices: unknown key. Known here: \"windows\", \"lastLabels\"")]
+    [InlineData("\"health\": { \"slice\": [] }", "2:13: health.slice: unknown key; did you mean \"slices\"? Known here: \"windows\", \"lastLabels\", \"slices\", \"sliceValues\", \"history\", \"reference\", \"labelsPerFalseAlarm\", \"detectAfterLabels\", \"alarms\"")]
+    [InlineData("\"health\": { \"slices\": [ \"label\" ] }", "2:25: health.slices[0]: the field \"label\" holds the label, which is not known when an event is scored: name another")]
+    [InlineData("\"health\": { \"slices\": [ \"a\", \"a\" ] }", "2:30: health.slices[1]: the field \"a\" is there twice: keep one")]
+    [InlineData("\"health\": { \"history\": { \"hours\": \"90m\" } }", "2:35: health.history.hours: expected a duration from 1d to 366d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"90m\"")]
+    [InlineData("\"health\": { \"history\": { \"days\": \"180h\" } }", "2:34: health.history.days: these are whole days, found the string \"180h\"")]
+    [InlineData("\"health\": { \"reference\": { \"from\": \"2026-03-01\" } }", "2:36: health.reference.from: expected a date and a time at a full minute with an offset, as \"2026-03-01T00:00:00Z\", found the string \"2026-03-01\"")]
+    [InlineData("\"health\": { \"alarms\": [ { \"metric\": \"auc\", \"window\": \"2h\", \"below\": 0.6 } ] }", "2:54: health.alarms[0].window: expected one of \"1h\", \"1d\", \"7d\", found the string \"2h\"; did you mean \"1h\"?")]
+    [InlineData("\"health\": { \"alarms\": [ { \"metric\": \"auc\", \"window\": \"1d\", \"below\": 0.6, \"above\": 0.9 } ] }", "2:25: health.alarms[0]: has both \"above\" and \"below\": write two alarms")]
+    [InlineData("\"health\": { \"alarms\": [ { \"metric\": \"auc\", \"window\": \"1d\", \"below\": 0.6, \"feature\": \"a\" } ] }", "2:85: health.alarms[0].feature: only the metrics \"drift\", \"missingShare\" and \"unseenShare\" are of a feature")]
+    [InlineData("\"health\": { \"alarms\": [ { \"metric\": \"auc\", \"window\": \"1d\", \"below\": 0.6, \"slice\": { \"c\": \"x\" } } ] }", "2:83: health.alarms[0].slice: expected one of the fields of slices with its value, as { \"channel\": \"app\" }; sliced are none")]
     public void Engine_Wrong_IsRefused(string keys, string expected)
     {
         string error = Definitions.ErrorWith(keys).ToString();

@@ -42,7 +42,7 @@ internal static class DefinitionSection
                 Learning = learningOptions,
                 Labels = labels,
                 Decision = decisionOptions,
-                Health = HealthSection.Read(health),
+                Health = HealthSection.Read(health, recordOptions, featureOptions ?? []),
             },
             WarmStartPath = warmStartPath,
             Source = sourceOptions,
