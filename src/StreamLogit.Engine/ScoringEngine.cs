@@ -361,16 +361,15 @@ public sealed class ScoringEngine
     private void LetGo()
     {
         if (!_awaiting.IsDue(_clock.Microseconds)) return;
-        while (_awaiting.TryTakeExpired(_clock.Microseconds, out var place))
+        int expired = 0;
+        if (Definition.Labels.Unlabelled == UnlabelledEvents.Negative)
         {
-            _events.Expired++;
-            _health.CountExpired();
-            if (Definition.Labels.Unlabelled == UnlabelledEvents.Negative)
+            for (; _awaiting.TryTakeExpired(_clock.Microseconds, out var place); expired++)
                 _awaiting.Mark(place, new LabelMark(EventState.AssumedGood, LearnFirst(place, label: 0, weight: double.NaN, isAssumed: true)));
-            else
-                _awaiting.Mark(place, new LabelMark(EventState.Gone, default));
         }
-        _awaiting.Forget(_clock.Microseconds);
+        expired += _awaiting.Forget(_clock.Microseconds);
+        _events.Expired += expired;
+        _health.CountExpired(expired);
     }
 
     /// <summary>Takes a label for a kept event: the first one, the same again, or one that corrects it.</summary>

@@ -81,7 +81,7 @@ internal sealed class AwaitingStore
     /// <summary>Asks for the memory of what is marked of the kept event with an id.</summary>
     public void WantMark(ulong idHash)
     {
-        if (TryFindFirst(idHash, out var place) && SegmentOf(place).Bytes is not null) SegmentOf(place).WantMark(At(place).Header.Ordinal);
+        if (TryFindFirst(idHash, out var place) && SegmentOf(place).Bytes is not null) SegmentOf(place).WantMark(HeaderAt(place).Ordinal);
     }
 
     /// <summary>Where the kept event with an id lies.</summary>
@@ -90,7 +90,7 @@ internal sealed class AwaitingStore
         var shard = _index.ShardOf(idHash);
         for (int cursor = shard.First(idHash); cursor >= 0; cursor = shard.Next(idHash, cursor))
         {
-            place = shard.PlaceAt(cursor);
+            place = shard.PlaceAt(cursor, _firstSegment);
             if (At(place).Id.SequenceEqual(id)) return true;
         }
         place = default;
@@ -109,20 +109,18 @@ internal sealed class AwaitingStore
     public ReadOnlySpan<double> LogOddsOf(EventPlace place) => _banks.LogOddsOf(At(place), place.Segment);
 
     /// <summary>What became of the event that lies there.</summary>
-    public LabelMark MarkOf(EventPlace place) => SegmentOf(place).MarkOf(At(place).Header.Ordinal);
+    public LabelMark MarkOf(EventPlace place) => SegmentOf(place).MarkOf(HeaderAt(place).Ordinal);
 
     /// <summary>Whether an event that was added there is still kept.</summary>
-    public bool Holds(EventPlace place) =>
-        place.Segment >= _firstSegment && !IsPassed(place) && MarkOf(place).State != EventState.Gone;
+    public bool Holds(EventPlace place) => !IsPassed(place);
 
     /// <summary>Says what became of an event.</summary>
     public void Mark(EventPlace place, in LabelMark mark)
     {
-        ref readonly var header = ref At(place).Header;
         var segment = SegmentOf(place);
-        if (segment.MarkOf(header.Ordinal).State == EventState.Awaiting) Awaiting--;
-        segment.Mark(header.Ordinal, mark);
-        if (mark.State == EventState.Gone) _index.Remove(header.IdHash, place);
+        int ordinal = HeaderAt(place).Ordinal;
+        if (segment.StateOf(ordinal) == EventState.Awaiting) Awaiting--;
+        segment.Mark(ordinal, mark);
     }
 
     /// <summary>Adds an event that was scored just now and whose id is not kept. The lengths in the header are filled in here.</summary>
@@ -147,22 +145,46 @@ internal sealed class AwaitingStore
     public bool IsDue(long clockMicroseconds) => clockMicroseconds > _nextEnd;
 
     /// <summary>
-    /// The next event whose wait is over at a time of the stream's clock and whose label has not come. Whoever asks must mark it before asking again.
+    /// The next event whose wait is over at a time of the stream's clock and whose label has not come, where such events are kept. Whoever asks must mark
+    /// it before asking again.
     /// </summary>
     public bool TryTakeExpired(long clockMicroseconds, out EventPlace place)
     {
-        while (TryPass(ref _waitCursor, clockMicroseconds - _waitMicroseconds, out place))
-            if (MarkOf(place).State == EventState.Awaiting) return true;
+        while (TrySkipEnds(ref _waitCursor) && HeaderAt(_waitCursor).ScoredAtMicroseconds < clockMicroseconds - _waitMicroseconds)
+        {
+            place = _waitCursor;
+            Pass(ref _waitCursor);
+            if (StateOf(place) == EventState.Awaiting) return true;
+        }
+        place = default;
         return false;
     }
 
     /// <summary>Lets go of the events that are not kept any longer. Comes after all expired ones were taken.</summary>
-    public void Forget(long clockMicroseconds)
+    /// <returns>How many of them never had a label.</returns>
+    public int Forget(long clockMicroseconds)
     {
-        while (TryPass(ref _keepCursor, clockMicroseconds - _keepMicroseconds, out var place))
-            if (MarkOf(place).State != EventState.Gone) _index.Remove(At(place).Header.IdHash, place);
+        int unlabelled = 0;
+        long scoredBefore = clockMicroseconds - _keepMicroseconds;
+        _nextEnd = long.MaxValue;
+        while (TrySkipEnds(ref _keepCursor))
+        {
+            ref readonly var header = ref HeaderAt(_keepCursor);
+            if (header.ScoredAtMicroseconds >= scoredBefore)
+            {
+                _nextEnd = header.ScoredAtMicroseconds + _keepMicroseconds;
+                WantToForget(header);
+                break;
+            }
+            if (SegmentOf(_keepCursor).StateOf(header.Ordinal) == EventState.Awaiting) unlabelled++;
+            _index.Remove(header.IdHash, _keepCursor, _firstSegment);
+            Pass(ref _keepCursor);
+        }
+        Awaiting -= unlabelled;
         while (_firstSegment < _keepCursor.Segment) DropOldestSegment();
-        _nextEnd = Math.Min(EndOf(_waitCursor, _waitMicroseconds), EndOf(_keepCursor, _keepMicroseconds));
+        if (_keepMicroseconds == _waitMicroseconds) _waitCursor = _keepCursor;
+        else if (TrySkipEnds(ref _waitCursor)) _nextEnd = Math.Min(_nextEnd, HeaderAt(_waitCursor).ScoredAtMicroseconds + _waitMicroseconds);
+        return unlabelled;
     }
 
     public void Save(StateBlocks changes)
@@ -176,7 +198,7 @@ internal sealed class AwaitingStore
         {
             var segment = _segments[i];
             if (segment.HasNewEvents) changes.Put(SegmentsPart, _firstSegment + i, segment.Bytes.AsSpan(0, segment.Length));
-            if (segment.HasNewMarks) changes.Put(MarksPart, _firstSegment + i, MemoryMarshal.AsBytes(segment.Marks));
+            if (segment.HasNewMarks) changes.Put(MarksPart, _firstSegment + i, segment.MarkBytes);
             segment.HasNewEvents = segment.HasNewMarks = false;
         }
         ReadOnlySpan<int> cursors = [_firstSegment, _waitCursor.Segment, _waitCursor.Offset, _keepCursor.Segment, _keepCursor.Offset];
@@ -207,14 +229,14 @@ internal sealed class AwaitingStore
     {
         if (number != _firstSegment + _segments.Count) throw new InvalidStateException($"block {number} of {SegmentsPart} is out of order");
         var segment = new Segment();
-        segment.LoadMarks(MemoryMarshal.Cast<byte, LabelMark>(marks));
+        segment.LoadMarks(marks);
         while (segment.Length < length)
         {
             var header = MemoryMarshal.Read<KeptHeader>(bytes.AsSpan(segment.Length));
             var place = new EventPlace((int)number, segment.Append(header.TotalBytes));
-            var state = segment.MarkOf(header.Ordinal).State;
-            if (state == EventState.Awaiting) Awaiting++;
-            if (state != EventState.Gone && !IsPassed(place)) _index.Add(header.IdHash, place);
+            if (IsPassed(place)) continue;
+            if (segment.StateOf(header.Ordinal) == EventState.Awaiting) Awaiting++;
+            _index.Add(header.IdHash, place);
         }
         segment.HasNewEvents = false;
         if (bytes.Length < SegmentBytes) Array.Resize(ref bytes, SegmentBytes); // the last one takes new events
@@ -225,17 +247,18 @@ internal sealed class AwaitingStore
 
     private Segment SegmentOf(EventPlace place) => _segments[place.Segment - _firstSegment];
 
+    private ref readonly KeptHeader HeaderAt(EventPlace place) =>
+        ref MemoryMarshal.AsRef<KeptHeader>((SegmentOf(place).Bytes ?? _reader.Read(place.Segment)).AsSpan(place.Offset));
+
+    private EventState StateOf(EventPlace place) => SegmentOf(place).StateOf(HeaderAt(place).Ordinal);
+
     private bool TryFindFirst(ulong idHash, out EventPlace place)
     {
         var shard = _index.ShardOf(idHash);
         int cursor = shard.First(idHash);
-        place = cursor < 0 ? default : shard.PlaceAt(cursor);
+        place = cursor < 0 ? default : shard.PlaceAt(cursor, _firstSegment);
         return cursor >= 0;
     }
-
-    /// <summary>When the time of the first event behind a cursor is over, or never where there is none.</summary>
-    private long EndOf(EventPlace cursor, long microseconds) =>
-        TrySkipEnds(ref cursor) ? At(cursor).Header.ScoredAtMicroseconds + microseconds : long.MaxValue;
 
     /// <summary>Moves a place that is at the end of a segment to the next event; false where there is none.</summary>
     private bool TrySkipEnds(ref EventPlace place)
@@ -248,22 +271,22 @@ internal sealed class AwaitingStore
     private bool IsPassed(EventPlace place) =>
         place.Segment < _keepCursor.Segment || (place.Segment == _keepCursor.Segment && place.Offset < _keepCursor.Offset);
 
-    /// <summary>Moves a cursor over the next event if that was scored before a time.</summary>
-    private bool TryPass(ref EventPlace cursor, long scoredBefore, out EventPlace place)
+    /// <summary>Moves a cursor over the event that it is at.</summary>
+    private void Pass(ref EventPlace cursor) => cursor = cursor with { Offset = cursor.Offset + HeaderAt(cursor).TotalBytes };
+
+    /// <summary>Asks for the memory that is needed when the event at the cursor is let go.</summary>
+    private void WantToForget(in KeptHeader header)
     {
-        place = cursor;
-        if (!TrySkipEnds(ref place)) return false;
-        ref readonly var header = ref At(place).Header;
-        if (header.ScoredAtMicroseconds >= scoredBefore) return false;
-        cursor = place with { Offset = place.Offset + header.TotalBytes };
-        if (SegmentOf(place).Bytes is { } bytes) CacheHint.Want(bytes, cursor.Offset + 2 * UsualEventBytes, 1);
-        return true;
+        WantIndex(header.IdHash);
+        if (SegmentOf(_keepCursor).Bytes is { } bytes) CacheHint.Want(bytes, _keepCursor.Offset + header.TotalBytes, KeptHeader.Size);
     }
 
     private Segment SegmentFor(int size)
     {
         bool isOfPresent = _firstSegment + _segments.Count > _banks.FirstOfPresent;
         if (_segments.Count > 0 && isOfPresent && _segments[^1].HasRoom(size)) return _segments[^1];
+        if (_segments.Count == IndexShard.SegmentNumbers)
+            throw new InvalidOperationException("more events are kept than there is room for: shorten labels.wait or thin them by labels.keep");
         if (!_spareSegments.TryPop(out var segment)) segment = new Segment();
         segment.Bytes = size <= SegmentBytes && _spareBytes.TryPop(out byte[]? spare) ? spare : new byte[Math.Max(size, SegmentBytes)];
         _segments.Add(segment);

@@ -1,7 +1,7 @@
 namespace StreamLogit.Engine.Awaiting;
 
 /// <summary>
-/// From the 64-bit hash of an id to where its event lies. Two ids may share a hash: whoever looks up walks all places of a hash and compares the ids.
+/// From the hash of an id to where its event lies. Two ids may look the same here: whoever looks up walks all places that may be meant and compares the ids.
 /// Divided into shards that grow one at a time, so that growing never needs the whole index twice.
 /// </summary>
 internal sealed class EventIndex
@@ -23,12 +23,15 @@ internal sealed class EventIndex
         Count++;
     }
 
-    public void Remove(ulong hash, EventPlace place)
+    /// <param name="hash">The hash of the event's id.</param>
+    /// <param name="place">Where it lies.</param>
+    /// <param name="firstSegment">The number of the first segment that there is.</param>
+    public void Remove(ulong hash, EventPlace place, int firstSegment)
     {
         var shard = ShardOf(hash);
         for (int cursor = shard.First(hash); cursor >= 0; cursor = shard.Next(hash, cursor))
         {
-            if (shard.PlaceAt(cursor) != place) continue;
+            if (shard.PlaceAt(cursor, firstSegment) != place) continue;
             shard.RemoveAt(cursor);
             Count--;
             return;

@@ -14,7 +14,4 @@ internal enum EventState : byte
 
     /// <summary>Its wait is over and it was learned as 0, until a real label says otherwise.</summary>
     AssumedGood,
-
-    /// <summary>Its wait is over and it was let go.</summary>
-    Gone,
 }

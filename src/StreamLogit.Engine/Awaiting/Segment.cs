@@ -1,4 +1,5 @@
 using System.Numerics;
+using System.Runtime.InteropServices;
 
 namespace StreamLogit.Engine.Awaiting;
 
@@ -8,8 +9,9 @@ namespace StreamLogit.Engine.Awaiting;
 /// </summary>
 internal sealed class Segment
 {
-    private LabelMark[] _marks = [];
-    private int _marked; // one more than the last event that has a mark
+    private SegmentMark[] _marks = []; // of those events that have one, in the order in which they got it
+    private ushort[] _markOf = []; // for each event, one more than the place of its mark, or 0
+    private int _marked;
 
     /// <summary>The events, or null while they are in the archive only.</summary>
     public byte[]? Bytes { get; set; }
@@ -26,8 +28,8 @@ internal sealed class Segment
     /// <summary>Whether marks were made since they were last written.</summary>
     public bool HasNewMarks { get; set; }
 
-    /// <summary>The marks made so far: events behind the last marked one may have none.</summary>
-    public ReadOnlySpan<LabelMark> Marks => _marks.AsSpan(0, _marked);
+    /// <summary>The marks made so far, as they are saved.</summary>
+    public ReadOnlySpan<byte> MarkBytes => MemoryMarshal.AsBytes(_marks.AsSpan(0, _marked));
 
     public bool HasRoom(int size) => Bytes is not null && Bytes.Length - Length >= size;
 
@@ -41,34 +43,49 @@ internal sealed class Segment
         return offset;
     }
 
-    /// <summary>Asks for the memory of a mark.</summary>
+    /// <summary>Asks for the memory in which a mark is looked up.</summary>
     public void WantMark(int ordinal)
     {
-        if (ordinal < _marked) CacheHint.Want(in _marks[ordinal]);
+        if (ordinal < _markOf.Length) CacheHint.Want(in _markOf[ordinal]);
     }
 
-    public LabelMark MarkOf(int ordinal) => ordinal < _marked ? _marks[ordinal] : default;
+    public LabelMark MarkOf(int ordinal) => PlaceOf(ordinal) is var place and >= 0 ? _marks[place].ToMark() : default;
+
+    public EventState StateOf(int ordinal) => PlaceOf(ordinal) is var place and >= 0 ? _marks[place].State : EventState.Awaiting;
 
     public void Mark(int ordinal, in LabelMark mark)
     {
-        if (ordinal >= _marks.Length) Array.Resize(ref _marks, (int)BitOperations.RoundUpToPowerOf2((uint)Count));
-        _marks[ordinal] = mark;
-        _marked = Math.Max(_marked, ordinal + 1);
+        int place = PlaceOf(ordinal);
+        if (place < 0)
+        {
+            place = _marked++;
+            if (place == _marks.Length) Array.Resize(ref _marks, Math.Max(4, place + place / 2));
+            SetPlace(ordinal, place);
+        }
+        _marks[place] = new SegmentMark(ordinal, mark);
         HasNewMarks = true;
     }
 
     /// <summary>Takes up marks that were saved.</summary>
-    public void LoadMarks(ReadOnlySpan<LabelMark> marks)
+    public void LoadMarks(ReadOnlySpan<byte> bytes)
     {
-        _marks = marks.ToArray();
-        _marked = marks.Length;
+        _marks = MemoryMarshal.Cast<byte, SegmentMark>(bytes).ToArray();
+        for (_marked = 0; _marked < _marks.Length; _marked++) SetPlace(_marks[_marked].Ordinal, _marked);
     }
 
     /// <summary>Empties it for new events.</summary>
     public void Clear()
     {
-        _marks.AsSpan(0, _marked).Clear();
+        _markOf.AsSpan().Clear();
         Length = Count = _marked = 0;
         HasNewEvents = HasNewMarks = false;
+    }
+
+    private int PlaceOf(int ordinal) => ordinal < _markOf.Length ? _markOf[ordinal] - 1 : -1;
+
+    private void SetPlace(int ordinal, int place)
+    {
+        if (ordinal >= _markOf.Length) Array.Resize(ref _markOf, (int)BitOperations.RoundUpToPowerOf2((uint)Math.Max(Count, ordinal + 1)));
+        _markOf[ordinal] = (ushort)(place + 1);
     }
 }

@@ -142,7 +142,7 @@ internal sealed class HealthLedger
     }
 
     /// <summary>Counts an event whose wait ended without a label.</summary>
-    public void CountExpired() => HealthRow.Stream(_open).Expired++;
+    public void CountExpired(int events) => HealthRow.Stream(_open).Expired += events;
 
     /// <summary>Counts a label against the log-odds that were published for its event, at the clock, whose minute is open.</summary>
     /// <returns>Where it was counted.</returns>

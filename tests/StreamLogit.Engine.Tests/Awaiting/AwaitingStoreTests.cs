@@ -39,10 +39,21 @@ public class AwaitingStoreTests
     [Fact]
     public void TryTakeExpired_AtTheEndOfTheWait_StillWaits()
     {
-        var store = InMemory();
+        var store = new AwaitingStore([.. Settings], Wait, keepsAssumed: true, memoryBytes: 1 << 17, archive: null);
         Add(store, "a", clock: 10, firstSlot: 1);
         Assert.False(store.TryTakeExpired(10 + Wait, out _));
         Assert.True(store.TryTakeExpired(10 + Wait + 1, out _));
+    }
+
+    [Fact]
+    public void Forget_AtTheEndOfTheWait_StillKeeps()
+    {
+        var store = InMemory();
+        Add(store, "a", clock: 10, firstSlot: 1);
+        Assert.Equal(0, store.Forget(10 + Wait));
+        Assert.Equal(1, store.Kept);
+        Assert.Equal(1, store.Forget(10 + Wait + 1));
+        Assert.Equal(0, store.Kept);
     }
 
     [Fact]
@@ -58,16 +69,18 @@ public class AwaitingStoreTests
     }
 
     [Theory]
-    [InlineData(false)]
-    [InlineData(true)]
-    public void AnySequence_WithRestarts_AgreesWithADictionary(bool isArchived)
+    [InlineData(false, false)]
+    [InlineData(true, false)]
+    [InlineData(false, true)]
+    [InlineData(true, true)]
+    public void AnySequence_WithRestarts_AgreesWithADictionary(bool isArchived, bool keepsAssumed)
     {
         // 0..59 adds, 60..89 labels, 90..97 lets time pass, 98 and 99 save, load and go on with the loaded store. Ids are long, so that segments fill.
         Gen.Select(Gen.Int[0, 99], Gen.Int[0, 400]).Array[0, 4000].Sample(operations =>
         {
             var archive = isArchived ? new DictionaryArchive() : null;
             var kept = archive?.Blocks ?? new StateBlocks();
-            var store = Store(archive);
+            var store = Store(archive, keepsAssumed);
             var model = new Dictionary<string, (long ScoredAt, EventState State)>(StringComparer.Ordinal);
             long clock = 0;
             foreach (var (operation, number) in operations)
@@ -90,23 +103,20 @@ public class AwaitingStoreTests
                         break;
                     case >= 90 and < 98:
                         clock += number;
-                        while (store.TryTakeExpired(clock, out var expired))
+                        while (keepsAssumed && store.TryTakeExpired(clock, out var expired))
                         {
                             string expiredId = Encoding.UTF8.GetString(store.At(expired).Id);
                             Assert.True(clock - model[expiredId].ScoredAt > Wait && model[expiredId].State == EventState.Awaiting);
-                            store.Mark(expired, new LabelMark(EventState.Gone, default));
-                            model.Remove(expiredId);
+                            store.Mark(expired, new LabelMark(EventState.AssumedGood, default));
+                            model[expiredId] = model[expiredId] with { State = EventState.AssumedGood };
                         }
-                        store.Forget(clock);
-                        foreach (string old in model.Where(m => clock - m.Value.ScoredAt > Wait).Select(m => m.Key).ToList())
-                        {
-                            Assert.NotEqual(EventState.Awaiting, model[old].State);
-                            model.Remove(old);
-                        }
+                        var old = model.Where(m => clock - m.Value.ScoredAt > (keepsAssumed ? 2 * Wait : Wait)).ToList();
+                        Assert.Equal(old.Count(m => m.Value.State == EventState.Awaiting), store.Forget(clock));
+                        foreach (var (oldId, _) in old) model.Remove(oldId);
                         break;
                     case >= 98:
                         store.Save(kept);
-                        store = Store(archive);
+                        store = Store(archive, keepsAssumed);
                         store.Load(kept);
                         break;
                 }
@@ -164,7 +174,7 @@ public class AwaitingStoreTests
     private static AwaitingStore InMemory() => Store(null);
 
     // The archive takes what does not fit into two segments of 64 KiB.
-    private static AwaitingStore Store(IBlockArchive? archive) => new([.. Settings], Wait, keepsAssumed: false, memoryBytes: 1 << 17, archive);
+    private static AwaitingStore Store(IBlockArchive? archive, bool keepsAssumed = false) => new([.. Settings], Wait, keepsAssumed, memoryBytes: 1 << 17, archive);
 
     // Every id has the same hash: the worst case, and the one that shows whether ids are compared.
     private static void Add(AwaitingStore store, string id, long clock, int firstSlot) => store.Add(
