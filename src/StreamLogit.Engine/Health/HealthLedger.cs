@@ -141,7 +141,7 @@ internal sealed class HealthLedger
         _openTally.Use(HealthRow.FirstRejectCell + (int)reason)++;
     }
 
-    /// <summary>Counts an event whose wait ended without a label.</summary>
+    /// <summary>Counts events whose wait ended without a label.</summary>
     public void CountExpired(int events) => HealthRow.Stream(_open).Expired += events;
 
     /// <summary>Counts a label against the log-odds that were published for its event, at the clock, whose minute is open.</summary>
