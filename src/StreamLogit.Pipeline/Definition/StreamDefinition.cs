@@ -27,6 +27,9 @@ public sealed record StreamDefinition
     /// <summary>Where the state is kept and how often it is committed, or null where the definition does not say.</summary>
     public StateOptions? State { get; init; }
 
+    /// <summary>Where the worker serves its page, or null where it serves none.</summary>
+    public ListenOptions? Listen { get; init; }
+
     /// <summary>The definition as it was used, overrides included, without comments: JSON, indented.</summary>
     public required string EffectiveJson { get; init; }
 }

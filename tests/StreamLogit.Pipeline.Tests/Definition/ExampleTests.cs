@@ -63,6 +63,7 @@ public sealed partial class ExampleTests
         var entries = SchemaFile.Root["properties"]!["learning"]!["properties"]!["bank"]!["anyOf"]![1]!["items"]!;
         foreach (string rule in SchemaFile.Choices(entries)) tables.Add($"Update rule `{rule}`", $"$defs/{rule}");
         tables.Add("Alarms", "$defs/alarm");
+        tables.Add("`listen`", "$defs/listen");
         return tables;
     }
 

@@ -4,7 +4,16 @@ namespace StreamLogit.Pipeline.Tests.Definition;
 public sealed class SchemaRefusalTests
 {
     [Theory]
-    [InlineData("\"listen\": \"http://127.0.0.1:7070\"")]
+    [InlineData("\"telemetry\": \"http://127.0.0.1:4317\"")]
+    [InlineData("\"listen\": 7070")]
+    [InlineData("\"listen\": \"127.0.0.1:7070\"")]
+    [InlineData("\"listen\": \"http://127.0.0.1\"")]
+    [InlineData("\"listen\": \"http://127.0.0.1:7070/page\"")]
+    [InlineData("\"listen\": {}")]
+    [InlineData("\"listen\": { \"url\": \"http://127.0.0.1:7070\", \"keyFile\": \"k\", \"keyVariable\": \"K\" }")]
+    [InlineData("\"listen\": { \"url\": \"http://127.0.0.1:7070\", \"certificateKey\": \"k\" }")]
+    [InlineData("\"listen\": { \"url\": \"http://127.0.0.1:7070\", \"hosts\": [] }")]
+    [InlineData("\"listen\": { \"url\": \"http://127.0.0.1:7070\", \"key\": \"secret\" }")]
     [InlineData("\"$schema\": 1")]
     [InlineData("\"record\": { \"id\": \"a..b\" }")]
     [InlineData("\"record\": { \"id\": \"\" }")]

@@ -139,7 +139,7 @@ public sealed class SectionErrorTests
     public void FilesAndState_Wrong_AreRefused(string keys, params string[] expected) => AssertErrors(keys, expected);
 
     [Theory]
-    [InlineData("\"listen\": \"http://127.0.0.1:7070\"", "listen")]
+    [InlineData("\"telemetry\": \"http://127.0.0.1:4317\"", "telemetry")]
     [InlineData("\"publish\": \"blend\"", "publish")]
     public void Definition_UnknownKey_IsRefused(string keys, string path)
     {

@@ -23,6 +23,7 @@ internal static class DefinitionSection
         var rejects = definition.Optional("rejects");
         var recording = definition.Optional("recording");
         var state = ForRun("state", "it says in which folder the state is kept");
+        var listen = definition.Optional("listen");
         definition.End();
 
         var files = new FilePaths(folder);
@@ -50,6 +51,7 @@ internal static class DefinitionSection
             Rejects = RejectsSection.Read(rejects, files),
             Recording = RecordingSection.Read(recording, files),
             State = StateSection.Read(state, files),
+            Listen = ListenSection.Read(listen, files),
             EffectiveJson = "",
         };
 
