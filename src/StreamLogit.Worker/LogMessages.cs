@@ -23,4 +23,7 @@ internal static partial class LogMessages
 
     [LoggerMessage(6, LogLevel.Information, "Stream {Stream}: the bank has changed. {Kept} settings go on; started from the blend of the state: [{Started}]; dropped: [{Dropped}]")]
     public static partial void BankChanged(this ILogger logger, string stream, int kept, string started, string dropped);
+
+    [LoggerMessage(7, LogLevel.Information, "The health page is at {Address}")]
+    public static partial void Listens(this ILogger logger, string address);
 }

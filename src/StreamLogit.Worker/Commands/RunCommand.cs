@@ -6,6 +6,7 @@ using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Worker.Hosting;
 using StreamLogit.Worker.Output;
+using StreamLogit.Worker.Web.Access;
 
 namespace StreamLogit.Worker.Commands;
 
@@ -40,13 +41,14 @@ internal static class RunCommand
         if (untilEnd && definition.Source is FileSourceOptions file) definition = definition with { Source = file with { Follow = false } };
         foreach (string caution in Cautions.Lines) Console.Error.WriteLine($"Caution: {caution}");
 
+        var page = definition.Listen is { } listen ? PageAccess.Read(listen) : null;
         using var run = StreamRun.Open(definition, new LoopOptions { Speed = double.IsFinite(speed) ? speed : null }, TimeProvider.System);
         await WorkProgress.ShowAsync(
             $"scoring {definition.Engine.Stream}", "records",
             () => (run.Progress.Source.Share(), run.Progress.Records),
             async () =>
             {
-                await WorkerHost.RunAsync(run);
+                await WorkerHost.RunAsync(run, page);
                 return true;
             });
         HealthTables.Write(run.Health, Terminal.Output);

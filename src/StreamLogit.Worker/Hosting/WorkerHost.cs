@@ -1,3 +1,4 @@
+using Microsoft.AspNetCore.Builder;
 using Microsoft.Extensions.Configuration;
 using Microsoft.Extensions.DependencyInjection;
 using Microsoft.Extensions.Hosting;
@@ -5,23 +6,55 @@ using Microsoft.Extensions.Logging;
 using Microsoft.Extensions.Logging.Console;
 using StreamLogit.Pipeline;
 using StreamLogit.Worker.Output;
+using StreamLogit.Worker.Web;
+using StreamLogit.Worker.Web.Access;
 
 namespace StreamLogit.Worker.Hosting;
 
-/// <summary>Hosts the run of a stream: signals and logging.</summary>
+/// <summary>Hosts the run of a stream: signals, logging and, where the definition asks for it, the page.</summary>
 internal static class WorkerHost
 {
     // A commit on a slow disk must not be cut short. Were it, the next run would go on from the commit before.
     private static readonly TimeSpan ShutdownTimeout = TimeSpan.FromMinutes(2);
 
     /// <summary>Runs until the source ends or the process is asked to stop; either way it ends with a commit.</summary>
+    /// <param name="run">The run.</param>
+    /// <param name="page">Where the page is served and who may see it, or null where there is none.</param>
     /// <exception cref="PipelineException">What surrounds the engine is broken.</exception>
-    public static async Task RunAsync(StreamRun run)
+    /// <exception cref="IOException">The address of the page is taken or not of this machine.</exception>
+    public static async Task RunAsync(StreamRun run, PageAccess? page)
+    {
+        using var host = Build(run, page);
+        var service = host.Services.GetServices<IHostedService>().OfType<WorkerService>().Single();
+        await host.StartAsync();
+        if (host is WebApplication web) web.Services.GetRequiredService<ILogger<WorkerService>>().Listens(WebServer.AddressOf(web));
+        await host.WaitForShutdownAsync();
+        await service.ExecuteTask!;
+    }
+
+    private static IHost Build(StreamRun run, PageAccess? page)
     {
         // Configuration is read once: to watch its files is to watch every folder below the one that the program was started in.
         var once = new ConfigurationManager();
         once.AddInMemoryCollection([new("hostBuilder:reloadConfigOnChange", "false")]);
-        var builder = Host.CreateApplicationBuilder(new HostApplicationBuilderSettings { Configuration = once });
+        var plain = Host.CreateApplicationBuilder(new HostApplicationBuilderSettings { Configuration = once });
+        if (page is null)
+        {
+            Add(plain, run);
+            return plain.Build();
+        }
+        var builder = WebServer.CreateBuilder(page);
+        builder.Configuration.AddConfiguration(plain.Configuration);
+        builder.Logging.AddConfiguration(plain.Configuration.GetSection("Logging"));
+        builder.Logging.AddFilter("Microsoft.AspNetCore", LogLevel.Warning);
+        Add(builder, run);
+        var web = builder.Build();
+        WebServer.Map(web);
+        return web;
+    }
+
+    private static void Add(IHostApplicationBuilder builder, StreamRun run)
+    {
         builder.Logging.ClearProviders();
         builder.Logging.AddSimpleConsole(options =>
         {
@@ -38,10 +71,5 @@ internal static class WorkerHost
         builder.Services.AddSingleton(TimeProvider.System);
         builder.Services.AddSingleton(run);
         builder.Services.AddHostedService<WorkerService>();
-
-        using var host = builder.Build();
-        var service = host.Services.GetServices<IHostedService>().OfType<WorkerService>().Single();
-        await host.RunAsync();
-        await service.ExecuteTask!;
     }
 }

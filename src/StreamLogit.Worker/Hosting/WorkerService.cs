@@ -16,6 +16,8 @@ internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostAppli
     {
         try
         {
+            // The run begins when all has started, the server of the page too: what cannot listen must not have scored anything.
+            await StartedAsync(stoppingToken);
             var health = run.Health;
             if (run.IsResumed) logger.GoesOn(Stream, health.Records, health.Labelled);
             else logger.Begins(Stream);
@@ -31,6 +33,13 @@ internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostAppli
         {
             lifetime.StopApplication();
         }
+    }
+
+    private async Task StartedAsync(CancellationToken stoppingToken)
+    {
+        var started = new TaskCompletionSource(TaskCreationOptions.RunContinuationsAsynchronously);
+        using var registration = lifetime.ApplicationStarted.Register(started.SetResult);
+        await started.Task.WaitAsync(stoppingToken);
     }
 
     private void Report()

@@ -1,0 +1,37 @@
+using Microsoft.AspNetCore.Builder;
+using Microsoft.AspNetCore.Http;
+using Microsoft.AspNetCore.Routing;
+
+namespace StreamLogit.Worker.Web.Access;
+
+/// <summary>The form that asks for the access key, and the session that it gives.</summary>
+internal static class LoginEndpoints
+{
+    public static void Map(IEndpointRouteBuilder routes, AccessKey? key, TimeProvider time)
+    {
+        routes.MapGet("/login", (HttpRequest request) => key is null
+            ? Results.Redirect("/")
+            : EmbeddedAssets.Get(request.Query.ContainsKey("again") ? "login-again.html" : "login.html")!.ToResult(request));
+        routes.MapPost("/login", async (HttpContext context) =>
+        {
+            var form = context.Request.HasFormContentType ? await context.Request.ReadFormAsync(context.RequestAborted) : null;
+            if (key is null || !key.Matches(form?["key"])) return Redirect(context, "/login?again");
+            context.Response.Cookies.Append(KeyCheck.CookieName(context), key.CreateSession(time.GetUtcNow()), Options(AccessKey.SessionLength));
+            return Redirect(context, "/");
+        }).RequireRateLimiting(RequestLimits.Logins).DisableAntiforgery();
+        routes.MapPost("/logout", (HttpContext context) =>
+        {
+            context.Response.Cookies.Delete(KeyCheck.CookieName(context), Options(null));
+            return Redirect(context, "/login");
+        });
+    }
+
+    // After a form a browser is to fetch the next page with GET.
+    private static IResult Redirect(HttpContext context, string path)
+    {
+        context.Response.Headers.Location = path;
+        return Results.StatusCode(StatusCodes.Status303SeeOther);
+    }
+
+    private static CookieOptions Options(TimeSpan? age) => new() { Secure = true, HttpOnly = true, SameSite = SameSiteMode.Strict, Path = "/", MaxAge = age, IsEssential = true };
+}

@@ -1,0 +1,121 @@
+using StreamLogit.Engine.Definition;
+using StreamLogit.Engine.Health;
+
+namespace StreamLogit.Worker.Web.Views;
+
+/// <summary>The figures of now as tables.</summary>
+internal static class FigureTables
+{
+    private const int ReliabilityGroups = 10;
+
+    public static DataTable Reliability(HealthFigures figures)
+    {
+        var table = new DataTable(
+            "reliability", "Promised against happened, by probability",
+            new("promisedShare", "promised", ColumnKind.Share),
+            new("cameShare", "came", ColumnKind.Share),
+            new("low95", "95 % from", ColumnKind.Share),
+            new("high95", "95 % to", ColumnKind.Share),
+            new("weight", "labels", ColumnKind.Amount),
+            new("promised", "promised bad", ColumnKind.Amount),
+            new("came", "came bad", ColumnKind.Amount));
+        foreach (var group in figures.Scores.ReliabilityByExpected(ReliabilityGroups))
+        {
+            var interval = group.ObservedInterval;
+            table.Add(group.MeanProbability, group.ObservedRate, interval.Low, interval.High, group.Weight, group.Expected, group.Positive);
+        }
+        return table;
+    }
+
+    public static DataTable Drift(Selection selection)
+    {
+        var table = new DataTable(
+            "drift", "How far values moved from the reference period",
+            new("feature", "feature", ColumnKind.Text),
+            new("psi", "stability index", ColumnKind.Figure),
+            new("byChance", "by chance, mean", ColumnKind.Figure),
+            new("byChance95", "chance exceeds 1 in 20", ColumnKind.Figure),
+            new("missing", "missing", ColumnKind.Share),
+            new("missingBefore", "missing before", ColumnKind.Share),
+            new("unseen", "never seen", ColumnKind.Share),
+            new("unseenBefore", "never seen before", ColumnKind.Share));
+        foreach (var feature in selection.Drift?.Features ?? [])
+        {
+            table.Add(
+                feature.Feature, feature.Psi, feature.PsiByChance, feature.PsiByChance95, feature.MissingShare, feature.ReferenceMissingShare, feature.UnseenShare,
+                feature.ReferenceUnseenShare);
+        }
+        return table;
+    }
+
+    /// <summary>How many of the labels had come after a time.</summary>
+    public static DataTable Delays(StreamFigures stream)
+    {
+        var table = new DataTable(
+            "delays", "How long labels take",
+            new("afterSeconds", "within", ColumnKind.Seconds),
+            new("labels", "labels by then", ColumnKind.Count),
+            new("share", "share of labels", ColumnKind.Share));
+        double sum = 0, total = stream.LabelDelays.Bins.Sum(bin => bin.Labels);
+        foreach (var (seconds, labels) in stream.LabelDelays.Bins)
+        {
+            sum += labels;
+            table.Add(seconds.High, (long)sum, sum / total);
+        }
+        return table;
+    }
+
+    public static DataTable Settings(Selection selection)
+    {
+        var table = new DataTable(
+            "settings", "The bank",
+            new("setting", "setting", ColumnKind.Text),
+            new("weight", "weight in the blend", ColumnKind.Share),
+            new("logLoss", "log-loss (nats)", ColumnKind.Figure),
+            new("brier", "Brier score", ColumnKind.Figure));
+        foreach (var setting in selection.Settings.OrderByDescending(s => s.BlendWeight)) table.Add(setting.Name, setting.BlendWeight, setting.LogLoss, setting.Brier);
+        return table;
+    }
+
+    public static DataTable Windows(HealthSnapshot health, ViewChoice choice)
+    {
+        var table = Labels("windows", "All windows", "window", "window");
+        var windows = ViewChoice.Find(health, choice.Slice)?.Windows ?? health.Windows;
+        var total = ViewChoice.Find(health, choice.Slice)?.Total ?? health.Total;
+        foreach (var (name, figures) in windows.Select(w => (w.Name, w.Figures)).Append(("since the start", total))) AddLabels(table, name, figures);
+        return table;
+    }
+
+    public static DataTable Slices(HealthSnapshot health, HealthOptions options, ViewChoice choice)
+    {
+        var table = Labels("slices", "Slices", "slice", "slice");
+        int window = Enumerable.Range(0, options.Windows.Length).FirstOrDefault(i => options.Windows[i].Name == choice.Window, -1);
+        foreach (var slice in health.Slices) AddLabels(table, ViewChoice.NameOf(slice), window < 0 ? slice.Total : slice.Windows[window].Figures);
+        return table;
+    }
+
+    private static DataTable Labels(string name, string title, string firstKey, string firstTitle) => new(
+        name, title,
+        new(firstKey, firstTitle, ColumnKind.Text),
+        new("labels", "labels", ColumnKind.Count),
+        new("promised", "promised bad", ColumnKind.Amount),
+        new("low80", "80 % from", ColumnKind.Amount),
+        new("high80", "80 % to", ColumnKind.Amount),
+        new("came", "came", ColumnKind.Amount),
+        new("logLoss", "log-loss (nats)", ColumnKind.Figure),
+        new("logLossRatio", "over base rate", ColumnKind.Figure),
+        new("brier", "Brier score", ColumnKind.Figure),
+        new("auc", "AUC", ColumnKind.Figure),
+        new("calibrationIntercept", "calibration intercept", ColumnKind.Figure),
+        new("calibrationSlope", "calibration slope", ColumnKind.Figure),
+        new("precision", "precision", ColumnKind.Share),
+        new("recall", "recall", ColumnKind.Share));
+
+    private static void AddLabels(DataTable table, string name, HealthFigures figures)
+    {
+        var (promised, calibration) = (figures.Promised, figures.Scores.Calibration);
+        table.Add(
+            name, figures.Count, promised.Expected, promised.Range80.Low, promised.Range80.High, promised.Came, figures.LogLoss, figures.LogLossRatio, figures.Brier,
+            figures.Scores.RocArea.Area, calibration.Intercept, calibration.Slope, figures.Alerts.Precision, figures.Alerts.Recall);
+    }
+}
