@@ -75,13 +75,13 @@ internal sealed class StreamLogitProcess : IDisposable
         return new ProgramResult(_process.ExitCode, _output.Result, string.Concat(_errorLinesSeen.Select(line => line + "\n")));
     }
 
-    /// <summary>Waits until the program says something on standard error.</summary>
-    public void WaitForMessage(string part)
+    /// <summary>Waits until the program says something on standard error, and gives the whole line.</summary>
+    public string WaitForMessage(string part)
     {
         foreach (string line in _errorLines.GetConsumingEnumerable(new CancellationTokenSource(Patience).Token))
         {
             _errorLinesSeen.Add(line);
-            if (line.Contains(part, StringComparison.Ordinal)) return;
+            if (line.Contains(part, StringComparison.Ordinal)) return line;
         }
         throw new InvalidOperationException($"The program ended without saying '{part}': " + string.Join('\n', _errorLinesSeen));
     }

@@ -25,7 +25,7 @@ internal sealed class KeyCheck(PageAccess access, TimeProvider time) : IMiddlewa
         return context.Response.WriteAsync("The access key is missing: send it as \"Authorization: Bearer KEY\", or log in at /login.\n");
     }
 
-    private static bool IsOpen(PathString path) => path == "/login" || path == "/assets/page.css" || path == "/assets/login.css";
+    private static bool IsOpen(PathString path) => path == "/login" || path == "/assets/page.css" || path == "/assets/icon.svg";
 
     private bool IsAllowed(AccessKey known, HttpRequest request)
     {

@@ -19,6 +19,7 @@ internal static class LoginEndpoints
             context.Response.Cookies.Append(KeyCheck.CookieName(context), key.CreateSession(time.GetUtcNow()), Options(AccessKey.SessionLength));
             return Redirect(context, "/");
         }).RequireRateLimiting(RequestLimits.Logins).DisableAntiforgery();
+        routes.MapGet("/data/session", () => Results.Text(key is null ? "{\"key\":false}" : "{\"key\":true}", "application/json"));
         routes.MapPost("/logout", (HttpContext context) =>
         {
             context.Response.Cookies.Delete(KeyCheck.CookieName(context), Options(null));

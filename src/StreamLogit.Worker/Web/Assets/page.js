@@ -177,5 +177,7 @@ setInterval(() => {
   if (!paused && Date.now() - heard > silence) setLink("lost", "No news");
 }, 5_000);
 
+// Where there is no key there is no session to end.
+fetch("/data/session").then((answer) => answer.json()).then(({ key }) => { find("logout").hidden = !key; }).catch(() => {});
 find("sections").replaceChildren(...panels.map((panel) => panel.element));
 follow();
