@@ -2,7 +2,7 @@ using StreamLogit.Engine.Records;
 
 namespace StreamLogit.Pipeline;
 
-/// <summary>Gives the records of a stream in their order. One thread at a time uses it, except for <see cref="Progress"/>.</summary>
+/// <summary>Gives the records of a stream in their order. One thread at a time uses it, except where a member says otherwise.</summary>
 public interface IRecordSource : IDisposable
 {
     /// <summary>The position after the last record given.</summary>
@@ -22,4 +22,7 @@ public interface IRecordSource : IDisposable
     /// </summary>
     /// <exception cref="PipelineException">The source cannot be read.</exception>
     ValueTask<FillOutcome> FillAsync(RecordBatch batch, int maximumRecords, CancellationToken cancellation);
+
+    /// <summary>Hears that a commit holds a position which this source gave. From any thread.</summary>
+    void Committed(SourcePosition position) { }
 }

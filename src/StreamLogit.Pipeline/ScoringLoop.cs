@@ -36,7 +36,7 @@ public sealed class ScoringLoop
         _conveyor = new Conveyor(options.Batches, () => new BatchInFlight(new RecordBatch(engine.Schema), engine.CreateScoreBatch()));
         _read = new ReadStage(source, new RecordDecoder(engine.Schema), _conveyor, options, time);
         _score = new ScoreStage(engine, _conveyor, state?.Archive, options.HealthEvery, time);
-        _write = new WriteStage(sinks, state, _conveyor);
+        _write = new WriteStage(source, sinks, state, _conveyor);
     }
 
     /// <summary>The latest health snapshot. Any thread may ask.</summary>

@@ -4,8 +4,6 @@ using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Pipeline.Definition;
-using StreamLogit.Pipeline.Files;
-using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.State;
 
 namespace StreamLogit.Pipeline;
@@ -13,24 +11,20 @@ namespace StreamLogit.Pipeline;
 /// <summary>A worker's run over its stream: it begins where the last one committed, or at the beginning.</summary>
 public sealed class StreamRun : IDisposable
 {
-    private readonly IRecordSource _source;
-    private readonly ImmutableArray<IScoreSink> _sinks;
+    private readonly StreamEnds _ends;
     private readonly StateStore? _state;
     private readonly ScoringLoop _loop;
 
     /// <summary>Takes up the state, and brings engine, source and outputs to where it stands.</summary>
     /// <param name="definition">The stream.</param>
-    /// <param name="source">Where records come from; the run disposes of it.</param>
-    /// <param name="sinks">Where scores and rejects go; the run disposes of them.</param>
+    /// <param name="ends">Where records come from and results go; the run disposes of them.</param>
     /// <param name="options">How records are moved.</param>
     /// <param name="time">The clock of commits, of waits and of health.</param>
     /// <exception cref="PipelineException">State, source and outputs do not fit together, or are out of reach.</exception>
     /// <exception cref="InvalidStateException">The state belongs to another definition.</exception>
-    public StreamRun(
-        StreamDefinition definition, IRecordSource source, ImmutableArray<IScoreSink> sinks, LoopOptions options, TimeProvider time)
+    public StreamRun(StreamDefinition definition, StreamEnds ends, LoopOptions options, TimeProvider time)
     {
-        _source = source;
-        _sinks = sinks;
+        _ends = ends;
         try
         {
             if (definition.State is { } state)
@@ -40,7 +34,7 @@ public sealed class StreamRun : IDisposable
             }
             Engine = new ScoringEngine(definition.Engine, _state?.Archive);
             Resume();
-            _loop = new ScoringLoop(Engine, _source, _sinks, _state, options, time);
+            _loop = new ScoringLoop(Engine, _ends.Source, _ends.Sinks, _state, options, time);
         }
         catch
         {
@@ -70,27 +64,6 @@ public sealed class StreamRun : IDisposable
     /// <summary>How far this run has come. Any thread may ask.</summary>
     public LoopProgress Progress => _loop.Progress;
 
-    /// <summary>Opens a run over files as the definition names them.</summary>
-    /// <exception cref="PipelineException">State, source and outputs do not fit together, or are out of reach.</exception>
-    /// <exception cref="InvalidStateException">The state belongs to another definition.</exception>
-    public static StreamRun Open(StreamDefinition definition, LoopOptions options, TimeProvider time)
-    {
-        var source = OpenSource(definition, time);
-        var sinks = ImmutableArray.CreateBuilder<IScoreSink>();
-        if (definition.Scores is { } scores) sinks.Add(new ScoreFile(scores, definition.Engine));
-        if (definition.Rejects is { } rejects) sinks.Add(new RejectFile(rejects));
-        if (definition.Recording is { } recording) sinks.Add(new RecordingFolder(recording));
-        return new StreamRun(definition, source, sinks.ToImmutable(), options, time);
-    }
-
-    /// <summary>Opens the source that a definition names.</summary>
-    internal static IRecordSource OpenSource(StreamDefinition definition, TimeProvider time) => definition.Source switch
-    {
-        FileSourceOptions file => RecordingSource.OpenAll(file, definition.Engine.Record.MaximumBytes, time),
-        null => throw new ArgumentException("The definition names no source.", nameof(definition)),
-        var other => throw new ArgumentException($"{other.GetType().Name} is no file.", nameof(definition)),
-    };
-
     /// <summary>Runs until the source ends or the run is stopped; either way it ends with a commit.</summary>
     /// <exception cref="PipelineException">What surrounds the engine is broken. Nothing after the last commit counts.</exception>
     public Task RunAsync(CancellationToken stop) => _loop.RunAsync(stop);
@@ -98,8 +71,7 @@ public sealed class StreamRun : IDisposable
     /// <inheritdoc/>
     public void Dispose()
     {
-        _source.Dispose();
-        foreach (var sink in _sinks) sink.Dispose();
+        _ends.Dispose();
         _state?.Dispose();
     }
 
@@ -110,11 +82,11 @@ public sealed class StreamRun : IDisposable
         {
             // Outputs are cut back last, when nothing else can go wrong any more.
             BankChange = Engine.Load(checkpoint.Blocks);
-            _source.Seek(checkpoint.Position);
+            _ends.Source.Seek(checkpoint.Position);
             IsResumed = true;
         }
         bool isKnown = true;
-        foreach (var sink in _sinks)
+        foreach (var sink in _ends.Sinks)
         {
             long mark = 0;
             bool hasMark = checkpoint is not null && checkpoint.Marks.TryGetValue(sink.Name, out mark);
@@ -124,7 +96,7 @@ public sealed class StreamRun : IDisposable
         if (_state is null || isKnown && checkpoint is not null) return;
 
         // What a run writes and dies over before its next commit must be told from a file that was there before.
-        var marks = _sinks.ToImmutableSortedDictionary(sink => sink.Name, sink => sink.Flush(), StringComparer.Ordinal);
+        var marks = _ends.Sinks.ToImmutableSortedDictionary(sink => sink.Name, sink => sink.Flush(), StringComparer.Ordinal);
         var blocks = new StateBlocks();
         Engine.Save(blocks);
         _state.Commit(new Checkpoint(checkpoint?.Position ?? SourcePosition.Start, marks, blocks));

@@ -2,6 +2,7 @@ using System.CommandLine;
 using System.CommandLine.Invocation;
 using System.Text;
 using StreamLogit.Engine.Persistence;
+using StreamLogit.Kafka;
 using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Worker;
@@ -20,7 +21,7 @@ catch (DefinitionException exception)
 {
     return Fail($"the definition cannot be used\n{exception.Message}", ExitCode.WrongInput);
 }
-catch (Exception exception) when (exception is WrongInputException or InvalidRecordingException or InvalidStateException)
+catch (Exception exception) when (exception is WrongInputException or KafkaSettingsException or InvalidRecordingException or InvalidStateException)
 {
     return Fail(exception.Message, ExitCode.WrongInput);
 }

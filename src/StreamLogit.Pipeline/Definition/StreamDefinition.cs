@@ -1,5 +1,6 @@
 using StreamLogit.Engine.Definition;
 using StreamLogit.Pipeline.Options;
+using StreamLogit.Pipeline.Options.Kafka;
 
 namespace StreamLogit.Pipeline.Definition;
 
@@ -15,11 +16,14 @@ public sealed record StreamDefinition
     /// <summary>The file of the warm start, or null where the definition names none.</summary>
     public string? WarmStartPath { get; init; }
 
+    /// <summary>The Kafka cluster, or null where the definition names none.</summary>
+    public KafkaOptions? Kafka { get; init; }
+
     /// <summary>Where scores are written, or null where the definition does not say.</summary>
-    public FileOutputOptions? Scores { get; init; }
+    public OutputOptions? Scores { get; init; }
 
     /// <summary>Where rejects are written, or null where they are only counted.</summary>
-    public FileOutputOptions? Rejects { get; init; }
+    public OutputOptions? Rejects { get; init; }
 
     /// <summary>Where every record is recorded as the engine takes it, or null where it is not.</summary>
     public RecordingOptions? Recording { get; init; }

@@ -11,12 +11,17 @@ namespace StreamLogit.Pipeline.Formats;
 public static class RejectJson
 {
     /// <summary>Adds a reject to a buffer, without a line end.</summary>
-    public static void Write(RecordBatch records, int index, ArrayBufferWriter<byte> buffer)
+    /// <param name="records">The batch.</param>
+    /// <param name="index">The reject among its records.</param>
+    /// <param name="buffer">The buffer.</param>
+    /// <param name="mostRecordBytes">How many bytes of the record are written at most.</param>
+    public static void Write(RecordBatch records, int index, ArrayBufferWriter<byte> buffer, int mostRecordBytes = int.MaxValue)
     {
         ref readonly var record = ref records.Record(index);
         buffer.Write("{\"position\":\""u8);
         WriteText(records.OriginOf(index), buffer);
-        buffer.Write(":"u8);
+        // An origin that ends in @ is a partition, whose positions are offsets.
+        if (!records.OriginOf(index).EndsWith('@')) buffer.Write(":"u8);
         record.Position.TryFormat(buffer.GetSpan(20), out int digits, provider: CultureInfo.InvariantCulture);
         buffer.Advance(digits);
         buffer.Write("\",\"reason\":\""u8);
@@ -31,7 +36,8 @@ public static class RejectJson
             WriteText(record.Detail, buffer);
             buffer.Write("\",\"record\":\""u8);
         }
-        JsonText.WriteBytes(records.RecordBytes(index), buffer);
+        var bytes = records.RecordBytes(index);
+        JsonText.WriteBytes(bytes[..Math.Min(bytes.Length, mostRecordBytes)], buffer);
         buffer.Write("\"}"u8);
     }
 

@@ -5,7 +5,7 @@ using StreamLogit.Pipeline.State;
 namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Writes what came of batches, and commits: first the outputs are made durable, then the state that counts them.</summary>
-internal sealed class WriteStage(ImmutableArray<IScoreSink> sinks, StateStore? state, Conveyor conveyor)
+internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink> sinks, StateStore? state, Conveyor conveyor)
 {
     private long _records;
     private long _commits;
@@ -45,6 +45,7 @@ internal sealed class WriteStage(ImmutableArray<IScoreSink> sinks, StateStore? s
         if (state is null || changes is null) return;
         state.Commit(new Checkpoint(position, marks.ToImmutable(), changes));
         state.Archive.Committed(changes);
+        source.Committed(position);
         Volatile.Write(ref _commits, _commits + 1);
     }
 }

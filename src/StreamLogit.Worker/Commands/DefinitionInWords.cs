@@ -2,6 +2,7 @@ using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
+using StreamLogit.Pipeline.Options.Kafka;
 using StreamLogit.Worker.Output;
 
 namespace StreamLogit.Worker.Commands;
@@ -35,7 +36,7 @@ internal static class DefinitionInWords
         yield return "Decision";
         yield return FormattableString.Invariant($"  alert from probability {engine.Decision.Cutoff} on; {engine.Decision.Reasons} reasons with a score");
         yield return "";
-        yield return "Files";
+        yield return "Files and topics";
         foreach (string line in Files(definition)) yield return $"  {line}";
         yield return "";
         yield return "Memory";
@@ -118,9 +119,11 @@ internal static class DefinitionInWords
     {
         if (definition.Source is FileSourceOptions source)
             yield return $"records from {source.Path} ({Words(source.Format)}{(source.Follow ? ", followed as it grows" : "")})";
+        else if (definition.Source is KafkaSourceOptions topics) yield return Words(topics);
         else yield return "records: the definition names no source";
-        yield return definition.Scores is { } scores ? $"scores to {scores.Path}" : "scores: the definition names no file";
-        yield return definition.Rejects is { } rejects ? $"rejects to {rejects.Path}" : "rejects are only counted";
+        yield return definition.Scores is { } scores ? $"scores to {scores.InWords}" : "scores: the definition names no place for them";
+        yield return definition.Rejects is { } rejects ? $"rejects to {rejects.InWords}" : "rejects are only counted";
+        if (definition.Kafka is { } kafka) yield return $"topics of the Kafka cluster at {kafka.Servers}";
         if (definition.Recording is { } recording) yield return $"recording in {recording.Folder}, files of {FigureText.Bytes(recording.MaximumBytes)}";
         if (definition.State is { } state)
         {
@@ -129,6 +132,9 @@ internal static class DefinitionInWords
         }
         else yield return "state: the definition names no folder";
     }
+
+    private static string Words(KafkaSourceOptions topics) =>
+        $"records from the {(topics.AllTopics.Count() == 1 ? "topic" : "topics")} {string.Join(", ", topics.AllTopics)} as {topics.Instance} of the group {topics.Group}";
 
     private static string Words(RecordingFormat format) => format switch
     {

@@ -1,7 +1,10 @@
 using System.CommandLine;
+using StreamLogit.Kafka;
 using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
+using StreamLogit.Pipeline.Files;
 using StreamLogit.Pipeline.Options;
+using StreamLogit.Worker.Hosting;
 using StreamLogit.Worker.Output;
 
 namespace StreamLogit.Worker.Commands;
@@ -39,7 +42,9 @@ internal static class RecordCommand
     {
         if (definition.Source is null) throw new WrongInputException("The definition names no source: there is nothing to record.");
         using var signals = new StopSignals();
-        using var run = new RecordRun(definition, options, TimeProvider.System);
+        using var log = WorkerLog.Create();
+        var source = KafkaEnds.OpenSource(definition, TimeProvider.System, log.CreateLogger("StreamLogit.Kafka"));
+        using var run = new CopyRun(definition, source, new RecordingFolder(options), null, TimeProvider.System);
         long records = await WorkProgress.ShowAsync(
             $"recording {definition.Engine.Stream}", "records",
             () => (run.Progress.Source.Share(), run.Progress.Records),

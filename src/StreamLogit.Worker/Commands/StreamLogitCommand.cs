@@ -17,6 +17,7 @@ internal static class StreamLogitCommand
             CheckCommand.Create(),
             ShowCommand.Create(),
             SynthCommand.Create(),
+            PublishCommand.Create(),
         };
         foreach (var help in root.Options.OfType<HelpOption>()) help.Action = new ExampleHelp((HelpAction)help.Action!);
         return root;

@@ -3,9 +3,7 @@ using Microsoft.Extensions.Configuration;
 using Microsoft.Extensions.DependencyInjection;
 using Microsoft.Extensions.Hosting;
 using Microsoft.Extensions.Logging;
-using Microsoft.Extensions.Logging.Console;
 using StreamLogit.Pipeline;
-using StreamLogit.Worker.Output;
 using StreamLogit.Worker.Web;
 using StreamLogit.Worker.Web.Access;
 
@@ -56,14 +54,7 @@ internal static class WorkerHost
     private static void Add(IHostApplicationBuilder builder, StreamRun run)
     {
         builder.Logging.ClearProviders();
-        builder.Logging.AddSimpleConsole(options =>
-        {
-            options.SingleLine = true;
-            options.TimestampFormat = "yyyy-MM-dd'T'HH:mm:ss.fffzzz ";
-            options.ColorBehavior = Terminal.Messages.IsInteractive ? LoggerColorBehavior.Default : LoggerColorBehavior.Disabled;
-        });
-        // Standard output is for results.
-        builder.Services.Configure<ConsoleLoggerOptions>(options => options.LogToStandardErrorThreshold = LogLevel.Trace);
+        WorkerLog.Write(builder.Logging);
         builder.Logging.AddFilter("Microsoft.Hosting.Lifetime", LogLevel.Warning);
         // A fault of the service is thrown below, and said once.
         builder.Logging.AddFilter("Microsoft.Extensions.Hosting.Internal.Host", LogLevel.None);

@@ -41,15 +41,22 @@ public sealed partial class ExampleTests
     [Fact]
     public void CompleteExample_HasEverySectionAndKeyThatCanStandTogether()
     {
-        var example = JsonNode.Parse(
-            JsonBlock().Match(RepositoryFiles.Read(Page)).Groups[1].Value, null, new() { CommentHandling = System.Text.Json.JsonCommentHandling.Skip, AllowTrailingCommas = true })!;
+        var examples = JsonBlock().Matches(RepositoryFiles.Read(Page)).Select(block => JsonNode.Parse(
+            block.Groups[1].Value, null, new() { CommentHandling = System.Text.Json.JsonCommentHandling.Skip, AllowTrailingCommas = true })!).ToList();
+        var (files, topics) = (examples[0], examples[1]);
 
         foreach (var (key, schema) in SchemaFile.Root["properties"]!.AsObject())
         {
+            var example = key == "kafka" ? topics : files;
             Assert.NotNull(example[key]);
-            if (schema!["properties"] is JsonObject keys) Assert.Equal(keys.Select(part => part.Key), example[key]!.AsObject().Select(part => part.Key));
+            if (schema!["properties"] is JsonObject keys)
+                Assert.Equal(keys.Select(part => part.Key).Where(part => part != "kafka"), example[key]!.AsObject().Select(part => part.Key));
         }
+        foreach (var (section, schema) in TopicSections)
+            Assert.Equal(SchemaFile.Keys(SchemaFile.Root["$defs"]![schema]!), topics[section]!["kafka"]!.AsObject().Select(part => part.Key));
     }
+
+    private static readonly (string Section, string Schema)[] TopicSections = [("source", "kafkaSource"), ("scores", "kafkaScores"), ("rejects", "kafkaRejects")];
 
     /// <summary>The headings of the page that stand above a table of keys, and the object of the schema that each is about.</summary>
     public static TheoryData<string, string> Tables()
@@ -64,6 +71,7 @@ public sealed partial class ExampleTests
         foreach (string rule in SchemaFile.Choices(entries)) tables.Add($"Update rule `{rule}`", $"$defs/{rule}");
         tables.Add("Alarms", "$defs/alarm");
         tables.Add("`listen`", "$defs/listen");
+        foreach (var (section, schema) in TopicSections) tables.Add($"`{section}.kafka`", $"$defs/{schema}");
         return tables;
     }
 

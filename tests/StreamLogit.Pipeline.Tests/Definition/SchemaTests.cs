@@ -20,6 +20,9 @@ public sealed partial class SchemaTests
         {
             objects.Add($"$defs/{rule}", Definitions.With($$"""  "learning": { "bank": [ { "update": "{{rule}}", "?": 0 } ] } """));
         }
+        objects.Add("$defs/kafkaSource", Definitions.With("""  "source": { "kafka": { "?": 0 } } """));
+        objects.Add("$defs/kafkaScores", Definitions.With("""  "scores": { "kafka": { "?": 0 } } """));
+        objects.Add("$defs/kafkaRejects", Definitions.With("""  "rejects": { "kafka": { "?": 0 } } """));
         return objects;
     }
 
@@ -117,7 +120,7 @@ public sealed partial class SchemaTests
     [Fact]
     public void Defaults_InTheSchema_AreThoseOfTheReader()
     {
-        var absent = Definitions.ReadWith("\"source\": { \"file\": \"a.csv\" }, \"state\": { \"folder\": \"s\" }, \"recording\": { \"folder\": \"r\" }");
+        var absent = Definitions.ReadWith("\"kafka\": { \"servers\": \"a:1\" }, \"source\": { \"file\": \"a.csv\" }, \"state\": { \"folder\": \"s\" }, \"recording\": { \"folder\": \"r\" }");
         var written = new JsonObject { ["stream"] = "quay", ["features"] = new JsonArray(new JsonObject { ["number"] = "amount" }) };
         foreach (var (section, schema) in SchemaFile.Root["properties"]!.AsObject())
         {
@@ -127,6 +130,7 @@ public sealed partial class SchemaTests
             if (section == "source") values["file"] = "a.csv";
             if (section == "state") values["folder"] = "s";
             if (section == "recording") values["folder"] = "r";
+            if (section == "kafka") values["servers"] = "a:1";
             written[section] = values;
         }
 
@@ -142,6 +146,7 @@ public sealed partial class SchemaTests
         Assert.Equal(
             absent.Engine.Health with { Windows = read.Engine.Health.Windows, Slices = read.Engine.Health.Slices, Alarms = read.Engine.Health.Alarms },
             read.Engine.Health);
+        Assert.Equal(absent.Kafka!.GiveUpAfter, read.Kafka!.GiveUpAfter);
         Assert.Equal((absent.Source, absent.State, absent.Recording), (read.Source, read.State, read.Recording));
     }
 

@@ -115,7 +115,7 @@ public sealed class SectionErrorTests
     }
 
     [Theory]
-    [InlineData("\"source\": {}", "2:11: source: the key \"file\" is missing: it names the recording to read, or \"-\" for standard input")]
+    [InlineData("\"source\": {}", "2:11: source: one of the keys \"file\" and \"kafka\" is missing: it says where the records come from")]
     [InlineData("\"source\": { \"file\": 3 }", "2:21: source.file: expected a string, found the number 3")]
     [InlineData("\"source\": { \"file\": \"in.txt\" }", "2:21: source.file: the name \"in.txt\" does not tell the format (.jsonl, .ndjson or .csv, with .gz or .zst behind it where it is compressed, or .parquet would): add \"format\": \"jsonl\", \"csv\" or \"parquet\"")]
     [InlineData("\"source\": { \"file\": \"in.parquet.gz\" }", "2:21: source.file: the name \"in.parquet.gz\" does not tell the format (.jsonl, .ndjson or .csv, with .gz or .zst behind it where it is compressed, or .parquet would): add \"format\": \"jsonl\", \"csv\" or \"parquet\"")]
@@ -125,11 +125,10 @@ public sealed class SectionErrorTests
     [InlineData("\"source\": { \"file\": \"a\\u0000.csv\" }", "2:21: source.file: the name of a file cannot hold the character NUL")]
     [InlineData("\"source\": { \"file\": \"a.csv\", \"format\": \"tsv\" }", "2:40: source.format: expected one of \"jsonl\", \"csv\", \"parquet\", found the string \"tsv\"; did you mean \"csv\"?")]
     [InlineData("\"source\": { \"file\": \"a.csv\", \"follow\": \"yes\" }", "2:40: source.follow: expected true or false, found the string \"yes\"")]
-    [InlineData("\"source\": { \"kafka\": {} }", "2:11: source: the key \"file\" is missing: it names the recording to read, or \"-\" for standard input", "2:13: source.kafka: unknown key. Known here: \"file\", \"format\", \"follow\"")]
     [InlineData("\"scores\": { \"file\": \"-\" }", "2:21: scores.file: standard output cannot be taken up again where a run stopped: name a file")]
     [InlineData("\"scores\": { \"reasons\": 21 }", "2:24: scores.reasons: expected a whole number from 0 to 20, found the number 21")]
     [InlineData("\"scores\": { \"labelled\": 1 }", "2:25: scores.labelled: expected true or false, found the number 1")]
-    [InlineData("\"rejects\": {}", "2:12: rejects: the key \"file\" is missing: it names the file that rejects are written to")]
+    [InlineData("\"rejects\": {}", "2:12: rejects: one of the keys \"file\" and \"kafka\" is missing: it says where rejects are written")]
     [InlineData("\"scores\": { \"file\": \"out\" }, \"rejects\": { \"file\": \"./x/../out\" }", "2:51: rejects.file: is the same file as scores.file: name another")]
     [InlineData("\"source\": { \"file\": \"a.csv\" }, \"scores\": { \"file\": \"a.csv\" }", "2:52: scores.file: is the same file as source.file: name another")]
     [InlineData("\"state\": { \"every\": \"5s\" }", "2:10: state: the key \"folder\" is missing: it names the folder that the state is kept in")]
@@ -161,7 +160,7 @@ public sealed class SectionErrorTests
             [
                 "the key \"source\" is missing: it says where the records come from",
                 "the key \"state\" is missing: it says in which folder the state is kept",
-                "the key \"file\" is missing: it names the file that scores are written to",
+                "one of the keys \"file\" and \"kafka\" is missing: it says where scores are written",
             ],
             Definitions.Errors(Definitions.With("\"scores\": { \"reasons\": 1 }"), use: DefinitionUse.Run).Select(error => error.Message));
 

@@ -3,7 +3,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Files;
 
-public sealed class CsvSourceTests : RecordSourceContract
+public sealed class CsvSourceTests : FileSourceContract
 {
     private protected override string LastFile => Folder["quay.csv"];
 

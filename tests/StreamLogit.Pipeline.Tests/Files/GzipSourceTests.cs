@@ -4,7 +4,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Files;
 
-public sealed class GzipSourceTests : RecordSourceContract
+public sealed class GzipSourceTests : FileSourceContract
 {
     private protected override string LastFile => Folder["quay.jsonl.gz"];
 

@@ -3,7 +3,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Files;
 
-public sealed class JsonLinesSourceTests : RecordSourceContract
+public sealed class JsonLinesSourceTests : FileSourceContract
 {
     private protected override string LastFile => Folder["quay.jsonl"];
 

@@ -6,7 +6,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Files;
 
-public sealed class ParquetSourceTests : RecordSourceContract
+public sealed class ParquetSourceTests : FileSourceContract
 {
     private const int GroupRows = 17;
     private static readonly DateTime Start = new(2026, 3, 1, 8, 15, 30, DateTimeKind.Utc);

@@ -3,7 +3,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Files;
 
-public sealed class RecordingSequenceTests : RecordSourceContract
+public sealed class RecordingSequenceTests : FileSourceContract
 {
     private protected override string LastFile => Folder["c.jsonl"];
 

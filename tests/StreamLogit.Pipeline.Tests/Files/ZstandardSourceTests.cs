@@ -4,7 +4,7 @@ using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Tests.Files;
 
-public sealed class ZstandardSourceTests : RecordSourceContract
+public sealed class ZstandardSourceTests : FileSourceContract
 {
     private protected override string LastFile => Folder["quay.jsonl.zst"];
 

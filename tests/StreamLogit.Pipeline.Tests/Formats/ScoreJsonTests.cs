@@ -5,7 +5,6 @@ using CsCheck;
 using StreamLogit.Engine.Decisions;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Pipeline.Formats;
-using StreamLogit.Pipeline.Tests.Files;
 
 namespace StreamLogit.Pipeline.Tests.Formats;
 

@@ -1,6 +1,5 @@
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.Replay;
-using StreamLogit.Pipeline.Tests.Stages;
 
 namespace StreamLogit.Pipeline.Tests.Replay;
 
@@ -53,7 +52,7 @@ public sealed class ReplayRunTests : IDisposable
     {
         _folder.Write("quay.jsonl", LoopStream.Create(5000));
         var replay = await ReplayAsync(new LoopOptions(), "quay.jsonl");
-        using (var live = StreamRun.Open(LoopStream.Definition(_folder), new LoopOptions { BatchSize = 77 }, TimeProvider.System))
+        using (var live = LoopStream.Open(LoopStream.Definition(_folder), new LoopOptions { BatchSize = 77 }, TimeProvider.System))
             await live.RunAsync(TestContext.Current.CancellationToken);
 
         Assert.Equal(replay.ScoreHash, ScoreFileHash.Of(_folder["scores.jsonl"]));

@@ -1,7 +1,6 @@
 using System.Security.Cryptography;
 using System.Text;
 using StreamLogit.Pipeline.Replay;
-using StreamLogit.Pipeline.Tests.Files;
 
 namespace StreamLogit.Pipeline.Tests.Replay;
 

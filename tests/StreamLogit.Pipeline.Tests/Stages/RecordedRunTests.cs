@@ -35,7 +35,7 @@ public sealed class RecordedRunTests : IDisposable
     [Fact]
     public async Task Replay_OfAnUndisturbedRun_GivesItsScores()
     {
-        using (var live = StreamRun.Open(Definition(1 << 20), new LoopOptions { BatchSize = 77 }, TimeProvider.System))
+        using (var live = LoopStream.Open(Definition(1 << 20), new LoopOptions { BatchSize = 77 }, TimeProvider.System))
             await live.RunAsync(TestContext.Current.CancellationToken);
 
         Assert.Equal(ScoreFileHash.Of(_folder["scores.jsonl"]), await ReplayAsync());
@@ -59,17 +59,24 @@ public sealed class RecordedRunTests : IDisposable
         Assert.Equal(maximumBytes > 2000, Directory.EnumerateFiles(_folder["recorded"]).Count() == 1);
     }
 
+    private CopyRun Copy()
+    {
+        var definition = LoopStream.Definition(_folder);
+        var folder = new RecordingFolder(new RecordingOptions(_folder["recorded"]));
+        return new CopyRun(definition, StreamEnds.OpenSource(definition, TimeProvider.System), folder, null, TimeProvider.System);
+    }
+
     private static async Task<bool> DiesAsync(StreamDefinition definition, int batchSize, Death death)
     {
         var source = new DyingSource(FileSource.Open((FileSourceOptions)definition.Source!, LoopStream.MaximumBytes, TimeProvider.System), death);
         ImmutableArray<IScoreSink> sinks =
         [
-            new DyingSink(new ScoreFile(definition.Scores!, definition.Engine), death),
+            new DyingSink(new ScoreFile((FileOutputOptions)definition.Scores!, definition.Engine), death),
             new DyingSink(new RecordingFolder(definition.Recording!), death),
         ];
         try
         {
-            using var run = new StreamRun(definition, source, sinks, new LoopOptions { BatchSize = batchSize }, new JumpingTime()) { BeforeCommit = death.Step };
+            using var run = new StreamRun(definition, new StreamEnds(source, sinks), new LoopOptions { BatchSize = batchSize }, new JumpingTime()) { BeforeCommit = death.Step };
             await run.RunAsync(TestContext.Current.CancellationToken);
             return false;
         }
@@ -82,12 +89,12 @@ public sealed class RecordedRunTests : IDisposable
     [Fact]
     public async Task Record_AStream_GivesItsRecords()
     {
-        using (var run = new RecordRun(LoopStream.Definition(_folder), new RecordingOptions(_folder["recorded"]), TimeProvider.System))
+        using (var run = Copy())
             Assert.Equal(3000, await run.RunAsync(TestContext.Current.CancellationToken));
-        using (var live = StreamRun.Open(LoopStream.Definition(_folder), new LoopOptions(), TimeProvider.System))
+        using (var live = LoopStream.Open(LoopStream.Definition(_folder), new LoopOptions(), TimeProvider.System))
             await live.RunAsync(TestContext.Current.CancellationToken);
 
         Assert.Equal(ScoreFileHash.Of(_folder["scores.jsonl"]), await ReplayAsync());
-        Assert.Throws<PipelineException>(() => new RecordRun(LoopStream.Definition(_folder), new RecordingOptions(_folder["recorded"]), TimeProvider.System));
+        Assert.Throws<PipelineException>(() => Copy());
     }
 }

@@ -33,11 +33,11 @@ public sealed class ResumeTests : IDisposable
         var source = new DyingSource(FileSource.Open(file, LoopStream.MaximumBytes, TimeProvider.System), death);
         ImmutableArray<IScoreSink> sinks =
         [
-            new DyingSink(new ScoreFile(definition.Scores!, definition.Engine), death),
-            new DyingSink(new RejectFile(definition.Rejects!), death),
+            new DyingSink(new ScoreFile((FileOutputOptions)definition.Scores!, definition.Engine), death),
+            new DyingSink(new RejectFile((FileOutputOptions)definition.Rejects!), death),
         ];
         // Closed at the end, it still tells its health and its model.
-        using var run = new StreamRun(definition, source, sinks, new LoopOptions { BatchSize = batchSize }, new JumpingTime())
+        using var run = new StreamRun(definition, new StreamEnds(source, sinks), new LoopOptions { BatchSize = batchSize }, new JumpingTime())
         {
             BeforeCommit = death.Step,
         };
@@ -174,7 +174,7 @@ public sealed class ResumeTests : IDisposable
         byte[] all = File.ReadAllBytes(_folder["quay.jsonl"]);
         int half = all.AsSpan(0, all.Length / 2).LastIndexOf((byte)'\n') + 1;
         File.WriteAllBytes(_folder["quay.jsonl"], all[..half]);
-        using (var first = StreamRun.Open(LoopStream.Definition(_folder) with { Rejects = null }, new LoopOptions(), TimeProvider.System))
+        using (var first = LoopStream.Open(LoopStream.Definition(_folder) with { Rejects = null }, new LoopOptions(), TimeProvider.System))
             await first.RunAsync(TestContext.Current.CancellationToken);
         File.WriteAllBytes(_folder["quay.jsonl"], all);
 

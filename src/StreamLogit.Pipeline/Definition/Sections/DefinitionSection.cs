@@ -1,4 +1,6 @@
 using StreamLogit.Engine.Definition;
+using StreamLogit.Pipeline.Definition.Sections.Kafka;
+using StreamLogit.Pipeline.Options.Kafka;
 
 namespace StreamLogit.Pipeline.Definition.Sections;
 
@@ -18,6 +20,7 @@ internal static class DefinitionSection
         var labels = LabelsSection.Read(definition.Optional("labels"));
         var decision = DecisionSection.Read(definition.Optional("decision"));
         var health = definition.Optional("health");
+        var kafkaKey = definition.Optional("kafka");
         var source = ForRun("source", "it says where the records come from");
         var scores = ForRun("scores", "it says where scores are written");
         var rejects = definition.Optional("rejects");
@@ -30,25 +33,31 @@ internal static class DefinitionSection
         var recordOptions = RecordSection.Read(record, labels);
         var featureOptions = FeaturesSection.Read(features, recordOptions, labels);
         var (learningOptions, warmStartPath) = LearningSection.Read(learning, featureOptions, files, use);
-        var sourceOptions = SourceSection.Read(source, files);
-        var (output, decisionOptions) = ScoresSection.Read(scores, decision, files, use);
+        var kafka = KafkaSection.Read(kafkaKey, folder);
+        var sourceOptions = SourceSection.Read(source, files, stream ?? "");
+        var engine = new EngineDefinition
+        {
+            Stream = stream ?? "",
+            Record = recordOptions,
+            Features = featureOptions ?? [],
+            Histories = HistoriesSection.Read(histories),
+            Learning = learningOptions,
+            Labels = labels,
+            Decision = decision,
+            Health = HealthSection.Read(health, recordOptions, featureOptions ?? []),
+        };
+        var (output, decisionOptions) = ScoresSection.Read(scores, engine, files, use);
+        var rejectOutput = RejectsSection.Read(rejects, files);
+        if (kafkaKey is null && (sourceOptions is KafkaSourceOptions || output is TopicOutputOptions || rejectOutput is TopicOutputOptions))
+            definition.Error("the key \"kafka\" is missing: it names the cluster of the topics");
         return new StreamDefinition
         {
-            Engine = new EngineDefinition
-            {
-                Stream = stream ?? "",
-                Record = recordOptions,
-                Features = featureOptions ?? [],
-                Histories = HistoriesSection.Read(histories),
-                Learning = learningOptions,
-                Labels = labels,
-                Decision = decisionOptions,
-                Health = HealthSection.Read(health, recordOptions, featureOptions ?? []),
-            },
+            Engine = engine with { Decision = decisionOptions },
             WarmStartPath = warmStartPath,
+            Kafka = kafka,
             Source = sourceOptions,
             Scores = output,
-            Rejects = RejectsSection.Read(rejects, files),
+            Rejects = rejectOutput,
             Recording = RecordingSection.Read(recording, files),
             State = StateSection.Read(state, files),
             Listen = ListenSection.Read(listen, files),

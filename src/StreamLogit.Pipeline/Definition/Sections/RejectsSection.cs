@@ -1,3 +1,4 @@
+using StreamLogit.Pipeline.Definition.Sections.Kafka;
 using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Definition.Sections;
@@ -5,11 +6,19 @@ namespace StreamLogit.Pipeline.Definition.Sections;
 /// <summary><c>rejects</c>: where records that cannot be used are written.</summary>
 internal static class RejectsSection
 {
-    public static FileOutputOptions? Read(ValueReader? value, FilePaths files)
+    public static OutputOptions? Read(ValueReader? value, FilePaths files)
     {
         if (value?.Object() is not { } section) return null;
-        string? path = files.ReadOutput(section.Required("file", "it names the file that rejects are written to"));
+        var file = section.Optional("file");
+        var kafka = section.Optional("kafka");
         section.End();
-        return path is null ? null : new FileOutputOptions(path);
+        if ((file is null) == (kafka is null))
+        {
+            section.Error(file is null
+                ? "one of the keys \"file\" and \"kafka\" is missing: it says where rejects are written"
+                : "has both \"file\" and \"kafka\": rejects are written to one place");
+        }
+        if (kafka is not null) return TopicOutputSection.ReadRejects(kafka);
+        return files.ReadOutput(file) is { } path ? new FileOutputOptions(path) : null;
     }
 }

@@ -1,4 +1,5 @@
 using StreamLogit.Engine.Definition;
+using StreamLogit.Pipeline.Definition.Sections.Kafka;
 using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Pipeline.Definition.Sections;
@@ -8,15 +9,20 @@ internal static class ScoresSection
 {
     private const int MostReasons = 20;
 
-    /// <summary>The output and what it adds to the decision.</summary>
-    public static (FileOutputOptions? Output, DecisionOptions Decision) Read(ValueReader? value, DecisionOptions decision, FilePaths files, DefinitionUse use)
+    /// <summary>The output, and the decision with what the section adds to it.</summary>
+    public static (OutputOptions? Output, DecisionOptions Decision) Read(ValueReader? value, EngineDefinition engine, FilePaths files, DefinitionUse use)
     {
+        var decision = engine.Decision;
         if (value?.Object() is not { } section) return (null, decision);
-        var file = use == DefinitionUse.Run ? section.Required("file", "it names the file that scores are written to") : section.Optional("file");
+        var file = section.Optional("file");
+        var kafka = section.Optional("kafka");
         bool labelled = section.Optional("labelled")?.Flag() ?? decision.PublishLabelled;
         int reasons = section.Optional("reasons")?.Whole(0, MostReasons) ?? decision.Reasons;
         section.End();
+        if (file is null && kafka is null && use == DefinitionUse.Run) section.Error("one of the keys \"file\" and \"kafka\" is missing: it says where scores are written");
+        if (file is not null && kafka is not null) section.Error("has both \"file\" and \"kafka\": scores are written to one place");
+        var topic = kafka is null ? null : TopicOutputSection.ReadScores(kafka, engine);
         string? path = files.ReadOutput(file);
-        return (path is null ? null : new FileOutputOptions(path), decision with { PublishLabelled = labelled, Reasons = reasons });
+        return (path is null ? topic : new FileOutputOptions(path), decision with { PublishLabelled = labelled, Reasons = reasons });
     }
 }

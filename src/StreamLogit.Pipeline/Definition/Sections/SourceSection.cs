@@ -1,3 +1,4 @@
+using StreamLogit.Pipeline.Definition.Sections.Kafka;
 using StreamLogit.Pipeline.Files;
 using StreamLogit.Pipeline.Options;
 
@@ -6,14 +7,29 @@ namespace StreamLogit.Pipeline.Definition.Sections;
 /// <summary><c>source</c>: where the records come from.</summary>
 internal static class SourceSection
 {
-    public static SourceOptions? Read(ValueReader? value, FilePaths files)
+    public static SourceOptions? Read(ValueReader? value, FilePaths files, string stream)
     {
         if (value?.Object() is not { } section) return null;
-        var file = section.Required("file", "it names the recording to read, or \"-\" for standard input");
-        var formatKey = section.Optional("format");
+        var file = section.Optional("file");
+        var format = section.Optional("format");
         var follow = section.Optional("follow");
-        bool isFollowed = follow?.Flag() ?? false;
+        var kafka = section.Optional("kafka");
         section.End();
+        if ((file is null) == (kafka is null))
+        {
+            section.Error(file is null
+                ? "one of the keys \"file\" and \"kafka\" is missing: it says where the records come from"
+                : "has both \"file\" and \"kafka\": records come from one place");
+        }
+        if (kafka is null) return ReadFile(file, format, follow, files);
+        format?.Error("is about files: leave it away");
+        follow?.Error("is about files, and topics are always followed: leave it away");
+        return KafkaSourceSection.Read(kafka, stream);
+    }
+
+    private static FileSourceOptions? ReadFile(ValueReader? file, ValueReader? formatKey, ValueReader? follow, FilePaths files)
+    {
+        bool isFollowed = follow?.Flag() ?? false;
         bool standardInput = file?.Value.Text == "-";
         string? path = standardInput ? "-" : files.Read(file);
         var format = formatKey is null

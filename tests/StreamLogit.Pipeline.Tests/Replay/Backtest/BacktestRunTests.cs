@@ -5,7 +5,6 @@ using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.Replay;
 using StreamLogit.Pipeline.Replay.Backtest;
-using StreamLogit.Pipeline.Tests.Stages;
 
 namespace StreamLogit.Pipeline.Tests.Replay.Backtest;
 
@@ -149,7 +148,7 @@ public sealed class BacktestRunTests : IDisposable
     {
         var recordings = Recording(LoopStream.Create(2000));
         await RunAsync(recordings, Options() with { Scores = new FileOutputOptions(_folder["replayed.jsonl"]) });
-        using (var live = StreamRun.Open(LoopStream.Definition(_folder), new LoopOptions(), TimeProvider.System))
+        using (var live = LoopStream.Open(LoopStream.Definition(_folder), new LoopOptions(), TimeProvider.System))
             await live.RunAsync(TestContext.Current.CancellationToken);
 
         Assert.Equal(File.ReadAllBytes(_folder["scores.jsonl"]), File.ReadAllBytes(_folder["replayed.jsonl"]));

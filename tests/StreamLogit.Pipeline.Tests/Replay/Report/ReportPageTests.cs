@@ -7,7 +7,6 @@ using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.Replay.Backtest;
 using StreamLogit.Pipeline.Replay.Report;
-using StreamLogit.Pipeline.Tests.Stages;
 
 namespace StreamLogit.Pipeline.Tests.Replay.Report;
 

@@ -2,8 +2,9 @@ using System.Text;
 using StreamLogit.Engine.Decisions;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Records;
+using StreamLogit.Pipeline;
 
-namespace StreamLogit.Pipeline.Tests.Files;
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>A batch of records and made-up scores for it, for sinks.</summary>
 internal sealed record ScoredBatch(RecordBatch Records, ScoreBatch Scores)

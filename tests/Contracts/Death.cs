@@ -1,4 +1,4 @@
-namespace StreamLogit.Pipeline.Tests.Stages;
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>Counts the steps of a run and dies at one of them.</summary>
 internal sealed class Death(int step)

@@ -1,7 +1,7 @@
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Records;
 
-namespace StreamLogit.Pipeline.Tests;
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>Schemas and batches for tests that do not score.</summary>
 internal static class Schemas

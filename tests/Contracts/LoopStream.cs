@@ -1,10 +1,11 @@
 using System.Globalization;
 using System.Text;
 using StreamLogit.Engine.Definition;
+using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Options;
 
-namespace StreamLogit.Pipeline.Tests.Stages;
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>A seeded stream of card payments, with labels that come late or never, labelled events, garbage, and lines that are too long.</summary>
 internal static class LoopStream
@@ -32,6 +33,10 @@ internal static class LoopStream
         Labels = new LabelOptions { WaitMicroseconds = 3600L * 1_000_000, EarlyMicroseconds = 60_000_000 },
         Decision = new DecisionOptions { Cutoff = 0.3 },
     };
+
+    /// <summary>A run over the files of a definition.</summary>
+    public static StreamRun Open(StreamDefinition definition, LoopOptions options, TimeProvider time) =>
+        new(definition, StreamEnds.OfFiles(definition, time), options, time);
 
     /// <summary>A definition whose source, outputs and state lie in a folder.</summary>
     public static StreamDefinition Definition(TemporaryFolder folder, int commitEvery = 100) => new()

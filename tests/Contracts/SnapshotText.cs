@@ -1,7 +1,7 @@
 using System.Text.Json;
 using System.Text.Json.Serialization;
 
-namespace StreamLogit.Pipeline.Tests;
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>Snapshots as text, with every digit, to be compared.</summary>
 internal static class SnapshotText

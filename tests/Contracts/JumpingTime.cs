@@ -1,4 +1,4 @@
-namespace StreamLogit.Pipeline.Tests;
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>A clock that stands still until somebody waits, and then jumps to the end of the wait.</summary>
 internal sealed class JumpingTime : TimeProvider

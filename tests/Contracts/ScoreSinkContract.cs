@@ -1,9 +1,14 @@
-namespace StreamLogit.Pipeline.Tests.Files;
+using StreamLogit.Pipeline;
+
+namespace StreamLogit.Tests.Contracts;
 
 /// <summary>What every sink must do.</summary>
 public abstract class ScoreSinkContract : IDisposable
 {
     private protected TemporaryFolder Folder { get; } = new();
+
+    /// <summary>A batch that begins at a multiple of this is followed by a flush.</summary>
+    private protected virtual int FlushEvery => 5;
 
     private protected abstract IScoreSink Open();
 
@@ -42,7 +47,7 @@ public abstract class ScoreSinkContract : IDisposable
         for (int i = 1; i <= Records; i += batchSize)
         {
             ScoredBatch.Create(i, Math.Min(batchSize, Records + 1 - i)).WriteTo(parts);
-            if (i % 5 == 0) parts.Flush();
+            if (i % FlushEvery == 0) parts.Flush();
         }
 
         Assert.Equal(mark, parts.Flush());

@@ -1,0 +1,76 @@
+using System.Collections.Immutable;
+using Microsoft.Extensions.Logging;
+using StreamLogit.Kafka.Clients;
+using StreamLogit.Kafka.Output;
+using StreamLogit.Kafka.Source;
+using StreamLogit.Pipeline;
+using StreamLogit.Pipeline.Definition;
+using StreamLogit.Pipeline.Options.Kafka;
+
+namespace StreamLogit.Kafka;
+
+/// <summary>Opens the ends of streams: topics, and files where the definition names those.</summary>
+public static class KafkaEnds
+{
+    /// <summary>Opens source and outputs as the definition names them.</summary>
+    /// <exception cref="KafkaSettingsException">The settings are wrong.</exception>
+    /// <exception cref="PipelineException">A file is out of reach.</exception>
+    public static StreamEnds Open(StreamDefinition definition, TimeProvider time, ILogger log) => Open(definition, time, log, new KafkaClients());
+
+    /// <summary>Opens the source alone, as one that takes no part in the worker's group, for who wants all its records from the beginning.</summary>
+    /// <exception cref="KafkaSettingsException">The settings are wrong.</exception>
+    /// <exception cref="PipelineException">A file is out of reach.</exception>
+    public static IRecordSource OpenSource(StreamDefinition definition, TimeProvider time, ILogger log)
+    {
+        if (definition.Source is not KafkaSourceOptions source) return StreamEnds.OpenSource(definition, time);
+        source = source with { Group = $"{source.Group}-record", Start = new TopicStart(TopicPlace.Earliest) };
+        return new KafkaSource(source, Connect(definition, time, log, new KafkaClients()), definition.Engine.Record.MaximumBytes, isPublished: false);
+    }
+
+    /// <summary>Opens the topics of the source for writing.</summary>
+    /// <exception cref="KafkaSettingsException">The settings are wrong.</exception>
+    public static IScoreSink OpenRecordSink(StreamDefinition definition, TimeProvider time, ILogger log) =>
+        OpenRecordSink(definition, time, log, new KafkaClients());
+
+    internal static IScoreSink OpenRecordSink(StreamDefinition definition, TimeProvider time, ILogger log, KafkaClients clients)
+    {
+        var source = definition.Source as KafkaSourceOptions ?? throw new ArgumentException("The source of the definition is no topic.", nameof(definition));
+        return new RecordTopic(source, CreateWriter(Connect(definition, time, log, clients), ImmutableSortedDictionary<string, string>.Empty));
+    }
+
+    internal static StreamEnds Open(StreamDefinition definition, TimeProvider time, ILogger log, KafkaClients clients)
+    {
+        if (definition.Kafka is null) return StreamEnds.OfFiles(definition, time);
+        var connection = Connect(definition, time, log, clients);
+        var sinks = ImmutableArray.CreateBuilder<IScoreSink>();
+        var scores = definition.Scores as TopicOutputOptions;
+        if ((scores ?? definition.Rejects as TopicOutputOptions) is { } output)
+        {
+            var writer = CreateWriter(connection, output.Properties);
+            if (scores is not null) sinks.Add(new ScoreTopic(scores, definition.Engine, writer));
+            if (definition.Rejects is TopicOutputOptions rejects) sinks.Add(new RejectTopic(rejects, writer));
+        }
+        try
+        {
+            sinks.AddRange(StreamEnds.OpenSinks(definition));
+            var source = definition.Source is KafkaSourceOptions topics
+                ? new KafkaSource(topics, connection, definition.Engine.Record.MaximumBytes, isPublished: scores is not null)
+                : StreamEnds.OpenSource(definition, time);
+            return new StreamEnds(source, sinks.ToImmutable());
+        }
+        catch
+        {
+            foreach (var sink in sinks) sink.Dispose();
+            throw;
+        }
+    }
+
+    private static TopicWriter CreateWriter(KafkaConnection connection, ImmutableSortedDictionary<string, string> properties) =>
+        new(connection, connection.Settings.Producer(properties));
+
+    private static KafkaConnection Connect(StreamDefinition definition, TimeProvider time, ILogger log, KafkaClients clients)
+    {
+        var kafka = definition.Kafka ?? throw new ArgumentException("The definition names no Kafka cluster.", nameof(definition));
+        return new KafkaConnection(new ClientSettings(kafka), clients, time, log);
+    }
+}
