@@ -38,6 +38,8 @@ public sealed class ScoringEngine
     private long _records;
     private long _version; // labels learned, corrections included
     private LabelEvents _events;
+    private long _savedAwaiting; // in the state that was taken up
+    private long _savedEarly;
 
     /// <summary>An engine that has seen nothing.</summary>
     /// <param name="definition">What it computes.</param>
@@ -177,6 +179,8 @@ public sealed class ScoringEngine
         writer.Write(_events.Repeated);
         writer.Write(_events.Corrected);
         writer.Write(_events.TaughtAtOnce);
+        writer.Write(_awaiting.Awaiting);
+        writer.Write((long)_early.Count);
         _clock.Save(writer);
         changes.Put(Part, 0, bytes.ToArray());
         _encoder.Save(changes);
@@ -204,6 +208,16 @@ public sealed class ScoringEngine
         return change;
     }
 
+    /// <summary>Takes up of a saved state what health tells, and the model: for looking into it, without reading every kept event.</summary>
+    /// <returns>Health as it stood when the state was saved, without memory and histories.</returns>
+    /// <exception cref="InvalidStateException">The state is damaged or belongs to another definition.</exception>
+    public HealthSnapshot LoadHealth(StateBlocks state)
+    {
+        LoadModel(state);
+        _health.Load(state);
+        return Health() with { Awaiting = _savedAwaiting, Early = _savedEarly, AwaitingBytes = 0 };
+    }
+
     /// <summary>Takes up of a saved state what <see cref="Model"/> tells, and no more: for looking into it.</summary>
     /// <exception cref="InvalidStateException">The state is damaged or belongs to another definition.</exception>
     public BankChange LoadModel(StateBlocks state)
@@ -225,6 +239,7 @@ public sealed class ScoringEngine
             Corrected = reader.ReadInt64(),
             TaughtAtOnce = reader.ReadInt64(),
         };
+        (_savedAwaiting, _savedEarly) = (reader.ReadInt64(), reader.ReadInt64());
         _clock.Load(reader);
         _encoder.Load(state);
         return _bank.Load(state);
@@ -274,8 +289,10 @@ public sealed class ScoringEngine
                 LogOdds = logOdds,
                 Weight = double.IsNaN(record.Weight) ? 1 : record.Weight,
                 ClockMicroseconds = _clock.Microseconds,
+                ScoredAtMicroseconds = _clock.Microseconds,
                 Slices = slices,
                 Label = record.Label,
+                StandsFor = 1,
                 Alert = isAlert ? 1 : 0,
             };
             Learn(record.IdHash, encoded, _logOdds, isFresh: true, label, _clock.Microseconds);
@@ -389,6 +406,11 @@ public sealed class ScoringEngine
             return;
         }
         if (known == label) _events.Repeated++;
+        if (mark.State == EventState.AssumedGood)
+        {
+            ref readonly var header = ref _awaiting.At(place).Header;
+            _health.CountConfirmed(header.ScoredAtMicroseconds, header.StandsFor);
+        }
         _awaiting.Mark(place, new LabelMark(state, known == label ? mark.Count : Correct(place, label, weight, mark.Count)));
     }
 
@@ -398,7 +420,7 @@ public sealed class ScoringEngine
         var scored = _awaiting.At(place);
         ref readonly var header = ref scored.Header;
         var counted = Counted(header, label, scored.WeightOf(weight));
-        if (!isAssumed) counted.DelayMicroseconds = _clock.Microseconds - header.ScoredAtMicroseconds;
+        if (isAssumed) counted.StandsFor = 0;
         _encoder.Learn(scored.LabelKeys, header.TimeMicroseconds, label, counted.Weight);
         return Learn(header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), isFresh: false, counted, header.ScoredAtMicroseconds);
     }
@@ -408,8 +430,10 @@ public sealed class ScoringEngine
         LogOdds = header.LogOdds,
         Weight = weight,
         ClockMicroseconds = _clock.Microseconds,
+        ScoredAtMicroseconds = header.ScoredAtMicroseconds,
         Slices = header.Slices,
         Label = label,
+        StandsFor = header.StandsFor,
         Alert = header.Alert,
     };
 

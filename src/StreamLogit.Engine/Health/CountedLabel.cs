@@ -12,14 +12,17 @@ internal struct CountedLabel
     /// <summary>The stream's clock when it came.</summary>
     public long ClockMicroseconds;
 
-    /// <summary>How long its event waited for it, on the stream's clock; 0 where it came with its event.</summary>
-    public long DelayMicroseconds;
+    /// <summary>The stream's clock when its event was scored; the same where it came with its event.</summary>
+    public long ScoredAtMicroseconds;
 
     /// <summary>Which value of each sliced field its event had, four codes of 16 bits.</summary>
     public ulong Slices;
 
     /// <summary>0 or 1.</summary>
     public int Label;
+
+    /// <summary>How many events it is the label of, where others like its event were not kept; 0 where it is only assumed, because the wait is over.</summary>
+    public int StandsFor;
 
     /// <summary>1 where the decision on its event was <c>alert</c>, else 0.</summary>
     public int Alert;

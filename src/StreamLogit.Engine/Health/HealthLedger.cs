@@ -2,10 +2,12 @@ using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Features;
 using StreamLogit.Engine.Health.Alarms;
+using StreamLogit.Engine.Health.Cohorts;
 using StreamLogit.Engine.Health.Detection;
 using StreamLogit.Engine.Health.Drift;
 using StreamLogit.Engine.Health.RollUps;
 using StreamLogit.Engine.Health.Slices;
+using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
 
@@ -34,6 +36,7 @@ internal sealed class HealthLedger
     private readonly LastLabels _last;
     private readonly LabelRun _waiting = new(); // labels that are to be counted in one run
     private readonly SlicedField[] _slices;
+    private readonly CohortLedger _cohorts;
     private readonly DriftLedger _drift;
     private readonly ChangeDetectors _detectors;
     private readonly AlarmWatch _alarms;
@@ -61,6 +64,7 @@ internal sealed class HealthLedger
         _settingShares = new SettingShares(Settings);
         _last = new LastLabels(_options.LastLabels);
         _slices = [.. _options.Slices.Select(path => new SlicedField(path, schema.IndexOf(path), _options.SliceValues, levels))];
+        _cohorts = new CohortLedger(_options.History);
         _drift = new DriftLedger(definition, schema);
         _detectors = new ChangeDetectors(_options.LabelsPerFalseAlarm, _options.DetectAfterLabels);
         _alarms = new AlarmWatch(_options.Alarms);
@@ -102,17 +106,22 @@ internal sealed class HealthLedger
         if (minute - _minute < MostMinutesTogether && minute < _hourEnd && OpenRecords < FewRecords) return;
 
         CountWaiting();
+        _cohorts.CountEvents(HealthRow.Stream(_open).Events);
         if (!isFirst && !_stream.Levels[0].IsOpenEmpty)
         {
             _settingShares.AddTo(_open, Math.Min(minute - _minute, MostMinutesTogether));
             _settingShares.Close();
         }
         bool isNewHour = minute >= _hourEnd, isNewDay = minute >= _dayEnd;
-        if (isNewHour) _hourEnd = (FloorDiv(minute, MinutesOfHour) + 1) * MinutesOfHour;
-        if (isNewDay) _dayEnd = (FloorDiv(minute, MinutesOfDay) + 1) * MinutesOfDay;
+        if (isNewHour) _hourEnd = (WholeDivision.Floor(minute, MinutesOfHour) + 1) * MinutesOfHour;
+        if (isNewDay) _dayEnd = (WholeDivision.Floor(minute, MinutesOfDay) + 1) * MinutesOfDay;
         _stream.MoveTo(minute);
         foreach (var field in _slices) field.MoveTo(minute, isNewDay && !isFirst);
-        if (isNewHour) _drift.StartHour(minute);
+        if (isNewHour)
+        {
+            _cohorts.MoveTo(WholeDivision.Floor(minute, MinutesOfHour));
+            _drift.StartHour(minute);
+        }
         _minute = minute;
         if (!isFirst && !_alarms.IsEmpty) _alarms.Look(minute - 1, _alarmMetrics);
     }
@@ -175,8 +184,17 @@ internal sealed class HealthLedger
         for (int i = 0; i < _slices.Length; i++)
             _slices[i].At((ushort)(label.Slices >> (16 * i))).RollUp.Change(counted.Minute, correction.Sums, correction.Bin, correction.Cell);
         _last.Replace(_labelled - (uint)((uint)_labelled - counted.Sequence), correction.Right);
+        _cohorts.Change(label.ScoredAtMicroseconds, correction.OfCohort);
         HealthRow.Stream(_open).Corrections++;
         return counted with { Weight = (float)label.Weight };
+    }
+
+    /// <summary>Says that a label has come of an event whose label was only assumed, whatever it says.</summary>
+    /// <param name="scoredAtMicroseconds">When its event was scored.</param>
+    /// <param name="standsFor">How many events it stands for.</param>
+    public void CountConfirmed(long scoredAtMicroseconds, int standsFor)
+    {
+        if (IsOn) _cohorts.Change(scoredAtMicroseconds, new CohortSums { Labelled = standsFor });
     }
 
     /// <summary>The figures of now.</summary>
@@ -191,6 +209,7 @@ internal sealed class HealthLedger
             Rejected = _rejects.Sum(),
             RejectsByReason = Enumerable.Range(0, _rejects.Length).Where(r => _rejects[r] > 0)
                 .ToImmutableSortedDictionary(r => ((RejectReason)r).Code(), r => _rejects[r], StringComparer.Ordinal),
+            Cohorts = _cohorts.Figures(clock, HealthRow.Stream(_open).Events),
             Detectors = _detectors.Figures,
             Changes = _detectors.Changes,
             Alarms = _alarms.Figures,
@@ -220,6 +239,7 @@ internal sealed class HealthLedger
         _stream.Save(changes);
         _last.Save(changes);
         foreach (var field in _slices) field.Save(changes);
+        _cohorts.Save(changes);
         _drift.Save(changes);
         _detectors.Save(changes);
         _alarms.Save(changes);
@@ -245,6 +265,7 @@ internal sealed class HealthLedger
         _stream.Load(state, HealthRow.PlacesOf(names, _settingNames.AsSpan()));
         _last.Load(state);
         foreach (var field in _slices) field.Load(state);
+        _cohorts.Load(state);
         _drift.Load(state);
         _detectors.Load(state);
         _alarms.Load(state);
@@ -258,7 +279,7 @@ internal sealed class HealthLedger
         _waiting.AddTo(ref HealthRow.Labels(_open), _openTally);
         _last.Add(_waiting);
         _detectors.Add(_waiting);
-        CountDelays(_waiting.Delays);
+        CountDelays();
         for (int field = 0; field < _slices.Length; field++)
         {
             for (int i = 0; i < _waiting.Count; i++)
@@ -267,27 +288,25 @@ internal sealed class HealthLedger
                 _waiting.AddTo(i, ref LabelSums.Of(slice.Numbers), slice.Tally);
             }
         }
+        _cohorts.CountLabels(_waiting);
         _drift.CountLabels(_waiting);
         _waiting.Clear();
     }
 
-    private void CountDelays(ReadOnlySpan<long> delays)
+    private void CountDelays()
     {
         ref var stream = ref HealthRow.Stream(_open);
-        foreach (long delay in delays)
+        ReadOnlySpan<long> clocks = _waiting.Clocks, scoredAt = _waiting.ScoredAt;
+        var standsFor = _waiting.StandsFor;
+        for (int i = 0; i < clocks.Length; i++)
         {
-            if (delay <= 0) continue;
+            long delay = clocks[i] - scoredAt[i];
+            if (delay <= 0 || standsFor[i] == 0) continue;
             stream.LateLabels++;
             stream.DelaySeconds += delay / 1e6;
             _openTally.Use(HealthRow.FirstDelayCell + DelayBins.Of(delay))++;
         }
     }
 
-    private static long MinuteOf(long microseconds) => FloorDiv(microseconds, MicrosecondsOfMinute);
-
-    private static long FloorDiv(long value, long divisor)
-    {
-        long quotient = Math.DivRem(value, divisor, out long rest);
-        return rest < 0 ? quotient - 1 : quotient;
-    }
+    private static long MinuteOf(long microseconds) => WholeDivision.Floor(microseconds, MicrosecondsOfMinute);
 }

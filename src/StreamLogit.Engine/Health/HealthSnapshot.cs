@@ -1,5 +1,6 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Health.Alarms;
+using StreamLogit.Engine.Health.Cohorts;
 using StreamLogit.Engine.Health.Detection;
 using StreamLogit.Engine.Health.Drift;
 
@@ -73,6 +74,9 @@ public sealed record HealthSnapshot
 
     /// <summary>How the figures went over time.</summary>
     public HealthHistory History { get; init; } = HealthHistory.Empty;
+
+    /// <summary>How events did by the time at which they were scored, and how many of them have their label by their age.</summary>
+    public CohortFigures Cohorts { get; init; } = CohortFigures.Empty;
 
     /// <summary>The period that drift is measured against; null before the first event.</summary>
     public ReferenceFigures? Reference { get; init; }

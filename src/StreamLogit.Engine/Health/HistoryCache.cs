@@ -1,5 +1,6 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Health.RollUps;
+using StreamLogit.Engine.Numerics;
 
 namespace StreamLogit.Engine.Health;
 
@@ -11,6 +12,7 @@ internal sealed class HistoryCache(RollUp rollUp, ImmutableArray<string>? settin
     private const long MicrosecondsOfMinute = 60_000_000;
 
     private readonly (HistoryPoint? Point, long Revision)[][] _points = [.. rollUp.Levels.ToArray().Select(level => new (HistoryPoint?, long)[level.BucketsKept])];
+    private readonly double[] _sum = new double[rollUp.Numbers.Length];
     private HealthHistory _history = HealthHistory.Empty;
     private long _revision = -1;
 
@@ -33,8 +35,29 @@ internal sealed class HistoryCache(RollUp rollUp, ImmutableArray<string>? settin
             if (kept.Point is null || kept.Revision != revision) kept = (PointOf(level, level.BucketNumber(closed), level.NumbersOf(closed)), revision);
             points.Add(kept.Point!);
         }
-        if (withOpen && !level.IsOpenEmpty) points.Add(PointOf(level, level.OpenBucket, level.Numbers));
+        if (withOpen) AddOpen(index, points);
         return points.DrainToImmutable();
+    }
+
+    /// <summary>Adds the present bucket of a level: what was rolled up into it, and what the shorter level, whose bucket is open too, has not rolled up yet.</summary>
+    private void AddOpen(int index, ImmutableArray<HistoryPoint>.Builder points)
+    {
+        RollUpLevel level = rollUp.Levels[index], shorter = rollUp.Levels[index - 1];
+        bool hasMore = index > 1 && !shorter.IsOpenEmpty;
+        long bucketOfMore = hasMore ? WholeDivision.Floor(shorter.OpenBucket, level.Minutes / shorter.Minutes) : level.OpenBucket;
+        if (!level.IsOpenEmpty)
+        {
+            var numbers = level.Numbers;
+            if (hasMore && bucketOfMore == level.OpenBucket)
+            {
+                numbers = _sum;
+                level.Numbers.CopyTo(numbers);
+                NumberRow.Add(numbers, shorter.Numbers);
+                hasMore = false;
+            }
+            points.Add(PointOf(level, level.OpenBucket, numbers));
+        }
+        if (hasMore) points.Add(PointOf(level, bucketOfMore, shorter.Numbers));
     }
 
     private HistoryPoint PointOf(RollUpLevel level, long bucket, Span<double> numbers)

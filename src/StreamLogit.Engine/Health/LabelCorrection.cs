@@ -1,3 +1,4 @@
+using StreamLogit.Engine.Health.Cohorts;
 using StreamLogit.Engine.Health.RollUps;
 
 namespace StreamLogit.Engine.Health;
@@ -33,6 +34,23 @@ internal sealed class LabelCorrection
 
     /// <summary>What is added to the sums.</summary>
     public ReadOnlySpan<double> Sums => _sums;
+
+    /// <summary>What is added to the sums of the events that were scored when its event was.</summary>
+    public CohortSums OfCohort
+    {
+        get
+        {
+            ref var sums = ref LabelSums.Of(_sums);
+            return new CohortSums
+            {
+                Weight = sums.Weight,
+                LogLoss = sums.LogLoss,
+                BaseRateLogLoss = sums.BaseRateLogLoss,
+                Probability = sums.Probability,
+                Positive = sums.Positive,
+            };
+        }
+    }
 
     /// <summary>The bin of its log-odds.</summary>
     public int Bin { get; }

@@ -2,6 +2,7 @@ using System.Runtime.CompilerServices;
 using System.Runtime.InteropServices;
 using System.Runtime.Intrinsics;
 using System.Runtime.Intrinsics.X86;
+using StreamLogit.Engine.Health.Cohorts;
 using StreamLogit.Engine.Health.RollUps;
 using StreamLogit.Engine.Numerics;
 
@@ -22,7 +23,8 @@ internal sealed class LabelRun
     private readonly double[] _labels = new double[Capacity];
     private readonly bool[] _alerts = new bool[Capacity];
     private readonly long[] _clocks = new long[Capacity];
-    private readonly long[] _delays = new long[Capacity];
+    private readonly long[] _scoredAt = new long[Capacity];
+    private readonly int[] _standsFor = new int[Capacity];
     private readonly ulong[] _slices = new ulong[Capacity];
     private readonly double[] _probabilities = new double[Capacity];
     private readonly double[] _logLosses = new double[Capacity];
@@ -47,8 +49,11 @@ internal sealed class LabelRun
     /// <summary>The stream's clock when each came, in microseconds.</summary>
     public ReadOnlySpan<long> Clocks => _clocks.AsSpan(0, Count);
 
-    /// <summary>How long each took, in microseconds.</summary>
-    public ReadOnlySpan<long> Delays => _delays.AsSpan(0, Count);
+    /// <summary>The stream's clock when the event of each was scored, in microseconds.</summary>
+    public ReadOnlySpan<long> ScoredAt => _scoredAt.AsSpan(0, Count);
+
+    /// <summary>How many events each is the label of; 0 where it is only assumed.</summary>
+    public ReadOnlySpan<int> StandsFor => _standsFor.AsSpan(0, Count);
 
     /// <summary>The codes of their slices.</summary>
     public ReadOnlySpan<ulong> Slices => _slices.AsSpan(0, Count);
@@ -69,7 +74,8 @@ internal sealed class LabelRun
         _labels[i] = label.Label;
         _alerts[i] = label.Alert != 0;
         _clocks[i] = label.ClockMicroseconds;
-        _delays[i] = label.DelayMicroseconds;
+        _scoredAt[i] = label.ScoredAtMicroseconds;
+        _standsFor[i] = label.StandsFor;
         _slices[i] = label.Slices;
     }
 
@@ -187,6 +193,18 @@ internal sealed class LabelRun
         sums.Add(_logOdds[i], _weights[i], _labels[i], _probabilities[i], _logLosses[i], _baseRateLogLosses[i], _alerts[i]);
         double w = _weights[i];
         AddCell(tally, _logOdds[i], Vector256.Create(w * _probabilities[i], w * _labels[i], w, w * w));
+    }
+
+    /// <summary>Adds one label to the sums of the events that were scored when its event was.</summary>
+    public void AddTo(int i, ref CohortSums sums)
+    {
+        double w = _weights[i];
+        sums.Labelled += _standsFor[i];
+        sums.Weight += w;
+        sums.LogLoss += w * _logLosses[i];
+        sums.BaseRateLogLoss += w * _baseRateLogLosses[i];
+        sums.Probability += w * _probabilities[i];
+        sums.Positive += w * _labels[i];
     }
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]

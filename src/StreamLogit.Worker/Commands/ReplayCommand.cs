@@ -145,6 +145,8 @@ internal static class ReplayCommand
             json.WriteEndObject();
         }
         json.WriteEndArray();
+        json.WritePropertyName("health");
+        HealthJson.Write(json, health);
         json.WriteString("scoreHash", scoreHash);
     }
 

@@ -1,5 +1,6 @@
 using System.Text;
 using StreamLogit.Engine;
+using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Definition;
@@ -11,8 +12,9 @@ namespace StreamLogit.Worker.Commands;
 /// <param name="Stream">The stream that it belongs to.</param>
 /// <param name="PublishedSetting">The setting that is published, or null for the blend.</param>
 /// <param name="Snapshot">The coefficients and the blend.</param>
+/// <param name="Health">How its probabilities did.</param>
 /// <param name="Parts">What the state is made of.</param>
-internal sealed record SavedModel(string Stream, string? PublishedSetting, ModelSnapshot Snapshot, IReadOnlyList<StatePart> Parts)
+internal sealed record SavedModel(string Stream, string? PublishedSetting, ModelSnapshot Snapshot, HealthSnapshot Health, IReadOnlyList<StatePart> Parts)
 {
     /// <summary>Reads the last commit of a state.</summary>
     /// <exception cref="WrongInputException">There is no state.</exception>
@@ -23,8 +25,8 @@ internal sealed record SavedModel(string Stream, string? PublishedSetting, Model
         var (info, checkpoint) = Peek(folder);
         var definition = StreamDefinitionReader.Read(Encoding.UTF8.GetBytes(info.Definition), "the definition in the state", folder, use: DefinitionUse.Fit);
         var engine = new ScoringEngine(definition.Engine);
-        engine.LoadModel(checkpoint.Blocks);
-        return new SavedModel(info.Stream, definition.Engine.Learning.PublishedSetting, engine.Model(), info.Parts);
+        var health = engine.LoadHealth(checkpoint.Blocks);
+        return new SavedModel(info.Stream, definition.Engine.Learning.PublishedSetting, engine.Model(), health, info.Parts);
     }
 
     // Here the state is the input, so whatever is wrong with it is wrong input.

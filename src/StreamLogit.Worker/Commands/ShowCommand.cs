@@ -1,11 +1,12 @@
 using System.CommandLine;
 using System.Globalization;
+using StreamLogit.Engine.Health;
 using StreamLogit.Engine.Learning;
 using StreamLogit.Worker.Output;
 
 namespace StreamLogit.Worker.Commands;
 
-/// <summary><c>show</c>: shows the model of a state.</summary>
+/// <summary><c>show</c>: shows the model or the health of a state.</summary>
 internal static class ShowCommand
 {
     private const int DefaultTop = 20;
@@ -13,6 +14,7 @@ internal static class ShowCommand
     public static Command Create()
     {
         var path = new Argument<string>("STATE") { Description = "The state folder of a worker, or the file in it; the worker may be running" };
+        var health = new Option<bool>("--health") { Description = "Show how the published probabilities did, instead of the model" };
         var json = new Option<bool>("--json") { Description = "Write everything as JSON" };
         var top = new Option<int?>("--top")
         {
@@ -21,18 +23,27 @@ internal static class ShowCommand
             CustomParser = WholeNumber.Between("--top", 0, int.MaxValue),
         };
         var command = new ExampleCommand(
-            "show", "Shows the coefficients and the blend of a saved model", "streamlogit show demo-streams/out/pump-stations/state --top 10")
+            "show", "Shows the coefficients and the blend of a saved model, or how its probabilities did",
+            "streamlogit show demo-streams/out/pump-stations/state --top 10",
+            "streamlogit show demo-streams/out/pump-stations/state --health")
         {
-            path, json, top,
+            path, health, json, top,
         };
         command.SetAction(result =>
         {
             var model = SavedModel.Read(result.GetRequiredValue(path));
-            if (result.GetValue(json)) WriteJson(model.Snapshot);
+            if (result.GetValue(health)) WriteHealth(model.Health, result.GetValue(json));
+            else if (result.GetValue(json)) WriteJson(model.Snapshot);
             else WriteTables(model, result.GetValue(top) ?? DefaultTop);
             return ExitCode.Done;
         });
         return command;
+    }
+
+    private static void WriteHealth(HealthSnapshot health, bool asJson)
+    {
+        if (asJson) JsonOutput.Write(json => HealthJson.Write(json, health));
+        else HealthTables.Write(health, Terminal.Output);
     }
 
     private static void WriteJson(ModelSnapshot model) => JsonOutput.Write(json =>

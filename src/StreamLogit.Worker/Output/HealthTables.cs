@@ -2,22 +2,26 @@ using StreamLogit.Engine.Health;
 
 namespace StreamLogit.Worker.Output;
 
-/// <summary>Writes how published probabilities did, as tables.</summary>
+/// <summary>Writes how published probabilities did, as tables; those that would be empty are left out.</summary>
 internal static class HealthTables
 {
-    /// <summary>Writes counts, windows, settings and, if there are any, rejects.</summary>
+    /// <summary>Writes all of them.</summary>
     public static void Write(HealthSnapshot health, Terminal terminal)
     {
-        WriteAll(
-            terminal,
+        ResultTable?[] tables =
+        [
             Counts(health),
             Windows(health),
+            CalibrationTables.Windows(health),
             Settings(health),
-            health.RejectsByReason.Count > 0 ? Rejects(health) : null);
-    }
-
-    private static void WriteAll(Terminal terminal, params ResultTable?[] tables)
-    {
+            CalibrationTables.Slices(health),
+            LabelTables.Delays(health),
+            LabelTables.Ages(health),
+            ChangeTables.Drift(health),
+            ChangeTables.Changes(health),
+            ChangeTables.Alarms(health),
+            health.RejectsByReason.Count > 0 ? Rejects(health) : null,
+        ];
         bool isFirst = true;
         foreach (var table in tables.OfType<ResultTable>())
         {
@@ -34,6 +38,7 @@ internal static class HealthTables
         table.Add("labelled", FigureText.Count(health.Labelled));
         table.Add("rejected", FigureText.Count(health.Rejected));
         table.Add("awaiting", FigureText.Count(health.Awaiting));
+        if (health.AwaitingBytes > 0) table.Add("bytes of memory for kept events", FigureText.Count(health.AwaitingBytes));
         table.Add("expired", FigureText.Count(health.Expired));
         table.Add("thinned", FigureText.Count(health.Thinned));
         table.Add("labels repeated", FigureText.Count(health.Repeated));

@@ -110,6 +110,22 @@ public class HealthLedgerTests
     }
 
     [Fact]
+    public void Snapshot_HistoryOfDays_HoldsTheOpenHourToo()
+    {
+        var run = new LedgerRun();
+        for (int hour = 0; hour < 60; hour++)
+        {
+            run.Label(hour * LedgerRun.Hour, 0, hour % 2);
+            run.MoveTo(hour * LedgerRun.Hour + 30 * Minute);
+            var (hours, days) = (run.Snapshot.History.Hours, run.Snapshot.History.Days);
+            Assert.Equal(hour + 1, hours.Sum(point => point.Figures.Count));
+            Assert.Equal(hour + 1, days.Sum(point => point.Figures.Count));
+            Assert.Equal(hour / 24 + 1, days.Length);
+            Assert.Equal(days.Select(point => point.FromMicroseconds).Order().Distinct(), days.Select(point => point.FromMicroseconds));
+        }
+    }
+
+    [Fact]
     public void CountLabel_ExtremeLogOdds_StaysFinite()
     {
         var run = new LedgerRun();
@@ -282,6 +298,7 @@ public class HealthLedgerTests
         Assert.Equal(expected.Total, got.Total);
         Assert.Equal(expected.Stream, got.Stream);
         Assert.Equal(expected.Windows, got.Windows);
+        Assert.Equal(expected.Cohorts, got.Cohorts);
         Assert.Equal(expected.Detectors, got.Detectors);
         Assert.Equal(expected.Changes, got.Changes);
         Assert.Equal(expected.Alarms, got.Alarms);

@@ -34,7 +34,7 @@ internal sealed class LedgerRun
         return this;
     }
 
-    public (CountedLabel Label, LabelCount Count) Label(long clock, double logOdds, int label, double weight = 1, long delay = 0)
+    public (CountedLabel Label, LabelCount Count) Label(long clock, double logOdds, int label, double weight = 1, long delay = 0, int standsFor = 1)
     {
         MoveTo(clock);
         var counted = new CountedLabel
@@ -43,7 +43,8 @@ internal sealed class LedgerRun
             Label = label,
             Weight = weight,
             ClockMicroseconds = _clock,
-            DelayMicroseconds = delay,
+            ScoredAtMicroseconds = _clock - delay,
+            StandsFor = standsFor,
             Alert = 1 / (1 + Math.Exp(-logOdds)) >= Cutoff ? 1 : 0,
         };
         return (counted, Ledger.CountLabel(counted));

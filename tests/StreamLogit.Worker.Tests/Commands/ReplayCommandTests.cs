@@ -14,7 +14,7 @@ public sealed class ReplayCommandTests
         var json = Demo.Value.Json;
 
         Assert.Equal(
-            ["events", "labelled", "rejected", "awaiting", "optimistic", "published", "settings", "scoreHash"],
+            ["events", "labelled", "rejected", "awaiting", "optimistic", "published", "settings", "health", "scoreHash"],
             json.EnumerateObject().Select(member => member.Name));
         Assert.Equal(["logLoss", "baseRateLogLoss", "brier"], json.GetProperty("published").EnumerateObject().Select(member => member.Name));
         Assert.Equal(4, json.GetProperty("settings").GetArrayLength());

@@ -54,6 +54,44 @@ public sealed class ShowCommandTests : IDisposable
     }
 
     [Fact]
+    public void Show_Health_IsWhatTheRunSaidAtItsEnd()
+    {
+        var run = StreamLogitProcess.Run(_folder.Demo().RunArguments(100_000));
+        var shown = StreamLogitProcess.Run("show", _folder.State, "--health");
+
+        Assert.Equal(0, shown.ExitCode);
+        string[] ofMemory = ["bytes of memory for kept events"];
+        Assert.Equal(run.Output.Split('\n').Where(line => !ofMemory.Any(line.StartsWith)), shown.Output.Split('\n'));
+        Assert.Equal(["label delay", "late labels", "mean", "10 %", "50 %", "90 %", "99 %"], shown.Table("label delay")[0]);
+        var ages = shown.Table("age of events").Skip(1).ToList();
+        Assert.Equal(10_080, ages.Sum(row => int.Parse(row[1])));
+        Assert.InRange(double.Parse(ages[^1][2]), 0.98, 1);
+        Assert.InRange(double.Parse(ages[0][2]), 0, 0.2);
+    }
+
+    [Fact]
+    public void Show_HealthAsJson_TellsLogLossByLabelTimeAndByEventTimeAndTheBlendOverTime()
+    {
+        RunDemo();
+
+        var health = StreamLogitProcess.Run("show", _folder.State, "--health", "--json").Json;
+
+        Assert.Equal((10_080, 9_920, 70, 90), (Count("events"), Count("labelled"), Count("awaiting"), Count("expired")));
+        var byLabel = health.GetProperty("byLabelTime").GetProperty("days").EnumerateArray().ToList();
+        var byEvent = health.GetProperty("byEventTime").GetProperty("days").EnumerateArray().ToList();
+        int untilTheLastMinute = byLabel.Sum(day => day.GetProperty("labels").GetInt32());
+        Assert.InRange(untilTheLastMinute, 9_918, 9_920);
+        Assert.Equal(10_080, byEvent.Sum(day => day.GetProperty("events").GetInt32()));
+        double total = health.GetProperty("windows")[0].GetProperty("logLoss").GetDouble();
+        Assert.Equal(total, byLabel.Sum(day => day.GetProperty("labels").GetInt32() * LogLoss(day)) / untilTheLastMinute, 1e-3);
+        Assert.Equal(total, byEvent.Sum(day => Math.Round(day.GetProperty("events").GetInt32() * day.GetProperty("labelledShare").GetDouble()) * LogLoss(day)) / 9_920, 1e-9);
+        Assert.All(byLabel, day => Assert.Equal(1, day.GetProperty("settings").EnumerateArray().Sum(setting => setting.GetProperty("blendWeight").GetDouble()), 1e-9));
+
+        int Count(string name) => health.GetProperty(name).GetInt32();
+        static double LogLoss(System.Text.Json.JsonElement day) => day.GetProperty("logLoss").ValueKind == System.Text.Json.JsonValueKind.Null ? 0 : day.GetProperty("logLoss").GetDouble();
+    }
+
+    [Fact]
     public void Show_NoState_ExitsWith2()
     {
         Directory.CreateDirectory(_folder["empty"]);

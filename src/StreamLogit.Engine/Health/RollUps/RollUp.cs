@@ -1,4 +1,5 @@
 using System.Runtime.InteropServices;
+using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Health.RollUps;
@@ -46,7 +47,7 @@ internal sealed class RollUp
     /// <summary>Opens the bucket of a minute that is not before the open one; what was open is closed and rolled up.</summary>
     public void MoveTo(long minute)
     {
-        long bucket = FloorDiv(minute, _levels[0].Minutes);
+        long bucket = WholeDivision.Floor(minute, _levels[0].Minutes);
         if (bucket == _levels[0].OpenBucket) return;
         if (!_levels[0].IsOpenEmpty)
         {
@@ -66,7 +67,7 @@ internal sealed class RollUp
         int level = 0;
         while (level < _levels.Length - 1 && (long)_levels[level].TalliesKept * _levels[level].Minutes < minutes) level++;
         var buckets = _levels[level];
-        long first = FloorDiv(lastMinute - minutes + 1, buckets.Minutes);
+        long first = WholeDivision.Floor(lastMinute - minutes + 1, buckets.Minutes);
         for (long closed = buckets.FirstFrom(first); closed < buckets.Closed; closed++)
         {
             NumberRow.Add(numbers, buckets.NumbersOf(closed));
@@ -105,7 +106,7 @@ internal sealed class RollUp
         foreach (var level in _levels)
         {
             bool isShortest = level == _levels[0];
-            long bucket = FloorDiv(minute, level.Minutes);
+            long bucket = WholeDivision.Floor(minute, level.Minutes);
             if (level.OpenBucket == bucket || (isShortest && level.OpenBucket < bucket))
             {
                 NumberRow.Add(level.Numbers, numbers);
@@ -203,7 +204,7 @@ internal sealed class RollUp
             return;
         }
         var next = _levels[index + 1];
-        long bucket = FloorDiv(level.OpenBucket, next.Minutes / level.Minutes);
+        long bucket = WholeDivision.Floor(level.OpenBucket, next.Minutes / level.Minutes);
         if (bucket != next.OpenBucket)
         {
             if (!next.IsOpenEmpty) Close(index + 1);
@@ -211,11 +212,5 @@ internal sealed class RollUp
         }
         NumberRow.Add(next.Numbers, level.Numbers);
         next.Tally.Add(level.Tally);
-    }
-
-    private static long FloorDiv(long value, long divisor)
-    {
-        long quotient = Math.DivRem(value, divisor, out long rest);
-        return rest < 0 ? quotient - 1 : quotient;
     }
 }
