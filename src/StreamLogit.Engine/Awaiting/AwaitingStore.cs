@@ -15,10 +15,8 @@ internal sealed class AwaitingStore
     /// <summary>The part of the state that the engine reads from the archive, block by block, instead of loading it.</summary>
     public const string SegmentsPart = "awaiting/segments";
 
-    private const string MarksPart = "awaiting/marks";
     private const string CursorsPart = "awaiting/cursors";
-    private const int SegmentBytes = 1 << 16;
-    private const int MaximumSpares = 16;
+    private const int MaximumSpares = 64;
     private const int UsualEventBytes = 256;
 
     private readonly int _settings;
@@ -32,10 +30,12 @@ internal sealed class AwaitingStore
     private readonly SegmentReader _reader;
     private readonly Stack<byte[]> _spareBytes = [];
     private readonly Stack<Segment> _spareSegments = [];
-    private readonly List<Segment> _segments = []; // oldest first; the last one takes new events
-    private int _firstSegment; // the number of _segments[0]
+    private readonly SegmentList _segments = new(); // the last one takes new events
+    private readonly MarkJournal _journal = new();
+    private readonly List<int> _newlyMarked = []; // numbers of segments with marks that are not saved
     private int _firstHot; // the number of the first segment that is in memory
-    private int _savedFirstSegment;
+    private int _savedFirst; // segments before this one are removed from the state
+    private int _savedNext; // segments before this one are in the state or the archive
     private EventPlace _waitCursor; // the first event whose wait may not be over
     private EventPlace _keepCursor; // the first event that is still kept
     private long _nextEnd = long.MaxValue; // no wait ends and no event is let go before this time of the clock
@@ -54,7 +54,7 @@ internal sealed class AwaitingStore
         _banks = new ScoringBanks(settings);
         _waitMicroseconds = waitMicroseconds;
         _keepMicroseconds = keepsAssumed ? 2 * waitMicroseconds : waitMicroseconds;
-        _hotSegments = (int)Math.Clamp(memoryBytes / SegmentBytes, 2, int.MaxValue);
+        _hotSegments = (int)Math.Clamp(memoryBytes / Segment.UsualBytes, 2, int.MaxValue);
         _archive = archive;
         _reader = new SegmentReader(archive, SegmentsPart);
     }
@@ -67,7 +67,7 @@ internal sealed class AwaitingStore
 
     /// <summary>Bytes of memory that the kept events and their index take.</summary>
     public long MemoryBytes =>
-        _index.Bytes + (long)(_firstSegment + _segments.Count - _firstHot) * SegmentBytes + _reader.Bytes;
+        _index.Bytes + (long)(_segments.Next - _firstHot) * Segment.UsualBytes + _reader.Bytes;
 
     /// <summary>Asks for the memory in which an id is looked up; some records later <see cref="WantEvent"/> asks for that of its event.</summary>
     public void WantIndex(ulong idHash) => _index.ShardOf(idHash).Want(idHash);
@@ -75,13 +75,13 @@ internal sealed class AwaitingStore
     /// <summary>Asks for the memory of the kept event with an id; some records later <see cref="WantMark"/> asks for that of its mark.</summary>
     public void WantEvent(ulong idHash)
     {
-        if (TryFindFirst(idHash, out var place) && SegmentOf(place).Bytes is { } bytes) CacheHint.Want(bytes, place.Offset, UsualEventBytes);
+        if (TryFindFirst(idHash, out var place) && _segments[place.Segment].Bytes is { } bytes) CacheHint.Want(bytes, place.Offset, UsualEventBytes);
     }
 
     /// <summary>Asks for the memory of what is marked of the kept event with an id.</summary>
     public void WantMark(ulong idHash)
     {
-        if (TryFindFirst(idHash, out var place) && SegmentOf(place).Bytes is not null) SegmentOf(place).WantMark(HeaderAt(place).Ordinal);
+        if (TryFindFirst(idHash, out var place) && _segments[place.Segment].Bytes is not null) _segments[place.Segment].WantMark(HeaderAt(place).Ordinal);
     }
 
     /// <summary>Where the kept event with an id lies.</summary>
@@ -90,7 +90,7 @@ internal sealed class AwaitingStore
         var shard = _index.ShardOf(idHash);
         for (int cursor = shard.First(idHash); cursor >= 0; cursor = shard.Next(idHash, cursor))
         {
-            place = shard.PlaceAt(cursor, _firstSegment);
+            place = shard.PlaceAt(cursor, _segments.First);
             if (At(place).Id.SequenceEqual(id)) return true;
         }
         place = default;
@@ -100,7 +100,7 @@ internal sealed class AwaitingStore
     /// <summary>The event that lies there, readable until the next call that may read another one.</summary>
     public KeptEvent At(EventPlace place)
     {
-        var segment = SegmentOf(place);
+        var segment = _segments[place.Segment];
         byte[] bytes = segment.Bytes ?? _reader.Read(place.Segment);
         return new KeptEvent(bytes.AsSpan(place.Offset, segment.Length - place.Offset), _banks.SettingsOf(place.Segment), _labelKeys);
     }
@@ -109,7 +109,7 @@ internal sealed class AwaitingStore
     public ReadOnlySpan<double> LogOddsOf(EventPlace place) => _banks.LogOddsOf(At(place), place.Segment);
 
     /// <summary>What became of the event that lies there.</summary>
-    public LabelMark MarkOf(EventPlace place) => SegmentOf(place).MarkOf(HeaderAt(place).Ordinal);
+    public LabelMark MarkOf(EventPlace place) => _segments[place.Segment].MarkOf(HeaderAt(place).Ordinal);
 
     /// <summary>Whether an event that was added there is still kept.</summary>
     public bool Holds(EventPlace place) => !IsPassed(place);
@@ -117,9 +117,10 @@ internal sealed class AwaitingStore
     /// <summary>Says what became of an event.</summary>
     public void Mark(EventPlace place, in LabelMark mark)
     {
-        var segment = SegmentOf(place);
+        var segment = _segments[place.Segment];
         int ordinal = HeaderAt(place).Ordinal;
         if (segment.StateOf(ordinal) == EventState.Awaiting) Awaiting--;
+        if (!segment.HasNewMarks) NoteNewMarks(place.Segment);
         segment.Mark(ordinal, mark);
     }
 
@@ -134,7 +135,7 @@ internal sealed class AwaitingStore
         header.Ordinal = segment.Count;
         int offset = segment.Append(header.TotalBytes);
         KeptEvent.Write(segment.Bytes.AsSpan(offset, header.TotalBytes), header, logOdds, labelKeys, vector, id);
-        var place = new EventPlace(_firstSegment + _segments.Count - 1, offset);
+        var place = new EventPlace(_segments.Next - 1, offset);
         _index.Add(header.IdHash, place);
         Awaiting++;
         _nextEnd = Math.Min(_nextEnd, header.ScoredAtMicroseconds + _waitMicroseconds);
@@ -176,12 +177,12 @@ internal sealed class AwaitingStore
                 WantToForget(header);
                 break;
             }
-            if (SegmentOf(_keepCursor).StateOf(header.Ordinal) == EventState.Awaiting) unlabelled++;
-            _index.Remove(header.IdHash, _keepCursor, _firstSegment);
+            if (_segments[_keepCursor.Segment].StateOf(header.Ordinal) == EventState.Awaiting) unlabelled++;
+            _index.Remove(header.IdHash, _keepCursor, _segments.First);
             Pass(ref _keepCursor);
         }
         Awaiting -= unlabelled;
-        while (_firstSegment < _keepCursor.Segment) DropOldestSegment();
+        while (_segments.First < _keepCursor.Segment) DropOldestSegment();
         if (_keepMicroseconds == _waitMicroseconds) _waitCursor = _keepCursor;
         else if (TrySkipEnds(ref _waitCursor)) _nextEnd = Math.Min(_nextEnd, HeaderAt(_waitCursor).ScoredAtMicroseconds + _waitMicroseconds);
         return unlabelled;
@@ -189,83 +190,92 @@ internal sealed class AwaitingStore
 
     public void Save(StateBlocks changes)
     {
-        for (; _savedFirstSegment < _firstSegment; _savedFirstSegment++)
+        for (; _savedFirst < _segments.First; _savedFirst++) changes.Remove(SegmentsPart, _savedFirst);
+        for (int number = Math.Max(_savedNext - 1, _segments.First); number < _segments.Next; number++)
         {
-            changes.Remove(SegmentsPart, _savedFirstSegment);
-            changes.Remove(MarksPart, _savedFirstSegment);
+            var segment = _segments[number];
+            if (segment.HasNewEvents) changes.Put(SegmentsPart, number, segment.Bytes.AsSpan(0, segment.Length));
+            segment.HasNewEvents = false;
         }
-        for (int i = 0; i < _segments.Count; i++)
-        {
-            var segment = _segments[i];
-            if (segment.HasNewEvents) changes.Put(SegmentsPart, _firstSegment + i, segment.Bytes.AsSpan(0, segment.Length));
-            if (segment.HasNewMarks) changes.Put(MarksPart, _firstSegment + i, segment.MarkBytes);
-            segment.HasNewEvents = segment.HasNewMarks = false;
-        }
-        ReadOnlySpan<int> cursors = [_firstSegment, _waitCursor.Segment, _waitCursor.Offset, _keepCursor.Segment, _keepCursor.Offset];
+        _savedNext = _segments.Next;
+        foreach (int number in _newlyMarked)
+            if (number >= _segments.First) _journal.Add(changes, number, _segments[number].TakeNewMarks());
+        _newlyMarked.Clear();
+        _journal.Save(changes, _segments.First);
+        ReadOnlySpan<int> cursors = [_segments.First, _waitCursor.Segment, _waitCursor.Offset, _keepCursor.Segment, _keepCursor.Offset];
         changes.Put(CursorsPart, 0, MemoryMarshal.AsBytes(cursors));
-        _banks.Save(changes, _firstSegment);
+        _banks.Save(changes, _segments.First);
     }
 
     public void Load(StateBlocks state)
     {
         var cursors = MemoryMarshal.Cast<byte, int>(state.Find(CursorsPart, 0) ?? throw new InvalidStateException($"the state has no {CursorsPart}"));
-        _firstSegment = _savedFirstSegment = _firstHot = cursors[0];
+        _savedFirst = _firstHot = cursors[0];
+        _segments.StartAt(cursors[0]);
         _waitCursor = new EventPlace(cursors[1], cursors[2]);
         _keepCursor = new EventPlace(cursors[3], cursors[4]);
         _nextEnd = long.MinValue;
         if (_archive is null)
-            foreach (var (number, bytes) in state.Read(SegmentsPart)) LoadSegment(number, bytes, bytes.Length, state.Find(MarksPart, number));
+            foreach (var (number, bytes) in state.Read(SegmentsPart)) LoadSegment(number, bytes, bytes.Length);
         else
             foreach (long number in _archive.Numbers(SegmentsPart))
             {
-                byte[] bytes = new byte[SegmentBytes];
+                byte[] bytes = new byte[Segment.UsualBytes];
                 int length = _archive.Read(SegmentsPart, number, ref bytes);
-                LoadSegment(number, bytes, length, state.Find(MarksPart, number));
+                LoadSegment(number, bytes, length);
             }
-        _banks.Load(state, _firstSegment + _segments.Count);
+        _savedNext = _segments.Next;
+        foreach (var (number, mark) in _journal.Load(state, _segments.First))
+        {
+            if (number >= _segments.Next) throw new InvalidStateException($"{MarkJournal.Part} speaks of segment {number}, which is not there");
+            if (_segments[number].LoadMark(mark)) Awaiting--;
+        }
+        _banks.Load(state, _segments.Next);
     }
 
-    private void LoadSegment(long number, byte[] bytes, int length, ReadOnlySpan<byte> marks)
+    private void LoadSegment(long number, byte[] bytes, int length)
     {
-        if (number != _firstSegment + _segments.Count) throw new InvalidStateException($"block {number} of {SegmentsPart} is out of order");
+        if (number != _segments.Next) throw new InvalidStateException($"block {number} of {SegmentsPart} is out of order");
         var segment = new Segment();
-        segment.LoadMarks(marks);
         while (segment.Length < length)
         {
             var header = MemoryMarshal.Read<KeptHeader>(bytes.AsSpan(segment.Length));
             var place = new EventPlace((int)number, segment.Append(header.TotalBytes));
-            if (IsPassed(place)) continue;
-            if (segment.StateOf(header.Ordinal) == EventState.Awaiting) Awaiting++;
+            if (place.Offset >= Segment.UsualBytes) throw new InvalidStateException($"block {number} of {SegmentsPart} is too long");
+            if (IsPassed(place))
+            {
+                segment.Passed = segment.Count;
+                continue;
+            }
+            Awaiting++;
             _index.Add(header.IdHash, place);
         }
         segment.HasNewEvents = false;
-        if (bytes.Length < SegmentBytes) Array.Resize(ref bytes, SegmentBytes); // the last one takes new events
+        if (bytes.Length < Segment.UsualBytes) Array.Resize(ref bytes, Segment.UsualBytes); // the last one takes new events
         segment.Bytes = bytes;
         _segments.Add(segment);
         ArchiveBeyondMemory();
     }
 
-    private Segment SegmentOf(EventPlace place) => _segments[place.Segment - _firstSegment];
-
     private ref readonly KeptHeader HeaderAt(EventPlace place) =>
-        ref MemoryMarshal.AsRef<KeptHeader>((SegmentOf(place).Bytes ?? _reader.Read(place.Segment)).AsSpan(place.Offset));
+        ref MemoryMarshal.AsRef<KeptHeader>((_segments[place.Segment].Bytes ?? _reader.Read(place.Segment)).AsSpan(place.Offset));
 
-    private EventState StateOf(EventPlace place) => SegmentOf(place).StateOf(HeaderAt(place).Ordinal);
+    private EventState StateOf(EventPlace place) => _segments[place.Segment].StateOf(HeaderAt(place).Ordinal);
 
     private bool TryFindFirst(ulong idHash, out EventPlace place)
     {
         var shard = _index.ShardOf(idHash);
         int cursor = shard.First(idHash);
-        place = cursor < 0 ? default : shard.PlaceAt(cursor, _firstSegment);
+        place = cursor < 0 ? default : shard.PlaceAt(cursor, _segments.First);
         return cursor >= 0;
     }
 
     /// <summary>Moves a place that is at the end of a segment to the next event; false where there is none.</summary>
     private bool TrySkipEnds(ref EventPlace place)
     {
-        int last = _firstSegment + _segments.Count - 1;
-        while (place.Segment < last && place.Offset >= SegmentOf(place).Length) place = new EventPlace(place.Segment + 1, 0);
-        return place.Segment <= last && place.Offset < SegmentOf(place).Length;
+        int last = _segments.Next - 1;
+        while (place.Segment < last && place.Offset >= _segments[place.Segment].Length) place = new EventPlace(place.Segment + 1, 0);
+        return place.Segment <= last && place.Offset < _segments[place.Segment].Length;
     }
 
     private bool IsPassed(EventPlace place) =>
@@ -278,17 +288,24 @@ internal sealed class AwaitingStore
     private void WantToForget(in KeptHeader header)
     {
         WantIndex(header.IdHash);
-        if (SegmentOf(_keepCursor).Bytes is { } bytes) CacheHint.Want(bytes, _keepCursor.Offset + header.TotalBytes, KeptHeader.Size);
+        if (_segments[_keepCursor.Segment].Bytes is { } bytes) CacheHint.Want(bytes, _keepCursor.Offset + header.TotalBytes, KeptHeader.Size);
+    }
+
+    private void NoteNewMarks(int segment)
+    {
+        // Where nothing is ever saved, the segments that are gone leave again.
+        if (_newlyMarked.Count > 2 * _segments.Count + 1024) _newlyMarked.RemoveAll(number => number < _segments.First);
+        _newlyMarked.Add(segment);
     }
 
     private Segment SegmentFor(int size)
     {
-        bool isOfPresent = _firstSegment + _segments.Count > _banks.FirstOfPresent;
-        if (_segments.Count > 0 && isOfPresent && _segments[^1].HasRoom(size)) return _segments[^1];
+        bool isOfPresent = _segments.Next > _banks.FirstOfPresent;
+        if (_segments.Count > 0 && isOfPresent && _segments.Last.HasRoom(size)) return _segments.Last;
         if (_segments.Count == IndexShard.SegmentNumbers)
             throw new InvalidOperationException("more events are kept than there is room for: shorten labels.wait or thin them by labels.keep");
         if (!_spareSegments.TryPop(out var segment)) segment = new Segment();
-        segment.Bytes = size <= SegmentBytes && _spareBytes.TryPop(out byte[]? spare) ? spare : new byte[Math.Max(size, SegmentBytes)];
+        segment.Bytes = size <= Segment.UsualBytes && _spareBytes.TryPop(out byte[]? spare) ? spare : new byte[Math.Max(size, Segment.UsualBytes)];
         _segments.Add(segment);
         ArchiveBeyondMemory();
         return segment;
@@ -297,9 +314,9 @@ internal sealed class AwaitingStore
     private void ArchiveBeyondMemory()
     {
         if (_archive is null) return;
-        while (_firstSegment + _segments.Count - _firstHot > _hotSegments)
+        while (_segments.Next - _firstHot > _hotSegments)
         {
-            var segment = _segments[_firstHot - _firstSegment];
+            var segment = _segments[_firstHot];
             if (segment.HasNewEvents) _archive.Write(SegmentsPart, _firstHot, segment.Bytes.AsSpan(0, segment.Length));
             segment.HasNewEvents = false;
             Release(segment);
@@ -309,19 +326,17 @@ internal sealed class AwaitingStore
 
     private void DropOldestSegment()
     {
-        if (_archive is not null && _firstSegment < _firstHot) _archive.Remove(SegmentsPart, _firstSegment);
-        var segment = _segments[0];
-        _segments.RemoveAt(0);
+        if (_archive is not null && _segments.First < _firstHot) _archive.Remove(SegmentsPart, _segments.First);
+        var segment = _segments.RemoveFirst();
         Release(segment);
         segment.Clear();
         if (_spareSegments.Count < MaximumSpares) _spareSegments.Push(segment);
-        _firstSegment++;
-        _firstHot = Math.Max(_firstHot, _firstSegment);
+        _firstHot = Math.Max(_firstHot, _segments.First);
     }
 
     private void Release(Segment segment)
     {
-        if (segment.Bytes is { Length: SegmentBytes } bytes && _spareBytes.Count < MaximumSpares) _spareBytes.Push(bytes);
+        if (segment.Bytes is { Length: Segment.UsualBytes } bytes && _spareBytes.Count < MaximumSpares) _spareBytes.Push(bytes);
         segment.Bytes = null;
     }
 }

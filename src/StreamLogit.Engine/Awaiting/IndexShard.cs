@@ -12,8 +12,8 @@ internal sealed class IndexShard
     public const int SegmentNumbers = 1 << SegmentBits;
 
     private const int TagBits = 27;
-    private const int SegmentBits = 23;
-    private const int OffsetBits = 13; // of an offset in a segment of 64 KiB, a multiple of 8
+    private const int SegmentBits = 25;
+    private const int OffsetBits = 11; // of an offset in a segment of 16 KiB, a multiple of 8
     private const int OffsetUnit = 8;
     private const int TagShift = 64 - TagBits;
     private const ulong IsUsed = 1UL << (SegmentBits + OffsetBits);

@@ -1,5 +1,5 @@
 using System.Numerics;
-using System.Runtime.InteropServices;
+using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Awaiting;
 
@@ -9,9 +9,13 @@ namespace StreamLogit.Engine.Awaiting;
 /// </summary>
 internal sealed class Segment
 {
+    /// <summary>The bytes of a segment, unless its only event needs more. The less, the less is read for a label whose event is in the archive.</summary>
+    public const int UsualBytes = 1 << 14;
+
     private SegmentMark[] _marks = []; // of those events that have one, in the order in which they got it
     private ushort[] _markOf = []; // for each event, one more than the place of its mark, or 0
     private int _marked;
+    private int _savedMarks; // of them from the front
 
     /// <summary>The events, or null while they are in the archive only.</summary>
     public byte[]? Bytes { get; set; }
@@ -25,11 +29,11 @@ internal sealed class Segment
     /// <summary>Whether events were added since it was last written.</summary>
     public bool HasNewEvents { get; set; }
 
-    /// <summary>Whether marks were made since they were last written.</summary>
-    public bool HasNewMarks { get; set; }
+    /// <summary>Whether marks were made since they were last taken to be saved.</summary>
+    public bool HasNewMarks => _savedMarks < _marked;
 
-    /// <summary>The marks made so far, as they are saved.</summary>
-    public ReadOnlySpan<byte> MarkBytes => MemoryMarshal.AsBytes(_marks.AsSpan(0, _marked));
+    /// <summary>Events at the front that were not kept any longer when a state was saved.</summary>
+    public int Passed { get; set; }
 
     public bool HasRoom(int size) => Bytes is not null && Bytes.Length - Length >= size;
 
@@ -63,22 +67,37 @@ internal sealed class Segment
             SetPlace(ordinal, place);
         }
         _marks[place] = new SegmentMark(ordinal, mark);
-        HasNewMarks = true;
+
+        // A correction is rare: all marks of the segment are saved again.
+        if (place < _savedMarks) _savedMarks = 0;
     }
 
-    /// <summary>Takes up marks that were saved.</summary>
-    public void LoadMarks(ReadOnlySpan<byte> bytes)
+    /// <summary>The marks to be saved.</summary>
+    public ReadOnlySpan<SegmentMark> TakeNewMarks()
     {
-        _marks = MemoryMarshal.Cast<byte, SegmentMark>(bytes).ToArray();
-        for (_marked = 0; _marked < _marks.Length; _marked++) SetPlace(_marks[_marked].Ordinal, _marked);
+        var marks = _marks.AsSpan(_savedMarks.._marked);
+        _savedMarks = _marked;
+        return marks;
+    }
+
+    /// <summary>Takes up a mark that was saved; a later one of the same event replaces it.</summary>
+    /// <returns>Whether it is the first mark of an event that is still kept.</returns>
+    public bool LoadMark(in SegmentMark mark)
+    {
+        if (mark.Ordinal >= Count) throw new InvalidStateException($"a segment of {Count} events has a mark of event {mark.Ordinal}");
+        if (mark.Ordinal < Passed) return false;
+        bool isFirst = StateOf(mark.Ordinal) == EventState.Awaiting;
+        Mark(mark.Ordinal, mark.ToMark());
+        _savedMarks = _marked;
+        return isFirst;
     }
 
     /// <summary>Empties it for new events.</summary>
     public void Clear()
     {
         _markOf.AsSpan().Clear();
-        Length = Count = _marked = 0;
-        HasNewEvents = HasNewMarks = false;
+        Length = Count = Passed = _marked = _savedMarks = 0;
+        HasNewEvents = false;
     }
 
     private int PlaceOf(int ordinal) => ordinal < _markOf.Length ? _markOf[ordinal] - 1 : -1;

@@ -5,7 +5,7 @@ namespace StreamLogit.Engine.Awaiting;
 /// <summary>Reads segments that are in the archive, and keeps the last few in memory.</summary>
 internal sealed class SegmentReader(IBlockArchive? archive, string part)
 {
-    private const int Places = 64;
+    private const int Places = 256;
     private readonly byte[][] _bytes = [.. Enumerable.Repeat(Array.Empty<byte>(), Places)];
     private readonly int[] _numbers = [.. Enumerable.Repeat(-1, Places)];
 

@@ -39,7 +39,7 @@ public class AwaitingStoreTests
     [Fact]
     public void TryTakeExpired_AtTheEndOfTheWait_StillWaits()
     {
-        var store = new AwaitingStore([.. Settings], Wait, keepsAssumed: true, memoryBytes: 1 << 17, archive: null);
+        var store = new AwaitingStore([.. Settings], Wait, keepsAssumed: true, memoryBytes: 1 << 16, archive: null);
         Add(store, "a", clock: 10, firstSlot: 1);
         Assert.False(store.TryTakeExpired(10 + Wait, out _));
         Assert.True(store.TryTakeExpired(10 + Wait + 1, out _));
@@ -137,7 +137,7 @@ public class AwaitingStoreTests
         store.Save(state);
         foreach (string[] settings in new[] { ["x"], Settings, new[] { "c", "new", "a" }, ["new", "a"] })
         {
-            store = new AwaitingStore([.. settings], Wait, keepsAssumed: false, memoryBytes: 1 << 17, null);
+            store = new AwaitingStore([.. settings], Wait, keepsAssumed: false, memoryBytes: 1 << 16, null);
             store.Load(state);
             Assert.True(store.TryFind("first"u8, 1, out var first));
             Assert.Equal(settings.Select(name => name switch { "a" => 1.25, "b" => 2.25, "c" => 3.25, _ => 0.5 }), store.LogOddsOf(first).ToArray());
@@ -160,7 +160,7 @@ public class AwaitingStoreTests
         store.Forget(1 + Wait + 1);
         Assert.False(store.TryFind("first"u8, 1, out _));
         store.Save(state);
-        var again = new AwaitingStore(["new", "a"], Wait, keepsAssumed: false, memoryBytes: 1 << 17, null);
+        var again = new AwaitingStore(["new", "a"], Wait, keepsAssumed: false, memoryBytes: 1 << 16, null);
         again.Load(state);
         Assert.Equal(4, again.Kept);
 
@@ -173,8 +173,8 @@ public class AwaitingStoreTests
 
     private static AwaitingStore InMemory() => Store(null);
 
-    // The archive takes what does not fit into two segments of 64 KiB.
-    private static AwaitingStore Store(IBlockArchive? archive, bool keepsAssumed = false) => new([.. Settings], Wait, keepsAssumed, memoryBytes: 1 << 17, archive);
+    // The archive takes what does not fit into four segments.
+    private static AwaitingStore Store(IBlockArchive? archive, bool keepsAssumed = false) => new([.. Settings], Wait, keepsAssumed, memoryBytes: 1 << 16, archive);
 
     // Every id has the same hash: the worst case, and the one that shows whether ids are compared.
     private static void Add(AwaitingStore store, string id, long clock, int firstSlot) => store.Add(

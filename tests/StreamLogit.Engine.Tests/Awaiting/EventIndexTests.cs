@@ -24,7 +24,7 @@ public class EventIndexTests
                 var places = model.TryGetValue(hash, out var known) ? known : model[hash] = [];
                 if (isAdd || places.Count == 0)
                 {
-                    var place = new EventPlace(next++, 8 * (next % 8192));
+                    var place = new EventPlace(next++, 8 * (next % 2048));
                     index.Add(hash, place);
                     places.Add(place);
                 }
