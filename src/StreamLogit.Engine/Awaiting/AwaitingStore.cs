@@ -294,7 +294,13 @@ internal sealed class AwaitingStore
     private void NoteNewMarks(int segment)
     {
         // Where nothing is ever saved, the segments that are gone leave again.
-        if (_newlyMarked.Count > 2 * _segments.Count + 1024) _newlyMarked.RemoveAll(number => number < _segments.First);
+        if (_newlyMarked.Count > 2 * _segments.Count + 16)
+        {
+            int kept = 0;
+            foreach (int number in CollectionsMarshal.AsSpan(_newlyMarked))
+                if (number >= _segments.First) _newlyMarked[kept++] = number;
+            _newlyMarked.RemoveRange(kept, _newlyMarked.Count - kept);
+        }
         _newlyMarked.Add(segment);
     }
 

@@ -63,7 +63,7 @@ internal sealed class Segment
         if (place < 0)
         {
             place = _marked++;
-            if (place == _marks.Length) Array.Resize(ref _marks, Math.Max(4, place + place / 2));
+            if (place == _marks.Length) Array.Resize(ref _marks, Math.Max(4, 2 * place));
             SetPlace(ordinal, place);
         }
         _marks[place] = new SegmentMark(ordinal, mark);

@@ -30,7 +30,7 @@ internal sealed class SegmentList
         First++;
 
         // Not each time: what is behind has to move.
-        if (First - _start > 1024 && (First - _start) * 2 > _segments.Count)
+        if (First - _start > Count + 16)
         {
             _segments.RemoveRange(0, First - _start);
             _start = First;
