@@ -155,6 +155,13 @@ public sealed class ScoringEngine
             [.. Enumerable.Range(0, _bank.SettingCount).Select(setting => new BlendWeight(_bank.Names[setting], _bank.BlendWeight(setting)))]);
     }
 
+    /// <summary>Goes on with a scan for the largest coefficients. Changes nothing.</summary>
+    /// <param name="scan">The scan.</param>
+    /// <param name="slots">How many slots are looked at now.</param>
+    /// <returns>What was found, when the scan has come to the end and begins again; else null.</returns>
+    public LargestCoefficients? Scan(CoefficientScan scan, int slots) =>
+        scan.Continue(_encoder, _bank, slots) ? scan.Take(_encoder, _version, _clock.Now, _bank.PublishedIntercept()) : null;
+
     /// <summary>Makes a model of coefficients that were fitted to the events that this engine has encoded.</summary>
     /// <param name="intercept">The intercept.</param>
     /// <param name="coefficient">Gives the coefficient of a slot.</param>

@@ -32,4 +32,7 @@ public sealed record LoopOptions
 
     /// <summary>The least wall time between two health snapshots. Default 250 ms.</summary>
     public TimeSpan HealthEvery { get; init; } = TimeSpan.FromMilliseconds(250);
+
+    /// <summary>How many of the largest coefficients are looked for, now and then. Default 0: none are.</summary>
+    public int LargestCoefficients { get; init; }
 }

@@ -35,12 +35,18 @@ public sealed class ScoringLoop
         _source = source;
         _conveyor = new Conveyor(options.Batches, () => new BatchInFlight(new RecordBatch(engine.Schema), engine.CreateScoreBatch()));
         _read = new ReadStage(source, new RecordDecoder(engine.Schema), _conveyor, options, time);
-        _score = new ScoreStage(engine, _conveyor, state?.Archive, options.HealthEvery, time);
+        _score = new ScoreStage(engine, _conveyor, state?.Archive, options, time);
         _write = new WriteStage(source, sinks, state, _conveyor);
     }
 
     /// <summary>The latest health snapshot. Any thread may ask.</summary>
     public HealthSnapshot Health => _score.Health;
+
+    /// <summary>The largest coefficients found last, or null before or where none are looked for. Any thread may ask.</summary>
+    public LargestCoefficients? Coefficients => _score.Coefficients;
+
+    /// <summary>Examples of the latest rejects. Any thread may ask.</summary>
+    public ImmutableArray<RejectExample> RejectExamples => _write.RejectExamples;
 
     /// <summary>How far it has come. Any thread may ask.</summary>
     public LoopProgress Progress => new(_write.Records, _source.Progress, _write.Commits);

@@ -61,6 +61,12 @@ public sealed class StreamRun : IDisposable
     /// <summary>The latest health snapshot. Any thread may ask.</summary>
     public HealthSnapshot Health => _loop.Health;
 
+    /// <summary>The largest coefficients found last, or null before or where none are looked for. Any thread may ask.</summary>
+    public LargestCoefficients? Coefficients => _loop.Coefficients;
+
+    /// <summary>Examples of the latest rejects of this run, a few for each reason. Any thread may ask.</summary>
+    public ImmutableArray<RejectExample> RejectExamples => _loop.RejectExamples;
+
     /// <summary>How far this run has come. Any thread may ask.</summary>
     public LoopProgress Progress => _loop.Progress;
 

@@ -128,6 +128,32 @@ public class ScoringEngineTests
         Assert.Equal(0, least);
     }
 
+    [Theory]
+    [InlineData(1)]
+    [InlineData(37)]
+    [InlineData(int.MaxValue)]
+    public void Scan_InPiecesOfAnySize_FindsTheLargestCoefficientsOfTheBlend(int slots)
+    {
+        var engine = new EngineRun(Rich()).Take(Stream(3000)).Engine;
+        var model = engine.Model();
+        var expected = model.Settings[0].Coefficients
+            .Select((c, i) => (c.Feature, Value: model.Settings.Select((setting, s) => model.Blend[s].Weight * setting.Coefficients[i].Value).Sum()))
+            .OrderByDescending(c => Math.Abs(c.Value)).Take(12).ToList();
+        var scan = new CoefficientScan(12);
+
+        for (int round = 0; round < 2; round++)
+        {
+            LargestCoefficients? found;
+            do found = engine.Scan(scan, slots);
+            while (found is null);
+
+            Assert.Equal((model.Version, model.Settings[0].Coefficients.Length), (found.Version, found.Used));
+            Assert.Equal(model.Settings.Select((setting, s) => model.Blend[s].Weight * setting.Intercept).Sum(), found.Intercept, 1e-12);
+            Assert.Equal(expected.Select(c => c.Feature), found.Coefficients.Select(c => c.Feature));
+            Assert.All(found.Coefficients.Zip(expected), pair => Assert.Equal(pair.Second.Value, pair.First.Value, 1e-12));
+        }
+    }
+
     private static EngineDefinition Rich() => Definitions.Of(
         X, new NumberFeature("y", NumberScale.Standard), new CategoryFeature(["c"]), new CategoryFeature(["c", "d"]), new TimeCycleFeature(3600_000_000, "1h"))
         with

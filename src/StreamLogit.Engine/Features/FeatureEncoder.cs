@@ -93,6 +93,17 @@ internal sealed class FeatureEncoder
             if (_ledger.IsUsed(slot)) yield return (slot, _names.Of(slot));
     }
 
+    /// <summary>Whether an event has used a slot.</summary>
+    public bool IsUsed(int slot) => _ledger.IsUsed(slot);
+
+    /// <summary>The name of a slot.</summary>
+    public string NameOf(int slot)
+    {
+        if (slot < FirstDenseSlot) return _names.Of(slot);
+        int end = FirstDenseSlot;
+        return _features.First(feature => slot < (end += feature.DenseSlots)).NameOf(slot);
+    }
+
     /// <summary>What the features have learned about the scales of their values.</summary>
     public IEnumerable<FittedScale> Scales()
     {

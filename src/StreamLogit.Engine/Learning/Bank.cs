@@ -135,6 +135,16 @@ internal sealed class Bank
         _warmStart?.AddTo(in x, coefficients);
     }
 
+    /// <summary>The intercept of what is published.</summary>
+    public double PublishedIntercept()
+    {
+        if (_publishedSetting >= 0) return Intercept(_publishedSetting);
+        _blend.Weights(_settingWeights);
+        double sum = 0;
+        for (int setting = 0; setting < SettingCount; setting++) sum += _settingWeights[setting] * Intercept(setting);
+        return sum;
+    }
+
     /// <summary>The intercept of a setting.</summary>
     public double Intercept(int setting) => Find(setting, out int lane).Intercept(lane) + (_warmStart?.Intercept ?? 0);
 

@@ -7,6 +7,7 @@ namespace StreamLogit.Pipeline.Stages;
 /// <summary>Writes what came of batches, and commits: first the outputs are made durable, then the state that counts them.</summary>
 internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink> sinks, StateStore? state, Conveyor conveyor)
 {
+    private readonly RecentRejects _rejects = new();
     private long _records;
     private long _commits;
 
@@ -15,6 +16,9 @@ internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink
 
     /// <summary>Commits made. Any thread may ask.</summary>
     public long Commits => Volatile.Read(ref _commits);
+
+    /// <summary>Examples of the latest rejects. Any thread may ask.</summary>
+    public ImmutableArray<RejectExample> RejectExamples => _rejects.Examples;
 
     public async Task RunAsync()
     {
@@ -35,6 +39,7 @@ internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink
     {
         if (batch.Records.Count == 0 && batch.Records.Rejects.Count == 0) return;
         foreach (var sink in sinks) sink.Write(batch.Records, batch.Scores);
+        _rejects.Add(batch.Records);
         Volatile.Write(ref _records, _records + batch.Records.Count);
     }
 

@@ -7,6 +7,7 @@ using StreamLogit.Pipeline.Options.Kafka;
 using StreamLogit.Worker.Hosting;
 using StreamLogit.Worker.Output;
 using StreamLogit.Worker.Web.Access;
+using StreamLogit.Worker.Web.Views;
 
 namespace StreamLogit.Worker.Commands;
 
@@ -35,9 +36,10 @@ internal static class RunCommand
         foreach (string caution in Cautions.Lines) Console.Error.WriteLine($"Caution: {caution}");
 
         var page = definition.Listen is { } listen ? PageAccess.Read(listen) : null;
+        var options = new LoopOptions { Speed = speed, LargestCoefficients = page is null ? 0 : CoefficientTables.Kept };
         using var log = WorkerLog.Create();
         var ends = KafkaEnds.Open(definition, TimeProvider.System, log.CreateLogger("StreamLogit.Kafka"));
-        using var run = new StreamRun(definition, ends, new LoopOptions { Speed = speed }, TimeProvider.System);
+        using var run = new StreamRun(definition, ends, options, TimeProvider.System);
         await WorkProgress.ShowAsync(
             $"scoring {definition.Engine.Stream}", "records",
             () => (run.Progress.Source.Share(), run.Progress.Records),

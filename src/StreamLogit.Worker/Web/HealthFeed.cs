@@ -16,7 +16,7 @@ internal sealed class HealthFeed(StreamRun run, TimeProvider time, IHostApplicat
     private static readonly TimeSpan BeatEvery = TimeSpan.FromSeconds(15);
 
     private volatile TaskCompletionSource _next = Signal();
-    private volatile HealthFrame _frame = new(1, run.Engine.Definition, run.Health, run.Progress);
+    private volatile HealthFrame _frame = new(1, run.Engine.Definition, MomentOf(run, CoefficientTrail.Empty));
 
     /// <summary>The latest frame.</summary>
     public HealthFrame Frame => _frame;
@@ -46,12 +46,14 @@ internal sealed class HealthFeed(StreamRun run, TimeProvider time, IHostApplicat
         using var timer = new PeriodicTimer(FrameEvery, time);
         while (await timer.WaitForNextTickAsync(stoppingToken))
         {
-            var (health, progress) = (run.Health, run.Progress);
-            if (ReferenceEquals(health, _frame.Health) && progress == _frame.Progress) continue;
-            _frame = new HealthFrame(_frame.Number + 1, run.Engine.Definition, health, progress);
+            var moment = MomentOf(run, _frame.Moment.Coefficients);
+            if (moment.IsSame(_frame.Moment)) continue;
+            _frame = new HealthFrame(_frame.Number + 1, run.Engine.Definition, moment);
             Interlocked.Exchange(ref _next, Signal()).SetResult();
         }
     }
+
+    private static HealthMoment MomentOf(StreamRun run, CoefficientTrail trail) => new(run.Health, run.Progress, run.RejectExamples, trail.With(run.Coefficients));
 
     private async Task<bool> WaitAsync(Task next, CancellationToken stop)
     {

@@ -1,7 +1,6 @@
 using System.Globalization;
 using System.Security.Cryptography;
 using System.Text;
-using Microsoft.AspNetCore.WebUtilities;
 using StreamLogit.Pipeline.Options;
 
 namespace StreamLogit.Worker.Web.Access;
@@ -16,6 +15,7 @@ internal sealed class AccessKey
     public static readonly TimeSpan SessionLength = TimeSpan.FromHours(12);
 
     private const int LeastCharacters = 16;
+    private const int LongestSession = 100;
 
     private readonly byte[] _hash;
     private readonly byte[] _sessionSecret = RandomNumberGenerator.GetBytes(32);
@@ -50,20 +50,16 @@ internal sealed class AccessKey
     public string CreateSession(DateTimeOffset now)
     {
         string end = (now + SessionLength).ToUnixTimeSeconds().ToString(CultureInfo.InvariantCulture);
-        return $"{end}.{WebEncoders.Base64UrlEncode(Sign(end))}";
+        return $"{end}.{Sign(end)}";
     }
 
     /// <summary>Whether this is a session of this process that has not ended.</summary>
     public bool IsSession(string? session, DateTimeOffset now)
     {
-        if (session?.Split('.') is not [var end, var signature] || signature.Length > 64) return false;
-        Span<byte> offered = stackalloc byte[32];
-        bool isRight = Convert(signature, offered) && CryptographicOperations.FixedTimeEquals(offered, Sign(end));
+        if (session is null || session.Length > LongestSession || session.Split('.') is not [var end, var signature]) return false;
+        bool isRight = CryptographicOperations.FixedTimeEquals(Encoding.UTF8.GetBytes(signature), Encoding.UTF8.GetBytes(Sign(end)));
         return isRight && long.TryParse(end, NumberStyles.None, CultureInfo.InvariantCulture, out long seconds) && now.ToUnixTimeSeconds() < seconds;
     }
-
-    private static bool Convert(string base64Url, Span<byte> bytes) =>
-        System.Buffers.Text.Base64Url.TryDecodeFromChars(base64Url, bytes, out int written) && written == bytes.Length;
 
     private static AccessKey Checked(string text, string place)
     {
@@ -73,7 +69,7 @@ internal sealed class AccessKey
         return new AccessKey(key);
     }
 
-    private byte[] Sign(string text) => HMACSHA256.HashData(_sessionSecret, Encoding.UTF8.GetBytes(text));
+    private string Sign(string text) => Convert.ToHexStringLower(HMACSHA256.HashData(_sessionSecret, Encoding.UTF8.GetBytes(text)));
 
     private static byte[] Hash(string key) => SHA256.HashData(Encoding.UTF8.GetBytes(key));
 }

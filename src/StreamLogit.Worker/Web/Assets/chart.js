@@ -65,7 +65,7 @@ export class Chart {
       tzDate: (seconds) => uPlot.tzDate(new Date(seconds * 1000), "Etc/UTC"),
       legend: { show: false },
       cursor: { y: false, drag: { setScale: false, x: false, y: false }, points: { size: 7 } },
-      scales: { x: this.x === "time" ? { time: true } : { time: false, distr: this.x === "log" ? 3 : 1 }, y: { range: this.range ?? yRange } },
+      scales: { x: this.x === "time" ? { time: true } : { time: false, distr: 3, range: (plot, low, high) => (low < high ? [low, high] : [low / 2, low * 2]) }, y: { range: this.range ?? yRange } },
       axes: [{ ...axis, ...(this.xValues ?? { space: 70, values: timeTicks }) }, { ...axis, size: 62, values: this.values }],
       series: [{}, ...series],
       bands,
@@ -105,7 +105,7 @@ export class Chart {
     const last = this.data[0].length - 1;
     const point = index ?? last;
     if (point < 0 || point > last) return;
-    const text = this.readout(point, this.data);
+    const text = this.readout(point, this.data) + (point === last && this.x === "time" ? " so far" : "");
     if (this.text.textContent !== text) this.text.textContent = text;
   }
 

@@ -12,22 +12,26 @@ const column = (table, key) => {
 };
 
 class Panel {
-  constructor({ title, text, wide, table, body, tableOpen = false, render }) {
+  // span: of how many of the twelve columns. isTable: the table is what it shows, and not hidden behind a button.
+  constructor({ title, text, span = 6, table, body, isTable = false, render }) {
     this.table = table;
     this.heading = el("h2", { id: `panel-${table}` }, title);
     this.body = el("div", { class: "body" }, ...(body ?? []));
     this.full = new Table(title, render);
-    this.element = el("section", { class: wide ? "panel wide" : "panel", "aria-labelledby": `panel-${table}` },
-      this.heading, text ? el("p", {}, text) : null, this.body, this.more(title, tableOpen));
+    this.scroll = el("div", { class: "scroll", id: `table-${table}`, tabindex: 0, role: "region", "aria-label": `${title}, as a table`, hidden: !isTable }, this.full.element);
+    if (isTable) this.body.append(this.scroll);
+    this.files = this.more(title, isTable);
+    this.element = el("section", { class: `panel span-${span}`, "aria-labelledby": `panel-${table}` }, this.heading, text ? el("p", {}, text) : null, this.body, this.files);
   }
 
-  more(title, open) {
-    this.scroll = el("div", { class: "scroll", id: `table-${this.table}`, tabindex: 0, role: "region", "aria-label": `${title}, as a table`, hidden: !open }, this.full.element);
+  more(title, isTable) {
     this.csv = el("a", { download: true }, "CSV");
     this.json = el("a", {}, "JSON");
     this.csv.setAttribute("aria-label", `${title}: CSV`);
     this.json.setAttribute("aria-label", `${title}: JSON`);
-    this.button = el("button", { type: "button", "aria-expanded": String(open), "aria-controls": this.scroll.id }, open ? "Hide the table" : "Show the table");
+    const links = el("span", { class: "files" }, this.csv, " ", this.json);
+    if (isTable) return el("div", { class: "more" }, links);
+    this.button = el("button", { type: "button", "aria-expanded": "false", "aria-controls": this.scroll.id }, "Show the table");
     this.button.append(el("span", { class: "unseen" }, ` of ${title}`));
     this.button.addEventListener("click", () => {
       this.scroll.hidden = !this.scroll.hidden;
@@ -35,7 +39,7 @@ class Panel {
       this.button.firstChild.textContent = this.scroll.hidden ? "Show the table" : "Hide the table";
       if (!this.scroll.hidden && this.last) this.full.update(this.last);
     });
-    return el("div", { class: "more" }, this.button, el("span", { class: "files" }, this.csv, " ", this.json), this.scroll);
+    return el("div", { class: "more" }, this.button, links, this.scroll);
   }
 
   update(view, query) {
@@ -64,7 +68,7 @@ class PromisedPanel extends Panel {
       readout: (point, data) => `${time(data[0][point] * 1000)}: promised ${cell("amount", data[3][point])} (80 % range ${cell("amount", data[1][point])} to ${cell("amount", data[2][point])}), ${cell("amount", data[4][point])} came`,
     });
     super({
-      title: "Promised and happened", wide: true, table: "promised", body: [chart.element],
+      title: "Promised and happened", span: 12, table: "promised", body: [chart.element],
       text: "The bad outcomes that the published probabilities add up to, counted when the labels came, and how many there were.",
     });
     this.chart = chart;
@@ -80,6 +84,7 @@ class LogLossPanel extends Panel {
   constructor() {
     const chart = new Chart({
       label: "Log-loss over time, against the base rate",
+      height: 310,
       series: [
         { label: "published", colour: "came" },
         { label: "base rate", colour: "promised", dash: [6, 4] },
@@ -122,7 +127,7 @@ class DriftPanel extends Panel {
     list.append(el("thead", {}, el("tr", {}, el("th", { scope: "col", class: "text" }, "feature"), el("th", { scope: "col" }, "index"), el("th", { scope: "col", class: "text" }, "from 0 to 0.5"))), body);
     super({
       title: "What moved", table: "drift", body: [empty, list],
-      text: "Population stability index against the reference period, ranked. Below the mark chance alone explains it; by convention 0.1 is some and 0.25 is much.",
+      text: "Population stability index against the reference period, ranked. Ranked by how far it lies beyond the mark, up to which chance explains it; by convention 0.1 is some and 0.25 is much.",
     });
     this.list = list;
     this.rows = body;
@@ -162,7 +167,7 @@ class DelayPanel extends Panel {
       series: [{ label: "labels that had come", colour: "came" }],
       values: (plot, ticks) => ticks.map((tick) => share(tick)),
       range: () => [0, 1],
-      xValues: { splits: delayTicks, values: (plot, ticks) => ticks.map((tick) => duration(tick)) },
+      xValues: { splits: delayTicks, filter: (plot, ticks) => ticks, values: (plot, ticks) => ticks.map((tick) => duration(tick)) },
       readout: (point, data) => `${share(data[1][point])} within ${duration(data[0][point])}`,
     });
     super({
@@ -219,35 +224,68 @@ class BlendPanel extends Panel {
   }
 
   draw(view, table) {
-    const names = table.columns.slice(1).map((one) => one.title);
-    if (names.join("\n") !== this.names.join("\n")) {
-      this.names = names;
-      const dashes = [null, [8, 4], [2, 3], [10, 3, 2, 3], [5, 5], [1, 4], [12, 4]];
-      this.chart.data = null;
-      this.chart.setSeries(names.map((label, i) => ({ label, colour: `c${i + 1}`, dash: dashes[i] })));
-    }
-    this.chart.update([column(table, "from").map(seconds), ...table.columns.slice(1).map((one) => column(table, one.key))]);
+    showLines(this, table);
+  }
+}
+
+// A line for every column behind the first. Dashes tell lines apart where colours do not.
+function showLines(panel, table) {
+  const names = table.columns.slice(1).map((one) => one.title);
+  if (names.join("\n") !== panel.names.join("\n")) {
+    panel.names = names;
+    const dashes = [null, [8, 4], [2, 3], [10, 3, 2, 3], [5, 5], [1, 4], [12, 4]];
+    panel.chart.data = null;
+    panel.chart.setSeries(names.map((label, i) => ({ label, colour: `c${i + 1}`, dash: dashes[i] })));
+  }
+  panel.chart.update([table.rows.map((row) => seconds(row[0])), ...names.map((_, i) => table.rows.map((row) => row[i + 1]))]);
+}
+
+class CoefficientPanel extends Panel {
+  constructor() {
+    const chart = new Chart({
+      label: "The largest coefficients over time",
+      series: [],
+      range: (plot, low, high) => [Math.min(0, low ?? 0), Math.max(0, high ?? 0) || 1].map((end) => end * 1.06),
+      readout: (point, data) => `${time(data[0][point] * 1000)}: ${this.names.map((name, i) => `${name} ${cell("figure", data[i + 1][point])}`).join("; ")}`,
+    });
+    super({
+      title: "The largest coefficients and how they moved", table: "coefficient-moves", body: [chart.element],
+      text: "What a value adds to the log-odds of a score. Since this worker started; of what is published.",
+    });
+    this.chart = chart;
+    this.names = [];
+  }
+
+  draw(view, table) {
+    showLines(this, table);
   }
 }
 
 class TablePanel extends Panel {
   constructor(options) {
-    super({ ...options, tableOpen: true });
-    this.none = options.none;
-    this.empty = el("p", { class: "empty", hidden: true }, options.none ?? "");
+    super({ ...options, isTable: true });
+    this.empty = el("p", { class: "none", hidden: true }, options.none ?? "");
     this.body.append(this.empty);
   }
 
   draw(view, table) {
     const isEmpty = table.rows.length === 0;
     this.empty.hidden = !isEmpty;
-    this.element.querySelector(".more").hidden = isEmpty;
+    this.scroll.hidden = isEmpty;
+    this.files.hidden = isEmpty;
+    if (!isEmpty) this.full.update(table);
   }
 }
 
 const flag = (place, value) => {
   setText(place, value);
   place.className = `text flag ${value}`;
+};
+
+// A number of outcomes that came, marked where it is more than three standard deviations off; the 80 % range is 1.28 of them to each side.
+const strays = (place, value, [, , promised, , high]) => {
+  setText(place, cell("amount", value));
+  place.className = Math.abs(value - promised) > (3 / 1.28) * (high - promised) + 0.5 ? "off" : "";
 };
 
 export function createPanels(choose) {
@@ -265,6 +303,7 @@ export function createPanels(choose) {
     new PromisedPanel(),
     new LogLossPanel(),
     new ReliabilityPanel(),
+    new TablePanel({ title: "Slices", span: 12, table: "slices", none: "The definition names no slices.", render: { slice, came: strays }, text: "The same figures for the events that have one value of a field. A diamond: three standard deviations off or more." }),
     new DriftPanel(),
     new TablePanel({
       title: "Changes found", table: "changes", none: "The detectors found no change.",
@@ -274,10 +313,15 @@ export function createPanels(choose) {
     new StreamPanel(),
     new BlendPanel(),
     new TablePanel({ title: "The bank: settings", table: "settings", none: "No labels yet.", text: "How each setting would have done, had it been published alone." }),
-    new TablePanel({ title: "Alarms", wide: true, table: "alarms", none: "The definition has no alarms.", render: { state: flag } }),
-    new TablePanel({ title: "When alarms were raised", wide: true, table: "alarm-changes", none: "No alarm was ever raised.", render: { state: flag } }),
-    new TablePanel({ title: "Slices", wide: true, table: "slices", none: "The definition names no slices.", render: { slice } }),
-    new TablePanel({ title: "All windows", wide: true, table: "windows" }),
-    new TablePanel({ title: "Rejects", wide: true, table: "rejects", none: "No record was rejected." }),
+    new TablePanel({ title: "Alarms", span: 12, table: "alarms", none: "The definition has no alarms.", render: { state: flag } }),
+    new TablePanel({ title: "When alarms were raised", span: 12, table: "alarm-changes", none: "No alarm was ever raised.", render: { state: flag } }),
+    new TablePanel({ title: "Rejects", span: 4, table: "rejects", none: "No record was rejected." }),
+    new TablePanel({
+      title: "Examples of rejects", span: 8, table: "reject-examples", none: "No record was rejected since this worker started.",
+      text: "The latest of every reason, since this worker started; the first 400 bytes.",
+    }),
+    new CoefficientPanel(),
+    new TablePanel({ title: "Coefficients", table: "coefficients", none: "Nothing was learned yet.", text: "The largest now, and what they were when the window began or this worker started." }),
+    new TablePanel({ title: "All windows", span: 12, table: "windows", render: { came: strays } }),
   ];
 }

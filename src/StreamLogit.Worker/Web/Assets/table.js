@@ -33,7 +33,7 @@ export class Table {
   addRow(columns) {
     const line = this.body.insertRow();
     columns.forEach((column, index) => {
-      const classes = [column.kind === "text" ? "text" : null, column.kind === "time" ? "plain" : null, column.key === "sentence" ? "long" : null];
+      const classes = [column.kind === "text" ? "text" : null, column.kind === "time" ? "plain" : null, column.key === "sentence" || column.key === "record" ? "long" : null, column.key === "record" ? "raw" : null];
       line.append(el(index === 0 ? "th" : "td", { scope: index === 0 ? "row" : null, class: classes.filter(Boolean).join(" ") || null }));
     });
     return line;

@@ -70,7 +70,8 @@ internal static class CurveTables
         bool hasOthers = settings.Length > leading.Length;
         var columns = ImmutableArray.CreateBuilder<DataColumn>();
         columns.Add(new("from", "from", ColumnKind.Time));
-        foreach (int i in leading) columns.Add(new(settings[i].Name, settings[i].Name, ColumnKind.Share));
+        var names = SettingNames.Shorten([.. settings.Select(setting => setting.Name)]);
+        foreach (int i in leading) columns.Add(new(settings[i].Name, names[i], ColumnKind.Share));
         if (hasOthers) columns.Add(new("others", "all others", ColumnKind.Share));
         var table = new DataTable("blend", "Weights in the blend", columns.ToImmutable());
         foreach (var point in curve)

@@ -1,4 +1,6 @@
+using System.Globalization;
 using StreamLogit.Engine.Health;
+using StreamLogit.Engine.Health.Metrics;
 
 namespace StreamLogit.Worker.Web.Views;
 
@@ -17,9 +19,13 @@ internal static class Facts
         var calibration = figures.Scores.Calibration;
         yield return new Fact("Calibration slope", Wording.Ratio(calibration.Slope), $"± {Wording.Ratio(TwoSided95 * calibration.SlopeStandardError)}; 1 is right");
         var alerts = figures.Alerts;
-        yield return new Fact("Alerts that were bad", Wording.Share(alerts.Precision), $"of {Wording.Count(alerts.Count)}; 95 % {Wording.Share(alerts.PrecisionInterval.Low)} to {Wording.Share(alerts.PrecisionInterval.High)}");
-        yield return new Fact("Bad that were alerts", Wording.Share(alerts.Recall), $"95 % {Wording.Share(alerts.RecallInterval.Low)} to {Wording.Share(alerts.RecallInterval.High)}");
+        yield return new Fact("Alerts that were bad", Wording.Share(alerts.Precision), $"of {Wording.Count(alerts.Count)}; {Interval(alerts.PrecisionInterval)}");
+        yield return new Fact("Bad that were alerts", Wording.Share(alerts.Recall), Interval(alerts.RecallInterval));
         if (selection.Stream is { } stream)
             yield return new Fact("Events", Wording.Count(stream.Events), $"{Wording.Share(stream.AlertRate)} alerts");
     }
+
+    private static string Interval(Interval shares) => double.IsFinite(shares.Low)
+        ? string.Create(CultureInfo.InvariantCulture, $"95 % {shares.Low * 100:0.#} to {shares.High * 100:0.#} %")
+        : "no interval yet";
 }

@@ -102,12 +102,12 @@ internal static class FigureTables
         new("low80", "80 % from", ColumnKind.Amount),
         new("high80", "80 % to", ColumnKind.Amount),
         new("came", "came", ColumnKind.Amount),
-        new("logLoss", "log-loss (nats)", ColumnKind.Figure),
-        new("logLossRatio", "over base rate", ColumnKind.Figure),
-        new("brier", "Brier score", ColumnKind.Figure),
+        new("logLoss", "log-loss", ColumnKind.Figure),
+        new("logLossRatio", "to base rate’s", ColumnKind.Figure),
+        new("brier", "Brier", ColumnKind.Figure),
         new("auc", "AUC", ColumnKind.Figure),
-        new("calibrationIntercept", "calibration intercept", ColumnKind.Figure),
-        new("calibrationSlope", "calibration slope", ColumnKind.Figure),
+        new("calibrationIntercept", "intercept", ColumnKind.Figure),
+        new("calibrationSlope", "slope", ColumnKind.Figure),
         new("precision", "precision", ColumnKind.Share),
         new("recall", "recall", ColumnKind.Share));
 

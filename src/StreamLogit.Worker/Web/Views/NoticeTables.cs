@@ -1,4 +1,5 @@
 using StreamLogit.Engine.Health;
+using StreamLogit.Pipeline;
 
 namespace StreamLogit.Worker.Web.Views;
 
@@ -46,6 +47,18 @@ internal static class NoticeTables
             new("sentence", "in words", ColumnKind.Text));
         foreach (var change in health.Changes)
             table.Add(DataTable.Time(change.AtMicroseconds), DataTable.Time(change.SinceMicroseconds), change.Detector, change.Before, change.After, change.Sentence);
+        return table;
+    }
+
+    public static DataTable RejectExamples(IEnumerable<RejectExample> examples)
+    {
+        var table = new DataTable(
+            "reject-examples", "Examples of rejects",
+            new("reason", "reason", ColumnKind.Text),
+            new("position", "where", ColumnKind.Text),
+            new("detail", "what is wrong", ColumnKind.Text),
+            new("record", "the record", ColumnKind.Text));
+        foreach (var example in examples) table.Add(example.Reason, example.Position, example.Detail, example.Record);
         return table;
     }
 

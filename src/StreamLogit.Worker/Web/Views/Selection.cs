@@ -6,6 +6,8 @@ using StreamLogit.Engine.Health.Drift;
 namespace StreamLogit.Worker.Web.Views;
 
 /// <summary>The figures that a choice selects from a snapshot.</summary>
+/// <param name="Window">The window's name in links.</param>
+/// <param name="Slice">The slice's name in links, or empty for the whole stream.</param>
 /// <param name="Words">The window in words that stand behind figures: <c>in the last 7 days</c>.</param>
 /// <param name="Figures">The figures of the labels.</param>
 /// <param name="Stream">What happened on the stream, or null where that is not told apart.</param>
@@ -14,7 +16,7 @@ namespace StreamLogit.Worker.Web.Views;
 /// <param name="DriftWords">Over which window.</param>
 /// <param name="History">How the figures went over time.</param>
 internal sealed record Selection(
-    string Words, HealthFigures Figures, StreamFigures? Stream, ImmutableArray<SettingFigures> Settings, DriftFigures? Drift, string DriftWords, HealthHistory History)
+    string Window, string Slice, string Words, HealthFigures Figures, StreamFigures? Stream, ImmutableArray<SettingFigures> Settings, DriftFigures? Drift, string DriftWords, HealthHistory History)
 {
     public static Selection Of(HealthSnapshot health, HealthOptions options, ViewChoice choice)
     {
@@ -31,11 +33,11 @@ internal sealed record Selection(
         if (slice is not null)
         {
             var ofSlice = window is null ? null : slice.Windows.FirstOrDefault(w => w.Name == window.Name);
-            return new Selection(words, ofSlice?.Figures ?? slice.Total, null, health.Settings, ofDrift?.Drift, driftWords, slice.History);
+            return new Selection(choice.Window, choice.Slice, words, ofSlice?.Figures ?? slice.Total, null, health.Settings, ofDrift?.Drift, driftWords, slice.History);
         }
         if (choice.Window == ViewChoice.LastLabels)
-            return new Selection(words, health.Windows[^1].Figures, null, health.Settings, ofDrift?.Drift, driftWords, health.History);
+            return new Selection(choice.Window, "", words, health.Windows[^1].Figures, null, health.Settings, ofDrift?.Drift, driftWords, health.History);
         return new Selection(
-            words, ofStream?.Figures ?? health.Total, ofStream?.Stream ?? health.Stream, ofStream?.Settings ?? health.Settings, ofDrift?.Drift, driftWords, health.History);
+            choice.Window, "", words, ofStream?.Figures ?? health.Total, ofStream?.Stream ?? health.Stream, ofStream?.Settings ?? health.Settings, ofDrift?.Drift, driftWords, health.History);
     }
 }

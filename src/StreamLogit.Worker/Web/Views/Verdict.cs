@@ -8,6 +8,9 @@ namespace StreamLogit.Worker.Web.Views;
 /// <param name="Sentence">Its numbers.</param>
 internal sealed record Verdict(Standing Standing, string Title, string Sentence)
 {
+    /// <summary>What chance has to do with it, or null where that needs no words.</summary>
+    public string? Note { get; private init; }
+
     // From a standard deviation of about two outcomes on, the ranges of the normal distribution mean something.
     private const double EnoughVariance = 5;
     private const double EnoughSurplus = 10;
@@ -29,7 +32,7 @@ internal sealed record Verdict(Standing Standing, string Title, string Sentence)
                 Standing.Broken, "The scores do harm",
                 $"of {Wording.Of(figures.Count, "label", "labels")} {window} their log-loss is {Wording.Figure(figures.LogLoss)}, that of the mere base rate {Wording.Figure(figures.BaseRateLogLoss)}.");
         }
-        return new Verdict(shown.Standing, shown.Title, shown.Sentence(window));
+        return new Verdict(shown.Standing, shown.Title, shown.Sentence(window)) { Note = shown.Note };
     }
 
     /// <summary>Whether even the lower end of the log-loss's 95 % interval is above the base rate's.</summary>
@@ -55,15 +58,14 @@ internal sealed record Verdict(Standing Standing, string Title, string Sentence)
             _ => Promised.Came > Promised.Expected ? "Probabilities promise too little" : "Probabilities promise too much",
         };
 
-        public string Sentence(string window)
+        public string? Note => Standing switch
         {
-            string numbers = $"of {Subject} {window} promised {Wording.Amount(Promised.Expected)} bad, {Wording.Amount(Promised.Came)} came (80 % range {Wording.Range(Promised.Range80)}).";
-            return Standing switch
-            {
-                Standing.Doubtful => numbers + " Chance alone leaves this range once in five times.",
-                Standing.Broken => numbers + " Chance alone strays so far less than once in twenty times.",
-                _ => numbers,
-            };
-        }
+            Standing.Doubtful => "Chance alone leaves the 80 % range once in five times.",
+            Standing.Broken => "Chance alone strays so far less than once in twenty times.",
+            _ => null,
+        };
+
+        public string Sentence(string window) =>
+            $"of {Subject} {window} promised {Wording.Amount(Promised.Expected)} bad, {Wording.Amount(Promised.Came)} came (80 % range {Wording.Range(Promised.Range80)}).";
     }
 }

@@ -16,7 +16,7 @@ internal sealed record ViewChoice(string Window, string Slice, PastSpan Past, st
     /// <summary>All labels since the stream began.</summary>
     public const string All = "all";
 
-    private const double EnoughPromised = 10;
+    private const double EnoughPromised = 30;
     private const int WindowsPerPast = 6;
 
     /// <summary>Where a query leaves out the window, it is the shortest one that promised enough bad outcomes to be judged by.</summary>
