@@ -26,4 +26,31 @@ internal static partial class LogMessages
 
     [LoggerMessage(7, LogLevel.Information, "The health page is at {Address}")]
     public static partial void Listens(this ILogger logger, string address);
+
+    [LoggerMessage(20, LogLevel.Warning, "Stream {Stream}: alarm '{Alarm}' is raised. {Sentence}")]
+    public static partial void AlarmRaised(this ILogger logger, string stream, string alarm, string sentence);
+
+    [LoggerMessage(21, LogLevel.Information, "Stream {Stream}: alarm '{Alarm}' is quiet again. {Sentence}")]
+    public static partial void AlarmQuiet(this ILogger logger, string stream, string alarm, string sentence);
+
+    [LoggerMessage(22, LogLevel.Warning, "Stream {Stream}: {Changes} changes of alarms came too fast to be told one by one; the state of every alarm is right")]
+    public static partial void ChangesPassed(this ILogger logger, string stream, long changes);
+
+    [LoggerMessage(23, LogLevel.Warning, "The webhook does not take a change of an alarm: {Reason}. Attempt {Attempt} failed; the next follows in {Delay}")]
+    public static partial void NoticeRetried(this ILogger logger, int attempt, string reason, TimeSpan delay);
+
+    [LoggerMessage(24, LogLevel.Error, "The webhook refuses change {Number} of alarm '{Alarm}' with status {Status}; it is not sent again")]
+    public static partial void NoticeRefused(this ILogger logger, long number, string alarm, int status);
+
+    [LoggerMessage(25, LogLevel.Error, "Change {Number} of alarm '{Alarm}' was not sent to the webhook, which was out of order for too long: {Reason}")]
+    public static partial void NoticeGivenUp(this ILogger logger, long number, string alarm, string reason);
+
+    [LoggerMessage(26, LogLevel.Error, "Change {Number} of alarm '{Alarm}' was not sent to the webhook: too many wait already")]
+    public static partial void NoticeDropped(this ILogger logger, long number, string alarm);
+
+    [LoggerMessage(27, LogLevel.Warning, "{Changes} changes of alarms are still to be sent to the webhook; the next run sends them")]
+    public static partial void NoticesLeft(this ILogger logger, int changes);
+
+    [LoggerMessage(28, LogLevel.Warning, "What was sent to the webhook could not be noted, so it may be sent once more: {Reason}")]
+    public static partial void MarkNotWritten(this ILogger logger, string reason);
 }

@@ -34,6 +34,9 @@ public sealed record StreamDefinition
     /// <summary>Where the worker serves its page, or null where it serves none.</summary>
     public ListenOptions? Listen { get; init; }
 
+    /// <summary>Where changes of alarms are sent, or null where they are only logged and shown.</summary>
+    public WebhookOptions? Webhook { get; init; }
+
     /// <summary>The definition as it was used, overrides included, without comments: JSON, indented.</summary>
     public required string EffectiveJson { get; init; }
 }

@@ -115,6 +115,18 @@ internal static class DefinitionInWords
         return FormattableString.Invariant($"a coefficient for every run of {string.Join(", ", runs)}; at most {text.Most} different runs of each length");
     }
 
+    private static IEnumerable<string> Health(HealthOptions health)
+    {
+        yield return FormattableString.Invariant($"over {string.Join(", ", health.Windows.Select(window => window.Name))} and the last {health.LastLabels} labels");
+        if (!health.Slices.IsEmpty) yield return $"told apart by {string.Join(", ", health.Slices)}";
+        foreach (var alarm in health.Alarms)
+        {
+            string wait = alarm.ForMicroseconds > 0 ? $" for {DurationText.Format(alarm.ForMicroseconds)}" : "";
+            yield return FormattableString.Invariant(
+                $"alarm: {alarm.Name}; raised {(alarm.IsAbove ? "above" : "below")} {alarm.Bound} over {alarm.Window.Name}{wait}, from {alarm.Minimum} on");
+        }
+    }
+
     private static IEnumerable<string> Files(StreamDefinition definition)
     {
         if (definition.Source is FileSourceOptions source)
@@ -125,6 +137,7 @@ internal static class DefinitionInWords
         yield return definition.Rejects is { } rejects ? $"rejects to {rejects.InWords}" : "rejects are only counted";
         if (definition.Kafka is { } kafka) yield return $"topics of the Kafka cluster at {kafka.Servers}";
         if (definition.Recording is { } recording) yield return $"recording in {recording.Folder}, files of {FigureText.Bytes(recording.MaximumBytes)}";
+        if (definition.Webhook is { } webhook) yield return $"changes of alarms to {webhook.Url.GetLeftPart(UriPartial.Path)}, signed";
         if (definition.State is { } state)
         {
             yield return FormattableString.Invariant(

@@ -6,7 +6,6 @@ using StreamLogit.Pipeline.Options;
 using StreamLogit.Pipeline.Options.Kafka;
 using StreamLogit.Worker.Hosting;
 using StreamLogit.Worker.Output;
-using StreamLogit.Worker.Web.Access;
 using StreamLogit.Worker.Web.Views;
 
 namespace StreamLogit.Worker.Commands;
@@ -35,8 +34,8 @@ internal static class RunCommand
         if (untilEnd) definition = definition with { Source = UntilEnd(definition.Source) };
         foreach (string caution in Cautions.Lines) Console.Error.WriteLine($"Caution: {caution}");
 
-        var page = definition.Listen is { } listen ? PageAccess.Read(listen) : null;
-        var options = new LoopOptions { Speed = speed, LargestCoefficients = page is null ? 0 : CoefficientTables.Kept };
+        var setup = WorkerSetup.Read(definition);
+        var options = new LoopOptions { Speed = speed, LargestCoefficients = setup.Page is null ? 0 : CoefficientTables.Kept };
         using var log = WorkerLog.Create();
         var ends = KafkaEnds.Open(definition, TimeProvider.System, log.CreateLogger("StreamLogit.Kafka"));
         using var run = new StreamRun(definition, ends, options, TimeProvider.System);
@@ -45,7 +44,7 @@ internal static class RunCommand
             () => (run.Progress.Source.Share(), run.Progress.Records),
             async () =>
             {
-                await WorkerHost.RunAsync(run, page);
+                await WorkerHost.RunAsync(run, setup);
                 return true;
             });
         HealthTables.Write(run.Health, Terminal.Output);

@@ -71,6 +71,7 @@ public sealed partial class ExampleTests
         foreach (string rule in SchemaFile.Choices(entries)) tables.Add($"Update rule `{rule}`", $"$defs/{rule}");
         tables.Add("Alarms", "$defs/alarm");
         tables.Add("`listen`", "$defs/listen");
+        tables.Add("`webhook`", "$defs/webhook");
         foreach (var (section, schema) in TopicSections) tables.Add($"`{section}.kafka`", $"$defs/{schema}");
         return tables;
     }

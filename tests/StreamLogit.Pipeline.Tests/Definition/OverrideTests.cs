@@ -66,8 +66,8 @@ public sealed class OverrideTests
     public void Set_WrongValue_IsPlacedAtTheOverrideAfterTheErrorsOfTheFile() =>
         Assert.Equal(
             [
-                "quay.json:6:3: decison: unknown key; did you mean \"decision\"? Known here: \"$schema\", \"stream\", \"record\", \"features\", \"histories\", \"learning\", \"labels\", \"decision\", \"health\", \"kafka\", \"source\", \"scores\", \"rejects\", \"recording\", \"state\", \"listen\"",
-                "--set lerning.slots=16: lerning: unknown key; did you mean \"learning\"? Known here: \"$schema\", \"stream\", \"record\", \"features\", \"histories\", \"learning\", \"labels\", \"decision\", \"health\", \"kafka\", \"source\", \"scores\", \"rejects\", \"recording\", \"state\", \"listen\"",
+                "quay.json:6:3: decison: unknown key; did you mean \"decision\"? Known here: \"$schema\", \"stream\", \"record\", \"features\", \"histories\", \"learning\", \"labels\", \"decision\", \"health\", \"kafka\", \"source\", \"scores\", \"rejects\", \"recording\", \"state\", \"listen\", \"webhook\"",
+                "--set lerning.slots=16: lerning: unknown key; did you mean \"learning\"? Known here: \"$schema\", \"stream\", \"record\", \"features\", \"histories\", \"learning\", \"labels\", \"decision\", \"health\", \"kafka\", \"source\", \"scores\", \"rejects\", \"recording\", \"state\", \"listen\", \"webhook\"",
                 "--set learning.slots=1000: learning.slots: expected a power of two from 16 to 67108864, found the number 1000",
             ],
             Definitions.Errors(Definition.Replace("\"decision\"", "\"decison\"", StringComparison.Ordinal), ["learning.slots=1000", "lerning.slots=16"]).Select(error => error.ToString()));

@@ -23,6 +23,7 @@ public sealed partial class SchemaTests
         objects.Add("$defs/kafkaSource", Definitions.With("""  "source": { "kafka": { "?": 0 } } """));
         objects.Add("$defs/kafkaScores", Definitions.With("""  "scores": { "kafka": { "?": 0 } } """));
         objects.Add("$defs/kafkaRejects", Definitions.With("""  "rejects": { "kafka": { "?": 0 } } """));
+        objects.Add("$defs/webhook", Definitions.With("""  "webhook": { "?": 0 } """));
         return objects;
     }
 

@@ -27,6 +27,7 @@ internal static class DefinitionSection
         var recording = definition.Optional("recording");
         var state = ForRun("state", "it says in which folder the state is kept");
         var listen = definition.Optional("listen");
+        var webhook = definition.Optional("webhook");
         definition.End();
 
         var files = new FilePaths(folder);
@@ -61,6 +62,7 @@ internal static class DefinitionSection
             Recording = RecordingSection.Read(recording, files),
             State = StateSection.Read(state, files),
             Listen = ListenSection.Read(listen, files),
+            Webhook = WebhookSection.Read(webhook, files),
             EffectiveJson = "",
         };
 

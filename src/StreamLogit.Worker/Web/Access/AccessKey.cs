@@ -14,7 +14,6 @@ internal sealed class AccessKey
     /// <summary>How long a session lasts.</summary>
     public static readonly TimeSpan SessionLength = TimeSpan.FromHours(12);
 
-    private const int LeastCharacters = 16;
     private const int LongestSession = 100;
 
     private readonly byte[] _hash;
@@ -24,24 +23,8 @@ internal sealed class AccessKey
 
     /// <summary>Reads the key that the options name; null where they name none.</summary>
     /// <exception cref="WrongInputException">The key is not there, or too short to protect anything.</exception>
-    public static AccessKey? Read(ListenOptions options)
-    {
-        if (options.KeyVariable is { } variable)
-        {
-            string key = Environment.GetEnvironmentVariable(variable)
-                ?? throw new WrongInputException($"The environment variable {variable}, which listen.keyVariable names, is not set: it is to hold the access key of the page.");
-            return Checked(key, $"the environment variable {variable}");
-        }
-        if (options.KeyFile is not { } file) return null;
-        try
-        {
-            return Checked(File.ReadAllText(file), file);
-        }
-        catch (Exception exception) when (exception is IOException or UnauthorizedAccessException)
-        {
-            throw new WrongInputException($"The access key of the page cannot be read from the file that listen.keyFile names: {exception.Message}");
-        }
-    }
+    public static AccessKey? Read(ListenOptions options) =>
+        SecretText.Read("access key of the page", options.KeyVariable, "listen.keyVariable", options.KeyFile, "listen.keyFile") is { } key ? new AccessKey(key) : null;
 
     /// <summary>Whether this is the key. Takes as long whatever it is.</summary>
     public bool Matches(string? offered) => offered is not null && CryptographicOperations.FixedTimeEquals(Hash(offered), _hash);
@@ -59,14 +42,6 @@ internal sealed class AccessKey
         if (session is null || session.Length > LongestSession || session.Split('.') is not [var end, var signature]) return false;
         bool isRight = CryptographicOperations.FixedTimeEquals(Encoding.UTF8.GetBytes(signature), Encoding.UTF8.GetBytes(Sign(end)));
         return isRight && long.TryParse(end, NumberStyles.None, CultureInfo.InvariantCulture, out long seconds) && now.ToUnixTimeSeconds() < seconds;
-    }
-
-    private static AccessKey Checked(string text, string place)
-    {
-        string key = text.TrimEnd('\r', '\n');
-        if (key.Length < LeastCharacters || key.Any(char.IsWhiteSpace) || key.Any(char.IsControl))
-            throw new WrongInputException($"The access key of the page in {place} cannot be used: it is to have at least {LeastCharacters} characters, on one line and without blanks.");
-        return new AccessKey(key);
     }
 
     private string Sign(string text) => Convert.ToHexStringLower(HMACSHA256.HashData(_sessionSecret, Encoding.UTF8.GetBytes(text)));
