@@ -24,7 +24,7 @@ public static class KafkaEnds
     {
         if (definition.Source is not KafkaSourceOptions source) return StreamEnds.OpenSource(definition, time);
         source = source with { Group = $"{source.Group}-record", Start = new TopicStart(TopicPlace.Earliest) };
-        return new KafkaSource(source, Connect(definition, time, log, new KafkaClients()), definition.Engine.Record.MaximumBytes, isPublished: false);
+        return new KafkaSource(source, Connect(definition, time, log, new KafkaClients()), definition.Engine.Record.MaximumBytes, OutputKind.Files);
     }
 
     /// <summary>Opens the topics of the source for writing.</summary>
@@ -42,24 +42,34 @@ public static class KafkaEnds
     {
         if (definition.Kafka is null) return StreamEnds.OfFiles(definition, time);
         var connection = Connect(definition, time, log, clients);
-        var sinks = ImmutableArray.CreateBuilder<IScoreSink>();
+        var topics = definition.Source as KafkaSourceOptions;
         var scores = definition.Scores as TopicOutputOptions;
-        if ((scores ?? definition.Rejects as TopicOutputOptions) is { } output)
-        {
-            var writer = CreateWriter(connection, output.Properties);
-            if (scores is not null) sinks.Add(new ScoreTopic(scores, definition.Engine, writer));
-            if (definition.Rejects is TopicOutputOptions rejects) sinks.Add(new RejectTopic(rejects, writer));
-        }
+        bool isTransactional = topics is not null && scores is { IsExactlyOnce: true };
+        var sinks = ImmutableArray.CreateBuilder<IScoreSink>();
+        KafkaSource? source = null;
         try
         {
+            TopicWriter? writer = null;
+            if (isTransactional)
+            {
+                var config = connection.Settings.Transactional(scores!.Properties, $"{topics!.Group}.{topics.Instance}");
+                writer = new TransactionalWriter(connection, config);
+            }
+            else if ((scores ?? definition.Rejects as TopicOutputOptions) is { } output) writer = CreateWriter(connection, output.Properties);
+            if (scores is not null) sinks.Add(new ScoreTopic(scores, definition.Engine, writer!));
+            if (definition.Rejects is TopicOutputOptions rejects) sinks.Add(new RejectTopic(rejects, writer!));
             sinks.AddRange(StreamEnds.OpenSinks(definition));
-            var source = definition.Source is KafkaSourceOptions topics
-                ? new KafkaSource(topics, connection, definition.Engine.Record.MaximumBytes, isPublished: scores is not null)
-                : StreamEnds.OpenSource(definition, time);
-            return new StreamEnds(source, sinks.ToImmutable());
+            if (topics is null) return new StreamEnds(StreamEnds.OpenSource(definition, time), sinks.ToImmutable());
+            var outputs = isTransactional ? OutputKind.Transactions : scores is not null ? OutputKind.Topics : OutputKind.Files;
+            source = new KafkaSource(topics, connection, definition.Engine.Record.MaximumBytes, outputs);
+            if (!isTransactional) return new StreamEnds(source, sinks.ToImmutable());
+            var transaction = new KafkaTransaction(source, (TransactionalWriter)writer!, log);
+            source.Gone = transaction.OnGone;
+            return new StreamEnds(source, sinks.ToImmutable(), transaction);
         }
         catch
         {
+            source?.Dispose();
             foreach (var sink in sinks) sink.Dispose();
             throw;
         }

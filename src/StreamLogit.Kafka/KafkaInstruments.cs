@@ -15,5 +15,9 @@ internal static class KafkaInstruments
 
     public static Counter<long> QueueFullWaits { get; } = Meter.CreateCounter<long>("streamlogit.kafka.queue_full", "{wait}", "Times that the producer's queue was full.");
 
+    public static Counter<long> Transactions { get; } = Meter.CreateCounter<long>("streamlogit.kafka.transactions", "{transaction}", "Transactions committed.");
+
+    public static Counter<long> Aborts { get; } = Meter.CreateCounter<long>("streamlogit.kafka.aborts", "{transaction}", "Transactions taken back.");
+
     public static Counter<long> TopicsMissing { get; } = Meter.CreateCounter<long>("streamlogit.kafka.topics_missing", "{topic}", "Times that a topic was not there.");
 }

@@ -35,6 +35,9 @@ internal static partial class KafkaLogMessages
     [LoggerMessage(110, LogLevel.Warning, "Kafka: the producer's queue is full; the worker waits for the brokers to take what is in it")]
     public static partial void QueueFull(this ILogger logger);
 
+    [LoggerMessage(113, LogLevel.Information, "Kafka: {Records} records after the last commit of the state were published before; they are read again without publishing")]
+    public static partial void Repeats(this ILogger logger, long records);
+
     [LoggerMessage(111, LogLevel.Debug, "Kafka client: {Facility}: {Message}")]
     public static partial void ClientSays(this ILogger logger, string facility, string message);
 

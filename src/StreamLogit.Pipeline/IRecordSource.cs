@@ -11,7 +11,10 @@ public interface IRecordSource : IDisposable
     /// <summary>How much has been read. Any thread may ask.</summary>
     SourceProgress Progress { get; }
 
-    /// <summary>Goes to a position that this source, or an earlier one of the same origins, gave. Only before the first fill.</summary>
+    /// <summary>
+    /// Goes to a position that this source, or an earlier one of the same origins, gave. Before the first fill; sources of transactions also where a run goes
+    /// back to its state.
+    /// </summary>
     /// <exception cref="PipelineException">What was read up to there is not there any more.</exception>
     void Seek(SourcePosition position);
 

@@ -21,6 +21,12 @@ public sealed record LoopOptions
     /// <summary>Wall time between two commits, above 0. Default 10 s.</summary>
     public TimeSpan CommitEveryTime { get; init; } = TimeSpan.FromSeconds(10);
 
+    /// <summary>Records in a transaction, where there are transactions, 1 or more. Default 10,000.</summary>
+    public int TransactionEveryEvents { get; init; } = 10_000;
+
+    /// <summary>Wall time between two transactions, above 0. Default 100 ms.</summary>
+    public TimeSpan TransactionEveryTime { get; init; } = TimeSpan.FromMilliseconds(100);
+
     /// <summary>
     /// Whether the stream ends where the source does, so that labels that still wait for their event become rejects. Default false: a later run may
     /// bring more.

@@ -4,4 +4,5 @@ namespace StreamLogit.Pipeline;
 /// <param name="Records">Records that went all the way through.</param>
 /// <param name="Source">How much of the source has been read.</param>
 /// <param name="Commits">Commits made.</param>
-public readonly record struct LoopProgress(long Records, SourceProgress Source, long Commits);
+/// <param name="Transactions">Transactions of the outputs committed.</param>
+public readonly record struct LoopProgress(long Records, SourceProgress Source, long Commits, long Transactions = 0);

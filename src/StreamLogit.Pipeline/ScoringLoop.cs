@@ -21,22 +21,21 @@ public sealed class ScoringLoop
 
     /// <summary>A loop that runs once. Source, engine and sinks stand where the state says.</summary>
     /// <param name="engine">The engine, which is the loop's alone until it ends.</param>
-    /// <param name="source">Where records come from.</param>
-    /// <param name="sinks">Where scores and rejects go, each started.</param>
+    /// <param name="ends">Where records come from and results go; each sink is started.</param>
     /// <param name="state">Where commits go, or null where nothing is kept.</param>
     /// <param name="options">How records are moved.</param>
     /// <param name="time">The clock of commits, of waits and of health.</param>
     public ScoringLoop(
-        ScoringEngine engine, IRecordSource source, ImmutableArray<IScoreSink> sinks, StateStore? state, LoopOptions options, TimeProvider time)
+        ScoringEngine engine, StreamEnds ends, StateStore? state, LoopOptions options, TimeProvider time)
     {
         ArgumentOutOfRangeException.ThrowIfLessThan(options.BatchSize, 1);
         // A batch may be held back while another carries a commit.
         ArgumentOutOfRangeException.ThrowIfLessThan(options.Batches, 2);
-        _source = source;
+        _source = ends.Source;
         _conveyor = new Conveyor(options.Batches, () => new BatchInFlight(new RecordBatch(engine.Schema), engine.CreateScoreBatch()));
-        _read = new ReadStage(source, new RecordDecoder(engine.Schema), _conveyor, options, time);
+        _read = new ReadStage(ends.Source, ends.Transaction, new RecordDecoder(engine.Schema), _conveyor, options, time);
         _score = new ScoreStage(engine, _conveyor, state?.Archive, options, time);
-        _write = new WriteStage(source, sinks, state, _conveyor);
+        _write = new WriteStage(ends, state, _conveyor);
     }
 
     /// <summary>The latest health snapshot. Any thread may ask.</summary>
@@ -49,7 +48,7 @@ public sealed class ScoringLoop
     public ImmutableArray<RejectExample> RejectExamples => _write.RejectExamples;
 
     /// <summary>How far it has come. Any thread may ask.</summary>
-    public LoopProgress Progress => new(_write.Records, _source.Progress, _write.Commits);
+    public LoopProgress Progress => new(_write.Records, _source.Progress, _write.Commits, _write.Transactions);
 
     /// <summary>Runs until the source ends or the run is stopped; either way it ends with a commit.</summary>
     /// <param name="stop">Stops the run after the batches that are under way.</param>

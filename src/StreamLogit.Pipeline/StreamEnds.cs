@@ -2,13 +2,15 @@ using System.Collections.Immutable;
 using StreamLogit.Pipeline.Definition;
 using StreamLogit.Pipeline.Files;
 using StreamLogit.Pipeline.Options;
+using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Pipeline;
 
 /// <summary>The two ends of a worker: where its records come from, and where scores, rejects and the recording go.</summary>
 /// <param name="Source">Where records come from.</param>
 /// <param name="Sinks">Where results go.</param>
-public sealed record StreamEnds(IRecordSource Source, ImmutableArray<IScoreSink> Sinks) : IDisposable
+/// <param name="Transaction">The transactions in which source and sinks are committed, or null where only the state's commits count.</param>
+public sealed record StreamEnds(IRecordSource Source, ImmutableArray<IScoreSink> Sinks, IStreamTransaction? Transaction = null) : IDisposable
 {
     /// <summary>Opens the ends of a definition that names files alone.</summary>
     /// <exception cref="PipelineException">They are out of reach.</exception>

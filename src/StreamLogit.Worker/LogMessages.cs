@@ -24,6 +24,9 @@ internal static partial class LogMessages
     [LoggerMessage(6, LogLevel.Information, "Stream {Stream}: the bank has changed. {Kept} settings go on; started from the blend of the state: [{Started}]; dropped: [{Dropped}]")]
     public static partial void BankChanged(this ILogger logger, string stream, int kept, string started, string dropped);
 
+    [LoggerMessage(20, LogLevel.Warning, "Stream {Stream}: goes back to its last commit and forward again: {Reason}")]
+    public static partial void GoesBack(this ILogger logger, string stream, string reason);
+
     [LoggerMessage(7, LogLevel.Information, "The health page is at {Address}")]
     public static partial void Listens(this ILogger logger, string address);
 

@@ -46,6 +46,28 @@ internal sealed class ClientSettings
         return config;
     }
 
+    /// <summary>The properties of a consumer that takes no part in the group.</summary>
+    public ConsumerConfig Reader(KafkaSourceOptions source)
+    {
+        var config = Consumer(source with { UntilEnd = false });
+        config.GroupInstanceId = null;
+        config.EnableAutoCommit = false;
+        return config;
+    }
+
+    /// <summary>The properties of the producer of outputs, within transactions.</summary>
+    /// <param name="own">Those of the definition.</param>
+    /// <param name="transactionalId">The name under which brokers know the worker from its predecessor.</param>
+    public ProducerConfig Transactional(ImmutableSortedDictionary<string, string> own, string transactionalId)
+    {
+        // The client waits so long before every commit.
+        var config = Build<ProducerConfig>(own, [("linger.ms", "0")]);
+        config.Set("enable.idempotence", On);
+        config.Set("transactional.id", transactionalId);
+        config.DeliveryReportFields = "none";
+        return config;
+    }
+
     /// <summary>The properties of the producer of outputs.</summary>
     public ProducerConfig Producer(ImmutableSortedDictionary<string, string> own)
     {

@@ -25,6 +25,11 @@ internal sealed class KafkaConnection(ClientSettings settings, KafkaClients clie
         Action<IReadOnlyList<TopicPartitionOffset>> lost) =>
         Create("source.kafka.properties", () => clients.CreateConsumer(settings.Consumer(options), buffer, new ConsumerEvents(assigned, revoked, lost, Watch.OnError, Watch.OnLog)));
 
+    /// <summary>A consumer that takes no part in the group.</summary>
+    /// <exception cref="KafkaSettingsException">The settings are wrong.</exception>
+    public IConsumer<Ignore, int> CreateReader(KafkaSourceOptions options, MessageBuffer buffer) =>
+        Create("source.kafka.properties", () => clients.CreateConsumer(settings.Reader(options), buffer, new ConsumerEvents(_ => [], _ => { }, _ => { }, Watch.OnError, Watch.OnLog)));
+
     /// <summary>The producer of outputs.</summary>
     /// <exception cref="KafkaSettingsException">The settings are wrong.</exception>
     public IProducer<byte[], byte[]> CreateProducer(ProducerConfig config) =>

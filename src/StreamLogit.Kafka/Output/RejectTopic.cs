@@ -39,6 +39,9 @@ internal sealed class RejectTopic(TopicOutputOptions options, TopicWriter writer
         _written += records.Rejects.Count;
     }
 
+    /// <summary>Counts only: messages stand, and only those of committed transactions are ever repeated.</summary>
+    public void Repeat(RecordBatch records, ScoreBatch scores) => _written += records.Rejects.Count;
+
     /// <inheritdoc/>
     public long Flush()
     {

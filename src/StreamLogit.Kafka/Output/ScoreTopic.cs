@@ -48,6 +48,9 @@ internal sealed class ScoreTopic : IScoreSink
         _written += scores.Count;
     }
 
+    /// <summary>Counts only: messages stand, and only those of committed transactions are ever repeated.</summary>
+    public void Repeat(RecordBatch records, ScoreBatch scores) => _written += scores.Count;
+
     /// <inheritdoc/>
     public long Flush()
     {

@@ -6,13 +6,11 @@ using StreamLogit.Pipeline;
 namespace StreamLogit.Kafka.Output;
 
 /// <summary>Writes messages to topics, at least once each: what was flushed is with the brokers. One thread at a time uses it.</summary>
-internal sealed class TopicWriter : IDisposable
+internal class TopicWriter : IDisposable
 {
     private static readonly TimeSpan Pause = TimeSpan.FromMilliseconds(5);
     private static readonly TimeSpan FlushSlice = TimeSpan.FromMilliseconds(200);
 
-    private readonly KafkaConnection _connection;
-    private readonly IProducer<byte[], byte[]> _producer;
     private readonly Action<DeliveryReport<byte[], byte[]>> _onDelivered;
     private readonly LentArrays _keys = new();
     private readonly LentArrays _values = new();
@@ -21,11 +19,17 @@ internal sealed class TopicWriter : IDisposable
 
     public TopicWriter(KafkaConnection connection, ProducerConfig config)
     {
-        _connection = connection;
-        _producer = connection.CreateProducer(config);
+        Connection = connection;
+        Producer = connection.CreateProducer(config);
         _onDelivered = OnDelivered;
         MaximumBytes = ClientSettings.MaximumMessageBytes(config);
     }
+
+    /// <summary>The cluster.</summary>
+    protected KafkaConnection Connection { get; }
+
+    /// <summary>The client.</summary>
+    protected IProducer<byte[], byte[]> Producer { get; private set; }
 
     /// <summary>The longest message.</summary>
     public int MaximumBytes { get; }
@@ -40,6 +44,7 @@ internal sealed class TopicWriter : IDisposable
     public void Write(TopicPartition topic, ReadOnlySpan<byte> key, ReadOnlySpan<byte> value, long milliseconds, Headers? headers)
     {
         ThrowFailure();
+        BeforeWrite();
         _message.Key = key.IsEmpty ? null! : _keys.Lend(key);
         _message.Value = _values.Lend(value);
         _message.Timestamp = milliseconds < 0 ? Timestamp.Default : new Timestamp(milliseconds, TimestampType.CreateTime);
@@ -49,9 +54,9 @@ internal sealed class TopicWriter : IDisposable
         {
             if (fullSince is null)
             {
-                fullSince = _connection.Time.GetTimestamp();
+                fullSince = Connection.Time.GetTimestamp();
                 KafkaInstruments.QueueFullWaits.Add(1);
-                _connection.Log.QueueFull();
+                Connection.Log.QueueFull();
             }
             WaitSince(fullSince.Value);
             Thread.Sleep(Pause);
@@ -60,20 +65,36 @@ internal sealed class TopicWriter : IDisposable
 
     /// <summary>Waits until the brokers have all that was written.</summary>
     /// <exception cref="PipelineException">They do not take it.</exception>
-    public void Flush()
+    public virtual void Flush()
     {
-        long since = _connection.Time.GetTimestamp();
-        while (_producer.Flush(FlushSlice) > 0) WaitSince(since);
+        long since = Connection.Time.GetTimestamp();
+        while (Producer.Flush(FlushSlice) > 0) WaitSince(since);
         ThrowFailure();
     }
 
-    public void Dispose() => _producer.Dispose();
+    /// <inheritdoc/>
+    public void Dispose()
+    {
+        Producer.Dispose();
+        GC.SuppressFinalize(this);
+    }
+
+    /// <summary>Called before each message.</summary>
+    protected virtual void BeforeWrite() { }
+
+    /// <summary>Takes a new client, and forgets what the last one failed at.</summary>
+    protected void Replace(ProducerConfig config)
+    {
+        Producer.Dispose();
+        Producer = Connection.CreateProducer(config);
+        Volatile.Write(ref _failure, null);
+    }
 
     private bool TryProduce(TopicPartition topic)
     {
         try
         {
-            _producer.Produce(topic, _message, _onDelivered);
+            Producer.Produce(topic, _message, _onDelivered);
             return true;
         }
         catch (ProduceException<byte[], byte[]> e) when (e.Error.Code == ErrorCode.Local_QueueFull)
@@ -89,15 +110,16 @@ internal sealed class TopicWriter : IDisposable
     private void OnDelivered(DeliveryReport<byte[], byte[]> report)
     {
         if (report.Error.IsError) Interlocked.CompareExchange(ref _failure, report.Error, null);
-        else _connection.Watch.OnAnswer();
+        else Connection.Watch.OnAnswer();
     }
 
-    private void WaitSince(long since)
+    /// <summary>Throws where what is waited for since a moment is not to be waited for any longer.</summary>
+    protected void WaitSince(long since)
     {
         ThrowFailure();
-        _connection.Watch.ThrowIfGivenUp();
-        var waited = _connection.Time.GetElapsedTime(since);
-        if (waited > _connection.Settings.Options.GiveUpAfter)
+        Connection.Watch.ThrowIfGivenUp();
+        var waited = Connection.Time.GetElapsedTime(since);
+        if (waited > Connection.Settings.Options.GiveUpAfter)
             throw new PipelineException(string.Create(CultureInfo.InvariantCulture, $"The Kafka brokers took nothing for {waited.TotalSeconds:F0} s. All up to the last commit is kept."));
     }
 
@@ -106,7 +128,8 @@ internal sealed class TopicWriter : IDisposable
         if (Volatile.Read(ref _failure) is { } error) throw Failed(error);
     }
 
-    private static PipelineException Failed(Error error) => error.Code switch
+    /// <summary>What a failure to write means.</summary>
+    protected virtual PipelineException Failed(Error error) => error.Code switch
     {
         ErrorCode.MsgSizeTooLarge => new PipelineException(
             $"A message is larger than Kafka takes ({error.Reason}): raise max.message.bytes of the topic and message.max.bytes in scores.kafka.properties, or have fewer reasons."),

@@ -1,9 +1,11 @@
+using System.Collections.Immutable;
 using System.Globalization;
 using Confluent.Kafka;
 using StreamLogit.Engine.Records;
 using StreamLogit.Kafka.Clients;
 using StreamLogit.Pipeline;
 using StreamLogit.Pipeline.Options.Kafka;
+using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Kafka.Source;
 
@@ -17,32 +19,33 @@ internal sealed class KafkaSource : IRecordSource
     private const int ShownBytes = 1024;
     private static readonly TimeSpan FirstWait = TimeSpan.FromMilliseconds(100);
     private static readonly TimeSpan CloseWithin = TimeSpan.FromSeconds(20);
+    private static readonly TimeSpan SeekWithin = TimeSpan.FromSeconds(30);
 
     private readonly KafkaSourceOptions _options;
     private readonly KafkaConnection _connection;
     private readonly int _maximumBytes;
-    private readonly bool _isPublished;
+    private readonly OutputKind _outputs;
     private readonly PartitionTable _partitions;
     private readonly StartOffsets _starts;
     private readonly TopicPatience _patience;
     private readonly MessageBuffer _message = new();
     private readonly IConsumer<Ignore, int> _consumer;
+    private RepeatedReading? _repeated;
     private bool _isSubscribed;
+    private bool _mustSeek;
     private long _bytes;
 
     /// <summary>A source that joins its group with the first fill.</summary>
     /// <param name="options">The topics and the group.</param>
     /// <param name="connection">The cluster.</param>
     /// <param name="maximumBytes">The longest record; a longer one becomes a reject.</param>
-    /// <param name="isPublished">
-    /// Whether scores go to a topic, from which nothing can be taken back: then what the group has committed is never read again, even by an older state.
-    /// </param>
-    public KafkaSource(KafkaSourceOptions options, KafkaConnection connection, int maximumBytes, bool isPublished)
+    /// <param name="outputs">What becomes of the results.</param>
+    public KafkaSource(KafkaSourceOptions options, KafkaConnection connection, int maximumBytes, OutputKind outputs)
     {
         _options = options;
         _connection = connection;
         _maximumBytes = maximumBytes;
-        _isPublished = isPublished;
+        _outputs = outputs;
         _partitions = new PartitionTable([.. options.AllTopics]);
         _starts = new StartOffsets(options.Start, connection.Watch, connection.Time);
         _patience = new TopicPatience(connection);
@@ -55,9 +58,33 @@ internal sealed class KafkaSource : IRecordSource
     /// <inheritdoc/>
     public SourceProgress Progress => new(Volatile.Read(ref _bytes), null);
 
+    /// <summary>Hears which partitions go, or are gone, to another worker, while it still can be seen what was given of them.</summary>
+    public Action<IEnumerable<PartitionCursor>>? Gone { get; set; }
+
+    /// <summary>Whether the next records are given again.</summary>
+    public bool IsRepeating => _repeated is not null;
+
+    /// <summary>As whom the worker stands in its group, for the transactions that commit its offsets. Any thread may ask.</summary>
+    public IConsumerGroupMetadata GroupMetadata() => _consumer.ConsumerGroupMetadata;
+
+    /// <summary>Where the group stands.</summary>
+    public IReadOnlyDictionary<TopicPartition, long> CommittedOffsets(IReadOnlyCollection<TopicPartition> partitions) => _starts.Committed(_consumer, partitions);
+
+    /// <summary>Whether more of a partition was given than is committed.</summary>
+    public static bool HasGiven(PartitionCursor cursor, long committed) => cursor.Given > Math.Max(committed, cursor.Start);
+
+    /// <summary>Gives the records of a journal first, in its order. From the second call on the partitions are sought anew behind them.</summary>
+    public void Repeat(ImmutableArray<JournalEntry> journal)
+    {
+        _repeated?.Dispose();
+        _repeated = journal.IsEmpty ? null : new RepeatedReading(journal, buffer => _connection.CreateReader(_options, buffer), _connection, _partitions);
+        _mustSeek = _isSubscribed;
+    }
+
     /// <inheritdoc/>
     public void Seek(SourcePosition position)
     {
+        foreach (var cursor in _partitions.Known) cursor.Rewind();
         foreach (var origin in position.Origins) _partitions.Find(PartitionCursor.Parse(origin.Origin)).Next = origin.Offset;
     }
 
@@ -65,11 +92,13 @@ internal sealed class KafkaSource : IRecordSource
     public ValueTask<FillOutcome> FillAsync(RecordBatch batch, int maximumRecords, CancellationToken cancellation)
     {
         if (cancellation.IsCancellationRequested) return ValueTask.FromResult(FillOutcome.Idle);
+        if (_repeated is not null) return ValueTask.FromResult(FillAgain(batch, maximumRecords, cancellation));
         if (!_isSubscribed)
         {
             _consumer.Subscribe(_options.AllTopics);
             _isSubscribed = true;
         }
+        if (_mustSeek) SeekAssigned();
         var wait = FirstWait;
         while (batch.Count < maximumRecords && Consume(wait) is { } result)
         {
@@ -86,6 +115,8 @@ internal sealed class KafkaSource : IRecordSource
     /// <inheritdoc/>
     public void Committed(SourcePosition position)
     {
+        // Transactions have committed the offsets already.
+        if (_outputs == OutputKind.Transactions) return;
         foreach (var origin in position.Origins)
         {
             try
@@ -102,6 +133,7 @@ internal sealed class KafkaSource : IRecordSource
     /// <inheritdoc/>
     public void Dispose()
     {
+        _repeated?.Dispose();
         // Closing commits the stored offsets, for which it may wait for a broker that is away.
         var closing = Task.Run(_consumer.Close);
         if (Task.WaitAny([closing], CloseWithin) == 0) _consumer.Dispose();
@@ -129,18 +161,80 @@ internal sealed class KafkaSource : IRecordSource
     {
         // After a change of the reading's place the client may still hold what lay behind the old one.
         if (offset < cursor.Next) return;
-        if (length <= _maximumBytes) batch.Add(_message.Bytes(length), offset);
+        Add(batch, cursor, offset, _message.Bytes(length));
+        cursor.Given = cursor.Next;
+        cursor.IsAtEnd = false;
+        _connection.Watch.OnAnswer();
+        _patience.OnMessage();
+    }
+
+    private void Add(RecordBatch batch, PartitionCursor cursor, long offset, ReadOnlySpan<byte> bytes)
+    {
+        if (bytes.Length <= _maximumBytes) batch.Add(bytes, offset);
         else
         {
-            string detail = string.Create(CultureInfo.InvariantCulture, $"{length} bytes; at most {_maximumBytes} are allowed");
-            batch.AddTooLong(_message.Bytes(Math.Min(ShownBytes, _maximumBytes)), offset, detail);
+            string detail = string.Create(CultureInfo.InvariantCulture, $"{bytes.Length} bytes; at most {_maximumBytes} are allowed");
+            batch.AddTooLong(bytes[..Math.Min(ShownBytes, _maximumBytes)], offset, detail);
         }
         batch.Records[^1].Origin = cursor.Origin;
         cursor.Next = offset + 1;
-        cursor.IsAtEnd = false;
-        Volatile.Write(ref _bytes, _bytes + length);
-        _connection.Watch.OnAnswer();
-        _patience.OnMessage();
+        Volatile.Write(ref _bytes, _bytes + bytes.Length);
+    }
+
+    private FillOutcome FillAgain(RecordBatch batch, int maximumRecords, CancellationToken cancellation)
+    {
+        KeepMembership();
+        _repeated!.Fill(batch, maximumRecords, Add, cancellation);
+        if (_repeated.IsDone)
+        {
+            _repeated.Dispose();
+            _repeated = null;
+        }
+        return batch.Count > 0 ? FillOutcome.Filled : FillOutcome.Idle;
+    }
+
+    /// <summary>Lets the group hear of this worker while it reads something else.</summary>
+    private void KeepMembership()
+    {
+        if (!_isSubscribed) return;
+        // What still comes is read again later, when the partitions are sought.
+        _consumer.Pause(_consumer.Assignment);
+        Consume(TimeSpan.Zero);
+    }
+
+    /// <summary>Has the client go on where the cursors stand: behind what was given again, or behind what others have read since.</summary>
+    private void SeekAssigned()
+    {
+        long began = _connection.Time.GetTimestamp();
+        var assigned = _partitions.Known.Where(cursor => cursor.IsAssigned).ToList();
+        var committed = _starts.Committed(_consumer, [.. assigned.Select(cursor => cursor.Partition)]);
+        foreach (var cursor in assigned)
+        {
+            cursor.Start = cursor.Given = cursor.Next = StartOf(cursor, committed[cursor.Partition]);
+            cursor.IsAtEnd = false;
+            while (!TrySeek(cursor))
+            {
+                if (_connection.Time.GetElapsedTime(began) > SeekWithin) throw new PipelineException($"The Kafka consumer cannot be set to {cursor.Origin}{cursor.Next}.");
+                Consume(TimeSpan.FromMilliseconds(20));
+            }
+        }
+        _consumer.Resume(_consumer.Assignment);
+        _mustSeek = false;
+    }
+
+    private bool TrySeek(PartitionCursor cursor)
+    {
+        // Meanwhile it may have gone.
+        if (!cursor.IsAssigned) return true;
+        try
+        {
+            _consumer.Seek(new TopicPartitionOffset(cursor.Partition, cursor.Next));
+            return true;
+        }
+        catch (KafkaException e) when (!e.Error.IsFatal)
+        {
+            return false;
+        }
     }
 
     private bool IsAtEnd()
@@ -192,7 +286,9 @@ internal sealed class KafkaSource : IRecordSource
         foreach (var partition in partitions)
         {
             var cursor = _partitions.Find(partition);
-            cursor.Next = StartOf(cursor, committed[partition]);
+            // What was given before it went, and not committed, is taken back: it does not count.
+            if (_outputs == OutputKind.Transactions && cursor.WasAssigned) cursor.Rewind();
+            cursor.Start = cursor.Given = cursor.Next = StartOf(cursor, committed[partition]);
             cursor.IsAssigned = cursor.WasAssigned = true;
             cursor.IsAtEnd = false;
             _connection.Log.PartitionAssigned(cursor.Origin, cursor.Next);
@@ -204,7 +300,7 @@ internal sealed class KafkaSource : IRecordSource
     private long StartOf(PartitionCursor cursor, long committed)
     {
         if (cursor.Next == PartitionCursor.Unknown) return _starts.First(_consumer, cursor.Partition, committed);
-        if (committed <= cursor.Next || !(_isPublished || cursor.WasAssigned)) return cursor.Next;
+        if (committed <= cursor.Next || !(_outputs != OutputKind.Files || cursor.WasAssigned)) return cursor.Next;
         _connection.Log.PartitionMovedOn(cursor.Origin, committed, cursor.Next);
         return committed;
     }
@@ -212,6 +308,7 @@ internal sealed class KafkaSource : IRecordSource
     private void Revoke(IReadOnlyList<TopicPartitionOffset> partitions)
     {
         KafkaInstruments.Rebalances.Add(1);
+        Gone?.Invoke(partitions.Select(partition => _partitions.Find(partition.TopicPartition)));
         foreach (var partition in partitions)
         {
             var cursor = Leave(partition);
@@ -222,6 +319,7 @@ internal sealed class KafkaSource : IRecordSource
     private void Lose(IReadOnlyList<TopicPartitionOffset> partitions)
     {
         KafkaInstruments.Rebalances.Add(1);
+        Gone?.Invoke(partitions.Select(partition => _partitions.Find(partition.TopicPartition)));
         foreach (var partition in partitions) _connection.Log.PartitionLost(Leave(partition).Origin);
     }
 

@@ -22,6 +22,12 @@ internal sealed class PartitionCursor(string topic, int partition)
     /// <summary>The offset from which it goes on, or <see cref="Unknown"/>.</summary>
     public long Next { get; set; } = Unknown;
 
+    /// <summary>From where it was read when it was assigned last.</summary>
+    public long Start { get; set; } = Unknown;
+
+    /// <summary>Up to where records were given since then, those that were given again aside.</summary>
+    public long Given { get; set; } = Unknown;
+
     /// <summary>Whether it is this worker's.</summary>
     public bool IsAssigned { get; set; }
 
@@ -33,6 +39,13 @@ internal sealed class PartitionCursor(string topic, int partition)
 
     /// <summary>How far it has been read.</summary>
     public OriginPosition Position => new(Origin, Next, Math.Max(0, Next - 1), 0);
+
+    /// <summary>Goes back to where its reading began, before a state says where it goes on.</summary>
+    public void Rewind()
+    {
+        Next = Start;
+        Given = Start;
+    }
 
     /// <summary>The partition of an origin.</summary>
     /// <exception cref="PipelineException">It is no partition.</exception>

@@ -19,6 +19,8 @@ internal sealed class AppendFile(string path, string name) : IDisposable
     {
         try
         {
+            _file?.Dispose();
+            Buffer.ResetWrittenCount();
             if (Path.GetDirectoryName(Path.GetFullPath(path)) is { } folder) Directory.CreateDirectory(folder);
             _file = new FileStream(path, FileMode.OpenOrCreate, FileAccess.Write, FileShare.Read | FileShare.Delete, bufferSize: 0);
             Cut(_file, committedBytes);

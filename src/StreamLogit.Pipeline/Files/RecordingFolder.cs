@@ -34,6 +34,9 @@ public sealed class RecordingFolder(RecordingOptions options) : IScoreSink
     /// <inheritdoc/>
     public void Start(long? mark) => Try(options.Folder, () =>
     {
+        Dispose();
+        (_file, _frame, _start, _day, _clock) = (null, null, 0, RecordingFileName.Undated, long.MinValue);
+        _lines.ResetWrittenCount();
         Directory.CreateDirectory(options.Folder);
         var names = Directory.EnumerateFiles(options.Folder).Select(RecordingFileName.Parse).OfType<RecordingFileName>().OrderBy(name => name.Start).ToList();
         if (mark is null && names.Count > 0)

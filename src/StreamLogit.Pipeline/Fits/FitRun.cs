@@ -36,7 +36,7 @@ public sealed class FitRun : IDisposable
             Corrected = Take,
         };
         _source = new RecordingSequence(recordings, definition.Record.MaximumBytes, time);
-        _loop = new ScoringLoop(_engine, _source, [], state: null, options with { EndsWithSource = true }, time);
+        _loop = new ScoringLoop(_engine, new StreamEnds(_source, []), state: null, options with { EndsWithSource = true }, time);
     }
 
     /// <summary>How far the reading has come. Any thread may ask.</summary>

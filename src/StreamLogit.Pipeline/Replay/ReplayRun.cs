@@ -28,7 +28,7 @@ public sealed class ReplayRun : IDisposable
     {
         _engine = new ScoringEngine(definition, _archive) { GiveReasons = false };
         _source = new RecordingSequence(recordings, definition.Record.MaximumBytes, time);
-        _loop = new ScoringLoop(_engine, _source, [_hash], state: null, options with { EndsWithSource = true }, time);
+        _loop = new ScoringLoop(_engine, new StreamEnds(_source, [_hash]), state: null, options with { EndsWithSource = true }, time);
     }
 
     /// <summary>The latest health snapshot. Any thread may ask.</summary>

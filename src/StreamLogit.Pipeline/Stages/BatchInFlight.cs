@@ -14,6 +14,12 @@ internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)
     /// <summary>Where the source goes on after this batch, if a commit follows it.</summary>
     public SourcePosition? CommitAt { get; set; }
 
+    /// <summary>Whether a transaction ends with this batch.</summary>
+    public bool IsTransactionDue { get; set; }
+
+    /// <summary>Whether its records are given again, so that their scores are committed already.</summary>
+    public bool IsRepeated { get; set; }
+
     /// <summary>What changed in the engine since the last commit, if a commit follows this batch.</summary>
     public StateBlocks? Changes { get; set; }
 
@@ -29,6 +35,8 @@ internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)
         Scores.Clear();
         CommitAt = null;
         Changes = null;
+        IsTransactionDue = false;
+        IsRepeated = false;
         IsPause = false;
         IsEnd = false;
     }

@@ -1,16 +1,21 @@
 using StreamLogit.Engine.Records;
+using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Reads and decodes batches, and decides after which of them a commit follows. The last thing it sends is always a commit.</summary>
-internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Conveyor conveyor, LoopOptions options, TimeProvider time)
+internal sealed class ReadStage(
+    IRecordSource source, IStreamTransaction? transaction, RecordDecoder decoder, Conveyor conveyor, LoopOptions options, TimeProvider time)
 {
     private readonly CommitClock _commits = new(options.CommitEveryEvents, options.CommitEveryTime, time);
+    private readonly CommitClock _transactions = new(options.TransactionEveryEvents, options.TransactionEveryTime, time);
     private readonly Pacer? _pacer = options.Speed is double speed ? new Pacer(speed, options.BatchSize, time) : null;
     private readonly Action<RecordBatch>? _cut = options.Span?.Cutter();
     private bool _isPaused = true;
 
-    private bool IsPauseDue => !_isPaused || _commits.IsDue;
+    private bool IsPauseDue => !_isPaused || _commits.IsDue || IsTransactionDue;
+
+    private bool IsTransactionDue => transaction is not null && _transactions.IsDue;
 
     public async Task RunAsync(CancellationToken stop)
     {
@@ -22,6 +27,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
             batch.Clear();
             // A batch that is still held back when the run is stopped was never given: the next run reads it again.
             held = _pacer is null ? null : source.Position;
+            batch.IsRepeated = transaction?.IsRepeating ?? false;
             var outcome = await source.FillAsync(batch.Records, _pacer?.BatchSize ?? options.BatchSize, stop).ConfigureAwait(false);
             hasEnded = outcome == FillOutcome.Ended;
             if (hasEnded) break;
@@ -44,7 +50,8 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
         batch.Clear();
         batch.IsPause = true;
         batch.IsEnd = hasEnded && options.EndsWithSource;
-        batch.CommitAt = held ?? source.Position;
+        // What is given again ends in a transaction that the state does not hold yet: the next run begins with it anew.
+        if (transaction is not { IsRepeating: true }) Commit(batch, held ?? source.Position);
         await conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None).ConfigureAwait(false);
         conveyor.Read.Writer.Complete();
     }
@@ -54,8 +61,7 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
 
     private ValueTask SendAsync(BatchInFlight batch)
     {
-        _commits.Add(batch.Records.Count);
-        if (_commits.IsDue) Commit(batch, source.Position);
+        if (!batch.IsRepeated) Count(batch);
         _isPaused = false;
         return conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None);
     }
@@ -63,15 +69,35 @@ internal sealed class ReadStage(IRecordSource source, RecordDecoder decoder, Con
     private ValueTask SendPauseAsync(BatchInFlight batch, SourcePosition position)
     {
         batch.IsPause = true;
-        if (_commits.IsDue) Commit(batch, position);
+        EndWhatIsDue(batch, position);
         _isPaused = true;
         return conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None);
+    }
+
+    private void Count(BatchInFlight batch)
+    {
+        _commits.Add(batch.Records.Count);
+        _transactions.Add(batch.Records.Count);
+        EndWhatIsDue(batch, null);
+    }
+
+    private void EndWhatIsDue(BatchInFlight batch, SourcePosition? position)
+    {
+        if (_commits.IsDue) Commit(batch, position ?? source.Position);
+        else if (IsTransactionDue) EndTransaction(batch);
     }
 
     private void Commit(BatchInFlight batch, SourcePosition position)
     {
         batch.CommitAt = position;
         _commits.Restart();
+        EndTransaction(batch);
+    }
+
+    private void EndTransaction(BatchInFlight batch)
+    {
+        batch.IsTransactionDue = true;
+        _transactions.Restart();
     }
 
     /// <summary>Holds records back until they are due; false when the run is stopped before.</summary>

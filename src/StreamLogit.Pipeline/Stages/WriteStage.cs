@@ -1,15 +1,18 @@
 using System.Collections.Immutable;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Pipeline.State;
+using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Pipeline.Stages;
 
-/// <summary>Writes what came of batches, and commits: first the outputs are made durable, then the state that counts them.</summary>
-internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink> sinks, StateStore? state, Conveyor conveyor)
+/// <summary>Writes what came of batches, and commits: first the outputs are made durable, then the state that counts them. Transactions end in between.</summary>
+internal sealed class WriteStage(StreamEnds ends, StateStore? state, Conveyor conveyor)
 {
     private readonly RecentRejects _rejects = new();
+    private readonly MergedOrder _order = new();
     private long _records;
     private long _commits;
+    private long _transactions;
 
     /// <summary>Records written. Any thread may ask.</summary>
     public long Records => Volatile.Read(ref _records);
@@ -20,6 +23,9 @@ internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink
     /// <summary>Examples of the latest rejects. Any thread may ask.</summary>
     public ImmutableArray<RejectExample> RejectExamples => _rejects.Examples;
 
+    /// <summary>Transactions committed. Any thread may ask.</summary>
+    public long Transactions => Volatile.Read(ref _transactions);
+
     public async Task RunAsync()
     {
         var reader = conveyor.Scored.Reader;
@@ -28,6 +34,7 @@ internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink
             while (reader.TryRead(out var batch))
             {
                 Write(batch);
+                if (batch.IsTransactionDue) EndTransaction();
                 if (batch.CommitAt is { } position) Commit(position, batch.Changes);
                 // There is room for every batch that exists, unless another stage failed and closed the channel.
                 conveyor.Empty.Writer.TryWrite(batch);
@@ -38,19 +45,36 @@ internal sealed class WriteStage(IRecordSource source, ImmutableArray<IScoreSink
     private void Write(BatchInFlight batch)
     {
         if (batch.Records.Count == 0 && batch.Records.Rejects.Count == 0) return;
-        foreach (var sink in sinks) sink.Write(batch.Records, batch.Scores);
+        foreach (var sink in ends.Sinks)
+        {
+            if (batch.IsRepeated) sink.Repeat(batch.Records, batch.Scores);
+            else sink.Write(batch.Records, batch.Scores);
+        }
+        if (ends.Transaction is not null && !batch.IsRepeated) _order.Add(batch.Records);
         _rejects.Add(batch.Records);
         Volatile.Write(ref _records, _records + batch.Records.Count);
+    }
+
+    private void EndTransaction()
+    {
+        if (ends.Transaction is not { } transaction) return;
+        var entry = _order.Take();
+        if (entry.Spans.IsEmpty) return;
+        // The order must be known before anybody can see a score: whoever comes after this run has to repeat it.
+        state?.AppendJournal(entry);
+        transaction.Commit(entry.Spans);
+        state?.ConfirmJournal();
+        Volatile.Write(ref _transactions, _transactions + 1);
     }
 
     private void Commit(SourcePosition position, StateBlocks? changes)
     {
         var marks = ImmutableSortedDictionary.CreateBuilder<string, long>(StringComparer.Ordinal);
-        foreach (var sink in sinks) marks[sink.Name] = sink.Flush();
+        foreach (var sink in ends.Sinks) marks[sink.Name] = sink.Flush();
         if (state is null || changes is null) return;
         state.Commit(new Checkpoint(position, marks.ToImmutable(), changes));
         state.Archive.Committed(changes);
-        source.Committed(position);
+        ends.Source.Committed(position);
         Volatile.Write(ref _commits, _commits + 1);
     }
 }

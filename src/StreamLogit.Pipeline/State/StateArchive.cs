@@ -34,6 +34,16 @@ public sealed class StateArchive : IBlockArchive, IDisposable
         lock (_lock) _taken.Remove(taken);
     }
 
+    /// <summary>Forgets what was written since the last commit, because its engine is given up.</summary>
+    public void Rewind()
+    {
+        lock (_lock)
+        {
+            _taken.Clear();
+            _next = new StateBlocks();
+        }
+    }
+
     /// <inheritdoc/>
     public void Write(string part, long number, ReadOnlySpan<byte> bytes) => _next.Put(part, number, bytes);
 

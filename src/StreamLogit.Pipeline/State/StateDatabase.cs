@@ -3,6 +3,7 @@ using System.IO.Hashing;
 using Microsoft.Data.Sqlite;
 using StreamLogit.Engine;
 using StreamLogit.Engine.Persistence;
+using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Pipeline.State;
 
@@ -119,6 +120,32 @@ internal sealed class StateDatabase : IDisposable
                 ("$fingerprint", unchecked((long)origin.Fingerprint)));
         }
     }
+
+    /// <summary>The entries of the journal in their order.</summary>
+    public ImmutableArray<JournalEntry> ReadJournal()
+    {
+        using var command = Command("SELECT hash, bytes FROM journal ORDER BY number");
+        using var reader = command.ExecuteReader();
+        var entries = ImmutableArray.CreateBuilder<JournalEntry>();
+        while (reader.Read())
+        {
+            byte[] bytes = reader.GetFieldValue<byte[]>(1);
+            if (Hash(bytes) != reader.GetInt64(0)) throw StorageFault.Damaged(Path, "an entry of the journal changed since it was written");
+            entries.Add(JournalEntry.FromBytes(bytes));
+        }
+        return entries.ToImmutable();
+    }
+
+    /// <summary>Puts an entry into the journal, in place of all from that number on.</summary>
+    public void WriteJournal(long number, JournalEntry entry)
+    {
+        byte[] bytes = entry.ToBytes();
+        TruncateJournal(number);
+        Execute("INSERT INTO journal(number, hash, bytes) VALUES ($number, $hash, $bytes)", ("$number", number), ("$hash", Hash(bytes)), ("$bytes", bytes));
+    }
+
+    /// <summary>Takes all entries from a number on out of the journal.</summary>
+    public void TruncateJournal(long number) => Execute("DELETE FROM journal WHERE number >= $number", ("$number", number));
 
     public ImmutableSortedDictionary<string, long> ReadMarks()
     {

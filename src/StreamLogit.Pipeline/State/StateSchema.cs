@@ -9,6 +9,9 @@ internal static class StateSchema
     private const int ApplicationId = 0x534c6774;
     private const int FormatVersion = 1;
 
+    // The merged order of the records since the last commit, a row for each transaction of the outputs.
+    private const string Journal = "journal(number INTEGER PRIMARY KEY, hash INTEGER NOT NULL, bytes BLOB NOT NULL)";
+
     /// <summary>Checks that an open database is a state, or makes one of an empty database.</summary>
     public static void Prepare(SqliteConnection connection, string path, SqliteOpenMode mode)
     {
@@ -35,7 +38,13 @@ internal static class StateSchema
         }
         command.CommandText = "PRAGMA journal_mode = WAL; PRAGMA synchronous = FULL; PRAGMA journal_size_limit = 67108864;";
         command.ExecuteNonQuery();
-        if (!isNew) return;
+        if (!isNew)
+        {
+            // States of earlier versions have none.
+            command.CommandText = $"CREATE TABLE IF NOT EXISTS {Journal}";
+            command.ExecuteNonQuery();
+            return;
+        }
         command.CommandText = $"""
             BEGIN IMMEDIATE;
             CREATE TABLE meta(key TEXT PRIMARY KEY, value TEXT NOT NULL) WITHOUT ROWID;
@@ -45,6 +54,7 @@ internal static class StateSchema
             CREATE TABLE blocks(part TEXT NOT NULL, number INTEGER NOT NULL, hash INTEGER NOT NULL, bytes BLOB NOT NULL,
                 PRIMARY KEY(part, number));
             CREATE TABLE small_blocks(number INTEGER PRIMARY KEY, hash INTEGER NOT NULL, bytes BLOB NOT NULL);
+            CREATE TABLE {Journal};
             PRAGMA application_id = {ApplicationId};
             PRAGMA user_version = {FormatVersion};
             COMMIT;

@@ -1,6 +1,8 @@
+using System.Collections.Immutable;
 using System.Globalization;
 using Microsoft.Data.Sqlite;
 using StreamLogit.Engine;
+using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Pipeline.State;
 
@@ -16,6 +18,7 @@ public sealed class StateStore : IDisposable
     private readonly string _stream;
     private readonly string _definition;
     private long _commits;
+    private long _journal; // entries whose transactions were committed
 
     private StateStore(StateLock folderLock, StateDatabase database, string stream, string definition)
     {
@@ -30,7 +33,7 @@ public sealed class StateStore : IDisposable
     /// <summary>Where the engine puts what it has no room for in memory.</summary>
     public StateArchive Archive { get; }
 
-    /// <summary>Called within a commit, when all is written and nothing counts yet; tests die here.</summary>
+    /// <summary>Called within a commit, of a journal's entry too, when all is written and nothing counts yet; tests die here.</summary>
     internal Action? BeforeCommit { get; set; }
 
     /// <summary>Opens the state of a folder for a worker, and makes it where there is none.</summary>
@@ -83,8 +86,10 @@ public sealed class StateStore : IDisposable
     public Checkpoint? Read() => _commits == 0 ? null : Guard(_database.Path, () => Read(_database));
 
     /// <summary>Commits a checkpoint, all of it or nothing.</summary>
+    /// <param name="checkpoint">The checkpoint.</param>
+    /// <param name="keepsJournal">Whether it stands before the transactions of the journal, and not behind them.</param>
     /// <exception cref="PipelineException">It was not committed: the disk is full or failed.</exception>
-    public void Commit(Checkpoint checkpoint) => Guard(_database.Path, () =>
+    public void Commit(Checkpoint checkpoint, bool keepsJournal = false) => Guard(_database.Path, () =>
     {
         using var transaction = _database.Begin();
         _database.WriteBlocks(checkpoint.Blocks, transaction);
@@ -93,11 +98,34 @@ public sealed class StateStore : IDisposable
         _database.WriteMeta(StreamKey, _stream);
         _database.WriteMeta(DefinitionKey, _definition);
         _database.WriteMeta(CommitsKey, (_commits + 1).ToString(CultureInfo.InvariantCulture));
+        if (!keepsJournal) _database.TruncateJournal(0);
         BeforeCommit?.Invoke();
         transaction.Commit();
+        if (!keepsJournal) _journal = 0;
         _database.GiveRoomBack();
         return ++_commits;
     });
+
+    /// <summary>The journal: the records of the transactions since the last commit, the last of which perhaps came to nothing.</summary>
+    /// <exception cref="PipelineException">It cannot be read.</exception>
+    public ImmutableArray<JournalEntry> ReadJournal() => Guard(_database.Path, _database.ReadJournal);
+
+    /// <summary>Says how many entries of the journal, from the first, are of transactions that were committed. The next one is written behind them.</summary>
+    public void KeepJournal(int entries) => _journal = entries;
+
+    /// <summary>Writes an entry into the journal, in place of one whose transaction came to nothing.</summary>
+    /// <exception cref="PipelineException">It was not written: the disk is full or failed.</exception>
+    public void AppendJournal(JournalEntry entry) => Guard(_database.Path, () =>
+    {
+        using var transaction = _database.Begin();
+        _database.WriteJournal(_journal, entry);
+        BeforeCommit?.Invoke();
+        transaction.Commit();
+        return true;
+    });
+
+    /// <summary>Says that the transaction of the entry written last was committed.</summary>
+    public void ConfirmJournal() => _journal++;
 
     /// <inheritdoc/>
     public void Dispose()

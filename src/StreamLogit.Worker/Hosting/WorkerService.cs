@@ -24,6 +24,7 @@ internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostAppli
             if (run.BankChange is { IsNone: false } change)
                 logger.BankChanged(Stream, change.Kept.Length, string.Join(", ", change.Started), string.Join(", ", change.Dropped));
 
+            run.Rewound += reason => logger.GoesBack(Stream, reason);
             using var reports = time.CreateTimer(_ => Report(), null, ReportEvery, ReportEvery);
             await run.RunAsync(stoppingToken);
             if (stoppingToken.IsCancellationRequested) logger.Stopped(Stream);

@@ -20,5 +20,5 @@ public sealed class KafkaSourceContractTests(KafkaMockRoom room) : RecordSourceC
     }
 
     private protected override IRecordSource Open() =>
-        new KafkaSource(KafkaMockRoom.Source(room.NewName("group"), _topic), room.Connect(), 1000, isPublished: false);
+        new KafkaSource(KafkaMockRoom.Source(room.NewName("group"), _topic), room.Connect(), 1000, OutputKind.Files);
 }

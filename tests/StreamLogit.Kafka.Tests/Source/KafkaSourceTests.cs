@@ -14,7 +14,7 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
         return topic;
     }
 
-    private KafkaSource Open(KafkaSourceOptions options, bool isPublished = false, int maximumBytes = 1000) => new(options, room.Connect(), maximumBytes, isPublished);
+    private KafkaSource Open(KafkaSourceOptions options, OutputKind outputs = OutputKind.Files, int maximumBytes = 1000) => new(options, room.Connect(), maximumBytes, outputs);
 
     private static async Task<List<(string Origin, long Offset, string Text)>> TakeAsync(IRecordSource source)
     {
@@ -79,9 +79,9 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
 
     // Files are cut back to an older state, and want what the group has committed since; scores in a topic stay there.
     [Theory]
-    [InlineData(false, 2)]
-    [InlineData(true, 8)]
-    public async Task Seek_OlderThanTheGroup_GoesBackOnlyWhereOutputsDo(bool isPublished, int expected)
+    [InlineData(OutputKind.Files, 2)]
+    [InlineData(OutputKind.Topics, 8)]
+    public async Task Seek_OlderThanTheGroup_GoesBackOnlyWhereOutputsDo(object outputs, int expected)
     {
         string topic = NewTopic(1);
         room.Produce(topic, 0, Enumerable.Range(0, 10).Select(i => $"{i}"));
@@ -95,7 +95,7 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
             while (first.Position.Origins[0].Offset < 8) await TakenRecord.FillAsync(first, batch, (int)(8 - first.Position.Origins[0].Offset));
             first.Committed(first.Position);
         }
-        using var second = Open(options, isPublished);
+        using var second = Open(options, (OutputKind)outputs);
         second.Seek(old);
 
         Assert.Equal(expected, (await TakeAsync(second))[0].Offset);

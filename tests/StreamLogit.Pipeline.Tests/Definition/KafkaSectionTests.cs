@@ -23,6 +23,10 @@ public sealed class KafkaSectionTests
     [InlineData(Cluster + "\"source\": { \"file\": \"a.csv\", \"kafka\": { \"topics\": \"a\" } }", "source: has both \"file\" and \"kafka\": records come from one place")]
     [InlineData(Cluster + "\"source\": { \"kafka\": { \"topics\": \"a\" }, \"follow\": true }", "source.follow: is about files, and topics are always followed: leave it away")]
     [InlineData(Cluster + "\"scores\": { \"kafka\": {} }", "scores.kafka: the key \"topic\" is missing: it names the topic that scores are written to")]
+    [InlineData(Cluster + "\"scores\": { \"kafka\": { \"topic\": \"t\", \"delivery\": \"once\" } }", "scores.kafka.delivery: expected one of \"exactly-once\", \"at-least-once\", found the string \"once\"")]
+    [InlineData(Cluster + "\"source\": { \"file\": \"a.csv\" }, \"scores\": { \"kafka\": { \"topic\": \"t\", \"delivery\": \"exactly-once\" } }", "scores.kafka.delivery: commits the offsets of topics with the scores, and the source is a file: say \"at-least-once\"")]
+    [InlineData(Cluster + "\"scores\": { \"kafka\": { \"topic\": \"t\", \"every\": \"1m\" } }", "scores.kafka.every: expected a duration from 1ms to 10s, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"1m\"")]
+    [InlineData(Cluster + "\"scores\": { \"kafka\": { \"topic\": \"t\", \"everyEvents\": 0 } }", "scores.kafka.everyEvents: expected a whole number from 1 to 1000000, found the number 0")]
     [InlineData(Cluster + "\"scores\": { \"file\": \"s\", \"kafka\": { \"topic\": \"t\" } }", "scores: has both \"file\" and \"kafka\": scores are written to one place")]
     [InlineData(Cluster + "\"scores\": { \"kafka\": { \"topic\": \"t\", \"key\": \"card\" } }", "scores.kafka.key: no feature reads the field \"card\" as a category: name one that is read, or the id")]
     [InlineData(Cluster + "\"rejects\": { \"file\": \"r\", \"kafka\": { \"topic\": \"t\" } }", "rejects: has both \"file\" and \"kafka\": rejects are written to one place")]
@@ -45,6 +49,7 @@ public sealed class KafkaSectionTests
         var scores = Assert.IsType<TopicOutputOptions>(definition.Scores);
         Assert.Equal(("scores", null), (scores.Topic, scores.KeyField));
         Assert.Empty(scores.Properties);
+        Assert.Equal((true, TimeSpan.FromMilliseconds(100), 10_000), (scores.IsExactlyOnce, scores.EveryTime, scores.EveryEvents));
     }
 
     [Fact]

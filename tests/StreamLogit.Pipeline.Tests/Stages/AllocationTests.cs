@@ -31,7 +31,7 @@ public sealed class AllocationTests : IDisposable
         scores.Start(null);
         rejects.Start(null);
         var options = new LoopOptions { HealthEvery = TimeSpan.FromDays(1), CommitEveryEvents = int.MaxValue, CommitEveryTime = TimeSpan.FromDays(1) };
-        var loop = new ScoringLoop(new ScoringEngine(LoopStream.Engine), source, [scores, rejects, hash, meter], state: null, options, TimeProvider.System);
+        var loop = new ScoringLoop(new ScoringEngine(LoopStream.Engine), new StreamEnds(source, [scores, rejects, hash, meter]), state: null, options, TimeProvider.System);
 
         await loop.RunAsync(TestContext.Current.CancellationToken);
 

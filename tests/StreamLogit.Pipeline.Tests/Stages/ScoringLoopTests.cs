@@ -22,7 +22,7 @@ public sealed class ScoringLoopTests : IDisposable
     }
 
     private ScoringLoop NewLoop(IRecordSource source, LoopOptions options, StateStore? state = null, params ImmutableArray<IScoreSink> sinks) =>
-        new(new ScoringEngine(LoopStream.Engine), source, sinks, state, options, _time);
+        new(new ScoringEngine(LoopStream.Engine), new StreamEnds(source, sinks), state, options, _time);
 
     private FileSource Open(byte[] recording, bool follow = false) => FileSource.Open(
         new FileSourceOptions(_folder.Write("quay.jsonl", recording), RecordingFormat.JsonLines, follow), LoopStream.MaximumBytes, _time);

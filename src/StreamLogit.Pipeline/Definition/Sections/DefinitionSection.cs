@@ -47,7 +47,7 @@ internal static class DefinitionSection
             Decision = decision,
             Health = HealthSection.Read(health, recordOptions, featureOptions ?? []),
         };
-        var (output, decisionOptions) = ScoresSection.Read(scores, engine, files, use);
+        var (output, decisionOptions) = ScoresSection.Read(scores, engine, sourceOptions, files, use);
         var rejectOutput = RejectsSection.Read(rejects, files);
         if (kafkaKey is null && (sourceOptions is KafkaSourceOptions || output is TopicOutputOptions || rejectOutput is TopicOutputOptions))
             definition.Error("the key \"kafka\" is missing: it names the cluster of the topics");
