@@ -119,7 +119,7 @@ internal sealed class AwaitingStore
     {
         var segment = _segments[place.Segment];
         int ordinal = HeaderAt(place).Ordinal;
-        if (segment.StateOf(ordinal) == EventState.Awaiting) Awaiting--;
+        if (!segment.IsMarked(ordinal)) Awaiting--;
         if (!segment.HasNewMarks) NoteNewMarks(place.Segment);
         segment.Mark(ordinal, mark);
     }
@@ -155,7 +155,7 @@ internal sealed class AwaitingStore
         {
             place = _waitCursor;
             Pass(ref _waitCursor);
-            if (StateOf(place) == EventState.Awaiting) return true;
+            if (!_segments[place.Segment].IsMarked(HeaderAt(place).Ordinal)) return true;
         }
         place = default;
         return false;
@@ -177,7 +177,7 @@ internal sealed class AwaitingStore
                 WantToForget(header);
                 break;
             }
-            if (_segments[_keepCursor.Segment].StateOf(header.Ordinal) == EventState.Awaiting) unlabelled++;
+            if (!_segments[_keepCursor.Segment].IsMarked(header.Ordinal)) unlabelled++;
             _index.Remove(header.IdHash, _keepCursor, _segments.First);
             Pass(ref _keepCursor);
         }
@@ -259,8 +259,6 @@ internal sealed class AwaitingStore
 
     private ref readonly KeptHeader HeaderAt(EventPlace place) =>
         ref MemoryMarshal.AsRef<KeptHeader>((_segments[place.Segment].Bytes ?? _reader.Read(place.Segment)).AsSpan(place.Offset));
-
-    private EventState StateOf(EventPlace place) => _segments[place.Segment].StateOf(HeaderAt(place).Ordinal);
 
     private bool TryFindFirst(ulong idHash, out EventPlace place)
     {

@@ -10,11 +10,10 @@ internal readonly struct SegmentMark(int ordinal, in LabelMark mark)
     private readonly uint _sequence = mark.Count.Sequence;
     private readonly float _weight = mark.Count.Weight;
     private readonly ushort _ordinal = (ushort)ordinal;
+    private readonly EventState _state = mark.State;
 
     /// <summary>The place of the event in its segment, of which an event of at least 80 bytes leaves room for a few hundred.</summary>
     public int Ordinal => _ordinal;
 
-    public EventState State { get; } = mark.State;
-
-    public LabelMark ToMark() => new(State, new LabelCount(_minute, _sequence, _baseRate, _weight));
+    public LabelMark ToMark() => new(_state, new LabelCount(_minute, _sequence, _baseRate, _weight));
 }

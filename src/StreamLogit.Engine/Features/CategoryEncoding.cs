@@ -32,7 +32,10 @@ internal sealed class CategoryEncoding : Feature
         ulong hash = _seed;
         var values = records.Fields(record);
         foreach (int field in _fields)
-            hash = HashedSlots.Combine(hash, values[field].IsPresent ? values[field].Hash : HashedSlots.MissingValue);
+        {
+            ref readonly var value = ref values[field];
+            hash = HashedSlots.Combine(hash, value.IsPresent ? value.Hash : HashedSlots.MissingValue);
+        }
         int slot = _hashed.SlotOf(hash);
         if (vector.AddHashed(slot, HashedSlots.TagOf(hash)) && _names.HasRoom)
             _names.Add(slot, NameOf(records, record));

@@ -1,3 +1,6 @@
+using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
+
 namespace StreamLogit.Engine.Features;
 
 /// <summary>
@@ -47,30 +50,32 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int f
     }
 
     /// <summary>Adds an entry at a dense slot.</summary>
-    public void Add(int slot, double value)
-    {
-        _sumsBefore[Count] = ledger.AddDense(slot, value);
-        Append(slot, value);
-    }
+    public void Add(int slot, double value) => Append(slot, value, ledger.AddDense(slot, value));
 
     /// <summary>Adds an entry at a hashed slot.</summary>
     /// <returns>Whether the slot is used for the first time, so that it wants a name.</returns>
     public bool AddHashed(int slot, uint tag, double value = 1)
     {
-        var use = ledger.AddHashed(slot, tag, value, out _sumsBefore[Count]);
+        var use = ledger.AddHashed(slot, tag, value, out double sumBefore);
+        Append(slot, value, sumBefore);
+        if (use == SlotUse.Again) return false;
         HasCollision |= use == SlotUse.Collision;
-        Append(slot, value);
         if (use != SlotUse.First) return false;
         // A text may have many new values and is one feature.
         if (_unseenCount == 0 || _unseen[_unseenCount - 1] != Feature) _unseen[_unseenCount++] = Feature;
         return true;
     }
 
-    private void Append(int slot, double value)
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private void Append(int slot, double value, double sumBefore)
     {
-        _slots[Count] = slot;
-        _values[Count] = value;
-        _features[Count] = Feature;
-        Count++;
+        int place = Count;
+        _slots[place] = slot;
+
+        // All of one length: the first has checked the place for the others.
+        Unsafe.Add(ref MemoryMarshal.GetArrayDataReference(_values), place) = value;
+        Unsafe.Add(ref MemoryMarshal.GetArrayDataReference(_features), place) = Feature;
+        Unsafe.Add(ref MemoryMarshal.GetArrayDataReference(_sumsBefore), place) = sumBefore;
+        Count = place + 1;
     }
 }

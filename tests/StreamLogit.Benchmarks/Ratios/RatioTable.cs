@@ -7,7 +7,8 @@ internal static class RatioTable
 {
     private static readonly (string Name, Func<double> Measure, double Goal, bool IsUpperBound)[] Rows =
     [
-        ("replay-one-setting/token-pass", () => ReplayRatios.OneSettingAgainstTokens(), 0.6, false),
+        ("replay-label-in-event/token-pass", () => ReplayRatios.LabelsInEventsAgainstTokens(), 0.6, false),
+        ("replay-late-labels/token-pass", () => ReplayRatios.LateLabelsAgainstTokens(), 0.6, false),
         ("replay-16-settings/replay-one-setting-time", () => ReplayRatios.SixteenSettingsAgainstOne(), 1.5, true),
         ("replay-allocated-bytes-per-event", () => ReplayRatios.AllocatedBytesPerEvent(), 0, true),
         ("engine-12-features-million-events-per-second", () => EngineRatios.MillionEventsPerSecond(settings: 1), 10, false),
