@@ -1,6 +1,7 @@
 using System.Collections.Immutable;
 using System.Runtime.InteropServices;
 using StreamLogit.Engine.Features;
+using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Awaiting;

@@ -1,3 +1,5 @@
+using StreamLogit.Engine.Numerics;
+
 namespace StreamLogit.Engine.Awaiting;
 
 /// <summary>

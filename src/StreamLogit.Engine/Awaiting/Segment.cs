@@ -1,4 +1,5 @@
 using System.Numerics;
+using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Awaiting;

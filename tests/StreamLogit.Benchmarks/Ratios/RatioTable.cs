@@ -17,6 +17,8 @@ internal static class RatioTable
         ("engine-with-health/without-time", () => HealthRatios.OnAgainstOff(eventsPerMinute: 6000), 1.1, true),
         ("engine-with-health/without-time, 20 events a minute", () => HealthRatios.OnAgainstOff(eventsPerMinute: 20), 1.1, true),
         ("engine-with-health/without-time, one slice", () => HealthRatios.OnAgainstOff(eventsPerMinute: 6000, "c0"), 1.2, true),
+        ("engine-four-histories/none-time, 1 M keys", () => HistoryRatios.FourAgainstNone(), 1.6, true),
+        ("engine-four-histories-allocated-bytes-per-event", () => HistoryRatios.AllocatedBytesPerEvent(), 0, true),
         ("engine-rows/scikit-learn-rows", () => EngineRatios.AgainstScikitLearn(settings: 1), 1.5, false),
         ("engine-16-setting-updates/scikit-learn-updates", () => EngineRatios.AgainstScikitLearn(settings: 16), 5, false),
     ];

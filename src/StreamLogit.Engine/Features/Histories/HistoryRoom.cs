@@ -11,8 +11,9 @@ internal sealed class HistoryRoom(RecordSchema schema, HashedSlots hashed)
 {
     private const string Part = "histories";
 
-    // Enough events at a time for their loads from memory to overlap, and few enough for the cache to keep them.
-    private const int EventsAhead = 16;
+    // How many records ahead memory is asked for: far enough for it to come, near enough for it to stay.
+    private const int IndexAhead = 24;
+    private const int RowAhead = 12;
 
     private readonly SortedDictionary<string, HistoryTable> _byFields = new(StringComparer.Ordinal);
     private readonly List<OverallRate> _overallRates = [];
@@ -65,9 +66,12 @@ internal sealed class HistoryRoom(RecordSchema schema, HashedSlots hashed)
     {
         if (_tables.Length == 0) return;
         _clock.Advance(records.Records[record].TimeMicroseconds);
-        if (record % EventsAhead == 0)
-            foreach (var table in _tables) table.LookAhead(records, record, Math.Min(record + EventsAhead, records.Count));
-        foreach (var table in _tables) table.Open(records, record, _clock.Microseconds);
+        foreach (var table in _tables)
+        {
+            table.WantIndex(records, record + IndexAhead);
+            table.WantRow(records, record + RowAhead);
+            table.Open(records, record, _clock.Microseconds);
+        }
         for (int i = 0; i < _labelKeys.Length; i++) _labelKeys[i] = _labelledTables[i].Key;
     }
 

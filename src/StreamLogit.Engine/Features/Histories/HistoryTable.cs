@@ -19,7 +19,6 @@ internal sealed class HistoryTable(ImmutableArray<int> fields, ulong seed)
     private double[] _weights = []; // of the event at hand, by half-life
     private (long HalfLifeMicroseconds, int First, int Count)[] _decayed = [];
     private int _row;
-    private ulong _touched;
 
     public RowLayout Layout { get; } = new();
 
@@ -97,21 +96,20 @@ internal sealed class HistoryTable(ImmutableArray<int> fields, ulong seed)
         Keys.MarkChanged(found);
     }
 
-    /// <summary>
-    /// Reads what will be needed of the next events, so that the loads from memory run side by side. It changes nothing.
-    /// </summary>
-    public void LookAhead(RecordBatch records, int first, int end)
+    /// <summary>Asks for the memory in which the key of a coming event is looked up; some records later <see cref="WantRow"/> asks for its row.</summary>
+    public void WantIndex(RecordBatch records, int record)
     {
-        Span<int> rows = stackalloc int[end - first];
-        for (int i = first; i < end; i++)
-        {
-            bool isEvent = records.Records[i].Kind is RecordKind.Event or RecordKind.LabelledEvent;
-            ulong key = isEvent ? KeyOf(records, i) : 0;
-            rows[i - first] = key == 0 ? -1 : Keys.LikelyRowOf(key);
-        }
-        foreach (int row in rows)
-            if (row >= 0) _touched ^= RowPool.KeyOf(Keys[row]);
+        if (IsEvent(records, record) && KeyOf(records, record) is var key and not 0) Keys.WantIndex(key);
     }
+
+    /// <summary>Asks for the memory of the row of a coming event's key.</summary>
+    public void WantRow(RecordBatch records, int record)
+    {
+        if (IsEvent(records, record) && KeyOf(records, record) is var key and not 0) Keys.WantRow(key);
+    }
+
+    private static bool IsEvent(RecordBatch records, int record) =>
+        record < records.Count && records.Records[record].Kind is RecordKind.Event or RecordKind.LabelledEvent;
 
     private ulong KeyOf(RecordBatch records, int record)
     {

@@ -1,4 +1,5 @@
 using System.Runtime.InteropServices;
+using StreamLogit.Engine.Numerics;
 using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Features.Histories;
@@ -60,11 +61,15 @@ internal sealed class KeyTable(int words, string part, int table, HistoryMemory 
         return row;
     }
 
-    /// <summary>The row that a lookup of the key would look at first, or -1 where there is none.</summary>
-    public int LikelyRowOf(ulong key)
+    /// <summary>Asks for the memory in which a key is looked up.</summary>
+    public void WantIndex(ulong key) => _index.Want(key);
+
+    /// <summary>Asks for the memory of the row at which a lookup of the key would look first.</summary>
+    public void WantRow(ulong key)
     {
         int place = _index.Home(key);
-        return _index.Next(key, ref place);
+        int row = _index.Next(key, ref place);
+        if (row >= 0) CacheHint.Want(_rows[row]);
     }
 
     public void Save(StateBlocks changes)

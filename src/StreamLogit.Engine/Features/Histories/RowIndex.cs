@@ -1,3 +1,5 @@
+using StreamLogit.Engine.Numerics;
+
 namespace StreamLogit.Engine.Features.Histories;
 
 /// <summary>
@@ -19,6 +21,9 @@ internal sealed class RowIndex
         while (IsFull(rows - 1, capacity)) capacity *= 2;
         return capacity * sizeof(ulong);
     }
+
+    /// <summary>Asks for the memory in which a hash is looked up.</summary>
+    public void Want(ulong key) => CacheHint.Want(in _entries[Home(key)]);
 
     /// <summary>The first place where a row of this hash may stand.</summary>
     public int Home(ulong key) => (int)(key >> 32) & (_entries.Length - 1);
