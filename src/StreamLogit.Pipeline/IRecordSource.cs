@@ -11,6 +11,12 @@ public interface IRecordSource : IDisposable
     /// <summary>How much has been read. Any thread may ask.</summary>
     SourceProgress Progress { get; }
 
+    /// <summary>What carries the records, for telemetry.</summary>
+    string MessagingSystem => "file";
+
+    /// <summary>The one topic that they come from, for telemetry, or null.</summary>
+    string? Destination => null;
+
     /// <summary>
     /// Goes to a position that this source, or an earlier one of the same origins, gave. Before the first fill; sources of transactions also where a run goes
     /// back to its state.

@@ -9,6 +9,12 @@ public interface IScoreSink : IDisposable
     /// <summary>What it is among the outputs of a worker, for messages and for the state: <c>scores</c>, <c>rejects</c>.</summary>
     string Name { get; }
 
+    /// <summary>What carries what is written, for telemetry.</summary>
+    string MessagingSystem => "file";
+
+    /// <summary>The topic that it goes to, for telemetry, or null.</summary>
+    string? Destination => null;
+
     /// <summary>Begins, before the first write, and again where a run goes back to its state. What was written after the last commit is taken back.</summary>
     /// <param name="mark">What <see cref="Flush"/> returned for that commit, or null where there was none.</param>
     /// <exception cref="PipelineException">What was committed is not there any more, or there is something that was never committed.</exception>

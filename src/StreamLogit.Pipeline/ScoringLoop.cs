@@ -15,6 +15,7 @@ public sealed class ScoringLoop
 {
     private readonly IRecordSource _source;
     private readonly Conveyor _conveyor;
+    private readonly LoopMeter _meter;
     private readonly ReadStage _read;
     private readonly ScoreStage _score;
     private readonly WriteStage _write;
@@ -33,9 +34,10 @@ public sealed class ScoringLoop
         ArgumentOutOfRangeException.ThrowIfLessThan(options.Batches, 2);
         _source = ends.Source;
         _conveyor = new Conveyor(options.Batches, () => new BatchInFlight(new RecordBatch(engine.Schema), engine.CreateScoreBatch()));
-        _read = new ReadStage(ends.Source, ends.Transaction, new RecordDecoder(engine.Schema), _conveyor, options, time);
-        _score = new ScoreStage(engine, _conveyor, state?.Archive, options, time);
-        _write = new WriteStage(ends, state, _conveyor);
+        _meter = new LoopMeter(ends.Source, ends.Sinks, time);
+        _read = new ReadStage(ends.Source, ends.Transaction, new RecordDecoder(engine.Schema), _conveyor, _meter, options, time);
+        _score = new ScoreStage(engine, _conveyor, _meter, state?.Archive, options, time);
+        _write = new WriteStage(ends, state, _conveyor, _meter, time);
     }
 
     /// <summary>The latest health snapshot. Any thread may ask.</summary>
@@ -49,6 +51,9 @@ public sealed class ScoringLoop
 
     /// <summary>How far it has come. Any thread may ask.</summary>
     public LoopProgress Progress => new(_write.Records, _source.Progress, _write.Commits, _write.Transactions);
+
+    /// <summary>For how long batches have been under way without one of them coming through; 0 where none is. Any thread may ask.</summary>
+    public TimeSpan Standstill => _meter.Standstill;
 
     /// <summary>Runs until the source ends or the run is stopped; either way it ends with a commit.</summary>
     /// <param name="stop">Stops the run after the batches that are under way.</param>

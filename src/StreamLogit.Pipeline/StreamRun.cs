@@ -80,6 +80,9 @@ public sealed class StreamRun : IDisposable
     /// <summary>Examples of the latest rejects of this run, a few for each reason. Any thread may ask.</summary>
     public ImmutableArray<RejectExample> RejectExamples => Volatile.Read(ref _loop).RejectExamples;
 
+    /// <summary>For how long batches have been under way without one of them coming through; 0 where none is. Any thread may ask.</summary>
+    public TimeSpan Standstill => _loop.Standstill;
+
     /// <summary>How far this run has come. Any thread may ask.</summary>
     public LoopProgress Progress
     {

@@ -27,7 +27,7 @@ internal sealed class ClusterWatch(TimeSpan giveUpAfter, TimeProvider time, ILog
     /// <summary>Hears of an error.</summary>
     public void OnError(Error error)
     {
-        KafkaInstruments.Errors.Add(1, new KeyValuePair<string, object?>("code", error.Code.ToString()));
+        KafkaInstruments.Errors.Add(1, new KeyValuePair<string, object?>("error.type", error.Code.ToString()));
         logger.ClientError(error.Code.ToString(), error.Reason);
         lock (_lock)
         {

@@ -17,6 +17,9 @@ internal sealed class RecordTopic(KafkaSourceOptions options, TopicWriter writer
     public string Name => "records";
 
     /// <inheritdoc/>
+    public string MessagingSystem => "kafka";
+
+    /// <inheritdoc/>
     public void Start(long? mark) => _written = mark ?? 0;
 
     /// <inheritdoc/>

@@ -25,6 +25,12 @@ internal sealed class RejectTopic(TopicOutputOptions options, TopicWriter writer
     public string Name => "rejects";
 
     /// <inheritdoc/>
+    public string MessagingSystem => "kafka";
+
+    /// <inheritdoc/>
+    public string? Destination => _topic.Topic;
+
+    /// <inheritdoc/>
     public void Start(long? mark) => _written = mark ?? 0;
 
     /// <inheritdoc/>

@@ -32,6 +32,12 @@ internal sealed class ScoreTopic : IScoreSink
     public string Name => "scores";
 
     /// <inheritdoc/>
+    public string MessagingSystem => "kafka";
+
+    /// <inheritdoc/>
+    public string? Destination => _topic.Topic;
+
+    /// <inheritdoc/>
     public void Start(long? mark) => _written = mark ?? 0;
 
     /// <inheritdoc/>

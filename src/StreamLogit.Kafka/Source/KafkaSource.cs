@@ -82,6 +82,12 @@ internal sealed class KafkaSource : IRecordSource
     }
 
     /// <inheritdoc/>
+    public string MessagingSystem => "kafka";
+
+    /// <inheritdoc/>
+    public string? Destination => _options.AllTopics.Count() == 1 ? _options.Topics[0] : null;
+
+    /// <inheritdoc/>
     public void Seek(SourcePosition position)
     {
         foreach (var cursor in _partitions.Known) cursor.Rewind();

@@ -1,3 +1,4 @@
+using System.Diagnostics;
 using StreamLogit.Engine.Decisions;
 using StreamLogit.Engine.Persistence;
 using StreamLogit.Engine.Records;
@@ -28,6 +29,12 @@ internal sealed class BatchInFlight(RecordBatch records, ScoreBatch scores)
 
     /// <summary>Whether the stream ends here.</summary>
     public bool IsEnd { get; set; }
+
+    /// <summary>When it had been read, as a timestamp.</summary>
+    public long ReadAt { get; set; }
+
+    /// <summary>Its trace, or null where nobody listens.</summary>
+    public Activity? Trace { get; set; }
 
     public void Clear()
     {

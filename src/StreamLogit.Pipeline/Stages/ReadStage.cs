@@ -5,7 +5,7 @@ namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Reads and decodes batches, and decides after which of them a commit follows. The last thing it sends is always a commit.</summary>
 internal sealed class ReadStage(
-    IRecordSource source, IStreamTransaction? transaction, RecordDecoder decoder, Conveyor conveyor, LoopOptions options, TimeProvider time)
+    IRecordSource source, IStreamTransaction? transaction, RecordDecoder decoder, Conveyor conveyor, LoopMeter meter, LoopOptions options, TimeProvider time)
 {
     private readonly CommitClock _commits = new(options.CommitEveryEvents, options.CommitEveryTime, time);
     private readonly CommitClock _transactions = new(options.TransactionEveryEvents, options.TransactionEveryTime, time);
@@ -52,6 +52,7 @@ internal sealed class ReadStage(
         batch.IsEnd = hasEnded && options.EndsWithSource;
         // What is given again ends in a transaction that the state does not hold yet: the next run begins with it anew.
         if (transaction is not { IsRepeating: true }) Commit(batch, held ?? source.Position);
+        meter.SetOut(batch);
         await conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None).ConfigureAwait(false);
         conveyor.Read.Writer.Complete();
     }
@@ -63,6 +64,7 @@ internal sealed class ReadStage(
     {
         if (!batch.IsRepeated) Count(batch);
         _isPaused = false;
+        meter.SetOut(batch);
         return conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None);
     }
 
@@ -71,6 +73,7 @@ internal sealed class ReadStage(
         batch.IsPause = true;
         EndWhatIsDue(batch, position);
         _isPaused = true;
+        meter.SetOut(batch);
         return conveyor.Read.Writer.WriteAsync(batch, CancellationToken.None);
     }
 

@@ -5,7 +5,7 @@ using StreamLogit.Pipeline.State;
 namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Owns the engine: runs batches through it, captures its state where a commit follows, and publishes its health.</summary>
-internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, StateArchive? archive, LoopOptions options, TimeProvider time)
+internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, LoopMeter meter, StateArchive? archive, LoopOptions options, TimeProvider time)
 {
     // Some milliseconds at most, each time that health is published.
     private const int SlotsPerLook = 1 << 15;
@@ -38,8 +38,10 @@ internal sealed class ScoreStage(ScoringEngine engine, Conveyor conveyor, StateA
 
     private void Run(BatchInFlight batch)
     {
+        long start = meter.StartProcessing();
         if (batch.Records.Count > 0) engine.Process(batch.Records, batch.Scores);
         if (batch.IsEnd) engine.End(batch.Records);
+        meter.EndProcessing(batch, start);
         if (batch.CommitAt is not null && archive is not null)
         {
             batch.Changes = archive.Take();

@@ -1,12 +1,11 @@
 using System.Collections.Immutable;
-using StreamLogit.Engine.Persistence;
 using StreamLogit.Pipeline.State;
 using StreamLogit.Pipeline.Transactions;
 
 namespace StreamLogit.Pipeline.Stages;
 
 /// <summary>Writes what came of batches, and commits: first the outputs are made durable, then the state that counts them. Transactions end in between.</summary>
-internal sealed class WriteStage(StreamEnds ends, StateStore? state, Conveyor conveyor)
+internal sealed class WriteStage(StreamEnds ends, StateStore? state, Conveyor conveyor, LoopMeter meter, TimeProvider time)
 {
     private readonly RecentRejects _rejects = new();
     private readonly MergedOrder _order = new();
@@ -35,7 +34,8 @@ internal sealed class WriteStage(StreamEnds ends, StateStore? state, Conveyor co
             {
                 Write(batch);
                 if (batch.IsTransactionDue) EndTransaction();
-                if (batch.CommitAt is { } position) Commit(position, batch.Changes);
+                if (batch.CommitAt is { } position) Commit(position, batch);
+                meter.Arrive(batch);
                 // There is room for every batch that exists, unless another stage failed and closed the channel.
                 conveyor.Empty.Writer.TryWrite(batch);
             }
@@ -45,12 +45,14 @@ internal sealed class WriteStage(StreamEnds ends, StateStore? state, Conveyor co
     private void Write(BatchInFlight batch)
     {
         if (batch.Records.Count == 0 && batch.Records.Rejects.Count == 0) return;
+        long start = time.GetTimestamp();
         foreach (var sink in ends.Sinks)
         {
             if (batch.IsRepeated) sink.Repeat(batch.Records, batch.Scores);
             else sink.Write(batch.Records, batch.Scores);
         }
         if (ends.Transaction is not null && !batch.IsRepeated) _order.Add(batch.Records);
+        meter.EndWriting(batch, start);
         _rejects.Add(batch.Records);
         Volatile.Write(ref _records, _records + batch.Records.Count);
     }
@@ -67,14 +69,16 @@ internal sealed class WriteStage(StreamEnds ends, StateStore? state, Conveyor co
         Volatile.Write(ref _transactions, _transactions + 1);
     }
 
-    private void Commit(SourcePosition position, StateBlocks? changes)
+    private void Commit(SourcePosition position, BatchInFlight batch)
     {
+        long start = time.GetTimestamp();
         var marks = ImmutableSortedDictionary.CreateBuilder<string, long>(StringComparer.Ordinal);
         foreach (var sink in ends.Sinks) marks[sink.Name] = sink.Flush();
-        if (state is null || changes is null) return;
+        if (state is null || batch.Changes is not { } changes) return;
         state.Commit(new Checkpoint(position, marks.ToImmutable(), changes));
         state.Archive.Committed(changes);
         ends.Source.Committed(position);
         Volatile.Write(ref _commits, _commits + 1);
+        meter.EndCommit(batch, start);
     }
 }

@@ -5,6 +5,7 @@ using Microsoft.Extensions.Hosting;
 using Microsoft.Extensions.Logging;
 using StreamLogit.Pipeline;
 using StreamLogit.Worker.Alarms;
+using StreamLogit.Worker.Telemetry;
 using StreamLogit.Worker.Web;
 
 namespace StreamLogit.Worker.Hosting;
@@ -61,7 +62,9 @@ internal static class WorkerHost
         builder.Services.Configure<HostOptions>(options => options.ShutdownTimeout = ShutdownTimeout);
         builder.Services.AddSingleton(TimeProvider.System);
         builder.Services.AddSingleton(run);
+        builder.Services.AddSingleton<RunPhase>();
         // Services stop in the opposite order: the stream first, then what tells of it.
+        TelemetrySetup.Add(builder.Services, setup);
         AddAlarms(builder.Services, setup);
         builder.Services.AddHostedService<WorkerService>();
     }

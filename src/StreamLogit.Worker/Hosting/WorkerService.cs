@@ -5,7 +5,7 @@ using StreamLogit.Pipeline;
 namespace StreamLogit.Worker.Hosting;
 
 /// <summary>The run of a stream as a service of the host: it stops with the host, and the host with it.</summary>
-internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostApplicationLifetime lifetime, ILogger<WorkerService> logger) : BackgroundService
+internal sealed class WorkerService(StreamRun run, RunPhase phase, TimeProvider time, IHostApplicationLifetime lifetime, ILogger<WorkerService> logger) : BackgroundService
 {
     private static readonly TimeSpan ReportEvery = TimeSpan.FromMinutes(1);
 
@@ -26,12 +26,14 @@ internal sealed class WorkerService(StreamRun run, TimeProvider time, IHostAppli
 
             run.Rewound += reason => logger.GoesBack(Stream, reason);
             using var reports = time.CreateTimer(_ => Report(), null, ReportEvery, ReportEvery);
+            phase.IsRunning = true;
             await run.RunAsync(stoppingToken);
             if (stoppingToken.IsCancellationRequested) logger.Stopped(Stream);
             else logger.Ended(Stream);
         }
         finally
         {
+            phase.IsRunning = false;
             lifetime.StopApplication();
         }
     }

@@ -5,6 +5,7 @@ using Microsoft.AspNetCore.Hosting.Server;
 using Microsoft.AspNetCore.Hosting.Server.Features;
 using Microsoft.AspNetCore.Server.Kestrel.Core;
 using Microsoft.Extensions.DependencyInjection;
+using StreamLogit.Worker.Telemetry;
 using StreamLogit.Worker.Web.Access;
 
 namespace StreamLogit.Worker.Web;
@@ -43,6 +44,7 @@ internal static class WebServer
         app.UseMiddleware<KeyCheck>();
         LoginEndpoints.Map(app, app.Services.GetRequiredService<PageAccess>().Key, app.Services.GetRequiredService<TimeProvider>());
         HealthEndpoints.Map(app, app.Services.GetRequiredService<HealthFeed>());
+        ProbeEndpoints.Map(app);
     }
 
     /// <summary>Where it listens, once it does.</summary>

@@ -1,5 +1,6 @@
 using System.Net;
 using Microsoft.AspNetCore.Http;
+using StreamLogit.Worker.Telemetry;
 
 namespace StreamLogit.Worker.Web.Access;
 
@@ -11,7 +12,7 @@ internal sealed class HostCheck(PageAccess access) : IMiddleware
     /// <inheritdoc/>
     public Task InvokeAsync(HttpContext context, RequestDelegate next)
     {
-        if (IsKnown(context.Request.Host.Host, context.Connection.LocalIpAddress)) return next(context);
+        if (ProbeEndpoints.IsProbe(context.Request.Path) || IsKnown(context.Request.Host.Host, context.Connection.LocalIpAddress)) return next(context);
         context.Response.StatusCode = StatusCodes.Status421MisdirectedRequest;
         return context.Response.WriteAsync("This worker does not know the host name of the request. Names besides its address stand in listen.hosts of the definition.\n");
     }

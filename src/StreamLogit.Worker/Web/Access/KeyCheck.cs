@@ -1,5 +1,6 @@
 using System.Globalization;
 using Microsoft.AspNetCore.Http;
+using StreamLogit.Worker.Telemetry;
 
 namespace StreamLogit.Worker.Web.Access;
 
@@ -25,7 +26,7 @@ internal sealed class KeyCheck(PageAccess access, TimeProvider time) : IMiddlewa
         return context.Response.WriteAsync("The access key is missing: send it as \"Authorization: Bearer KEY\", or log in at /login.\n");
     }
 
-    private static bool IsOpen(PathString path) => path == "/login" || path == "/assets/page.css" || path == "/assets/icon.svg";
+    private static bool IsOpen(PathString path) => path == "/login" || path == "/assets/page.css" || path == "/assets/icon.svg" || ProbeEndpoints.IsProbe(path);
 
     private bool IsAllowed(AccessKey known, HttpRequest request)
     {
