@@ -33,11 +33,10 @@ internal sealed class ServedStream : IDisposable
     /// <summary>Where the page is, without a slash at the end.</summary>
     public string Address { get; }
 
-    /// <summary>The recording of a demo stream with its definition, which has slices and alarms besides.</summary>
+    /// <summary>The recording of a demo stream with its definition, and an alarm that is raised.</summary>
     public static ServedStream OfFerryTickets(int records = 12_000, string? key = null) => new(
         File.ReadAllText(DemoStreams.File("ferry-tickets.json")).Replace(
-            "\"windows\": [\"1d\", \"7d\", \"30d\"]",
-            "\"windows\": [\"1d\", \"7d\", \"30d\"], \"slices\": [\"channel\"], \"alarms\": [ { \"metric\": \"events\", \"window\": \"1d\", \"above\": 1, \"minimum\": 0 } ]",
+            "\"alarms\": [", "\"alarms\": [ { \"metric\": \"events\", \"window\": \"1d\", \"above\": 1, \"minimum\": 0 },",
             StringComparison.Ordinal),
         File.ReadAllLines(DemoStreams.File("ferry-tickets.jsonl")), records, key);
 

@@ -43,7 +43,7 @@ export class Chart {
       this.plot.setData(data);
       this.plot.setCursor({ left, top });
     }
-    if (this.text.textContent === "" && last >= 0) this.tell(null);
+    this.tell(this.plot?.cursor.idx ?? null);
   }
 
   create() {

@@ -21,10 +21,14 @@ internal static class Wording
 
     public static string Ratio(double value) => double.IsFinite(value) ? value.ToString("0.00", CultureInfo.InvariantCulture) : "–";
 
-    /// <summary>A range of labels: whole numbers where nothing is gained by decimals.</summary>
-    public static string Range(Interval range) => range.High < 10
-        ? string.Create(CultureInfo.InvariantCulture, $"{range.Low:0.#} to {range.High:0.#}")
-        : string.Create(CultureInfo.InvariantCulture, $"{Math.Floor(range.Low):N0} to {Math.Ceiling(range.High):N0}");
+    /// <summary>A range of numbers of labels: the least and the most whole number in it, where there are some.</summary>
+    public static string Range(Interval range)
+    {
+        var (low, high) = (Math.Ceiling(range.Low), Math.Floor(range.High));
+        return low <= high
+            ? string.Create(CultureInfo.InvariantCulture, $"{low:N0} to {high:N0}")
+            : string.Create(CultureInfo.InvariantCulture, $"{range.Low:0.#} to {range.High:0.#}");
+    }
 
     public static string Of(double count, string singular, string plural) => $"{Count(count)} {(count == 1 ? singular : plural)}";
 

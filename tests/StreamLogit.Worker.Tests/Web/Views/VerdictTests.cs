@@ -14,7 +14,7 @@ public sealed class VerdictTests
         var verdict = Verdict.Of(Figures(10_000, Promised(150, 140, 151), alerts: 1204, Promised(96.3, 55, 101)), Week, awaiting: 0);
 
         Assert.Equal((Standing.Holds, "Probabilities hold", null), (verdict.Standing, verdict.Title, verdict.Note));
-        Assert.Equal("of 1,204 alerts in the last 7 days promised 96.3 bad, 101 came (80 % range 86 to 106).", verdict.Sentence);
+        Assert.Equal("of 1,204 alerts in the last 7 days promised 96.3 bad, 101 came (80 % range 87 to 105).", verdict.Sentence);
     }
 
     [Theory]
