@@ -27,9 +27,7 @@ internal sealed class LabelCorrection
         ofRight.Subtract(ofWrong);
         LabelSums.Of(_sums) = ofRight;
         for (int i = 0; i < _cell.Length; i++) _cell[i] = after[Bin][i] - before[Bin][i];
-        Span<LastLabel> both = new LastLabel[2];
-        run.CopyTo(both, 0);
-        Right = both[1];
+        Right = run.KeptOf(1);
     }
 
     /// <summary>What is added to the sums.</summary>

@@ -40,6 +40,15 @@ internal sealed class LabelRun
     /// <summary>-ln of the probability that was published for what happened, finite even where that rounds to 0.</summary>
     public ReadOnlySpan<double> LogLosses => _logLosses.AsSpan(0, Count);
 
+    /// <summary>The log-odds that were published for each label's event.</summary>
+    public ReadOnlySpan<double> LogOdds => _logOdds.AsSpan(0, Count);
+
+    /// <summary>-ln of the probability that the base rate gave to each.</summary>
+    public ReadOnlySpan<double> BaseRateLogLosses => _baseRateLogLosses.AsSpan(0, Count);
+
+    /// <summary>Whether the decision on each label's event was <c>alert</c>.</summary>
+    public ReadOnlySpan<bool> Alerts => _alerts.AsSpan(0, Count);
+
     /// <summary>0 or 1.</summary>
     public ReadOnlySpan<double> Labels => _labels.AsSpan(0, Count);
 
@@ -91,19 +100,15 @@ internal sealed class LabelRun
         _baseRateLogLosses[i] = label.BaseRateLogLoss;
     }
 
-    /// <summary>Writes what the window of the last labels keeps of some, from the label of a place on.</summary>
-    public void CopyTo(Span<LastLabel> target, int first)
+    /// <summary>What the window of the last labels keeps of a label.</summary>
+    public LastLabel KeptOf(int i) => new()
     {
-        for (int i = 0; i < target.Length; i++)
-        {
-            ref var kept = ref target[i];
-            kept.LogOdds = _logOdds[first + i];
-            kept.Weight = _weights[first + i];
-            kept.BaseRateLogLoss = _baseRateLogLosses[first + i];
-            kept.Label = (int)_labels[first + i];
-            kept.Alert = _alerts[first + i] ? 1 : 0;
-        }
-    }
+        LogOdds = _logOdds[i],
+        Weight = _weights[i],
+        BaseRateLogLoss = _baseRateLogLosses[i],
+        Label = (int)_labels[i],
+        Alert = _alerts[i] ? 1 : 0,
+    };
 
     /// <summary>Computes what the base rate loses on each label.</summary>
     public void ComputeBaseRate()
@@ -195,16 +200,22 @@ internal sealed class LabelRun
         AddCell(tally, _logOdds[i], Vector256.Create(w * _probabilities[i], w * _labels[i], w, w * w));
     }
 
-    /// <summary>Adds one label to the sums of the events that were scored when its event was.</summary>
-    public void AddTo(int i, ref CohortSums sums)
+    /// <summary>Adds labels, from one place to before another, to the sums of the events that were scored when theirs were.</summary>
+    public void AddTo(int first, int end, ref CohortSums sums)
     {
-        double w = _weights[i];
-        sums.Labelled += _standsFor[i];
-        sums.Weight += w;
-        sums.LogLoss += w * _logLosses[i];
-        sums.BaseRateLogLoss += w * _baseRateLogLosses[i];
-        sums.Probability += w * _probabilities[i];
-        sums.Positive += w * _labels[i];
+        // A copy, which stays in registers.
+        var all = sums;
+        for (int i = first; i < end; i++)
+        {
+            double w = _weights[i];
+            all.Labelled += _standsFor[i];
+            all.Weight += w;
+            all.LogLoss += w * _logLosses[i];
+            all.BaseRateLogLoss += w * _baseRateLogLosses[i];
+            all.Probability += w * _probabilities[i];
+            all.Positive += w * _labels[i];
+        }
+        sums = all;
     }
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]

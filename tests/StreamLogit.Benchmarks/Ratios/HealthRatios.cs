@@ -15,6 +15,7 @@ internal static class HealthRatios
 {
     private const int Batches = 5;
     private const int EventsPerBatch = 2000;
+    private const int Rounds = 600;
 
     /// <summary>Time with health over time without.</summary>
     /// <param name="eventsPerMinute">How many events share a minute of the stream's clock.</param>
@@ -22,7 +23,7 @@ internal static class HealthRatios
     public static double OnAgainstOff(int eventsPerMinute, params string[] slices)
     {
         Pass on = new(eventsPerMinute, slices, isOn: true), off = new(eventsPerMinute, slices, isOn: false);
-        return Pairs.LeastRatio(on.Run, off.Run);
+        return Pairs.LeastRatio(on.Run, off.Run, Rounds);
     }
 
     private sealed class Pass

@@ -5,7 +5,10 @@ using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Health.Cohorts;
 
-/// <summary>Counts labels at the time at which their events were scored.</summary>
+/// <summary>
+/// Counts labels at the time at which their events were scored: in the hour, and in the day where that hour is not kept any more. An hour that falls out of what is kept is
+/// added to its day.
+/// </summary>
 /// <param name="history">How many hours and days are kept.</param>
 internal sealed class CohortLedger(HealthHistoryOptions history)
 {
@@ -21,25 +24,32 @@ internal sealed class CohortLedger(HealthHistoryOptions history)
     /// <summary>Moves to an hour, counted from 1970, that is not before the present one.</summary>
     public void MoveTo(long hour)
     {
-        if (hour != _hours.Open) _hours.MoveTo(hour);
+        if (hour == _hours.Open) return;
         if (DayOf(hour) != _days.Open) _days.MoveTo(DayOf(hour));
+        long last = Math.Min(_hours.Open, hour - history.Hours);
+        for (long old = _hours.First; old <= last; old++) Retire(old, _hours[old]);
+        _hours.MoveTo(hour);
     }
 
     /// <summary>Counts events that were scored in the present hour.</summary>
     public void CountEvents(double events)
     {
         if (_hours.TryUse(_hours.Open, out int hour)) _hours.At(hour).Events += events;
-        if (_days.TryUse(_days.Open, out int day)) _days.At(day).Events += events;
     }
 
     /// <summary>Counts labels.</summary>
     public void CountLabels(LabelRun run)
     {
-        for (int i = 0; i < run.Count; i++)
+        var scoredAt = run.ScoredAt;
+        for (int i = 0; i < scoredAt.Length;)
         {
-            long hour = HourOf(run.ScoredAt[i]);
-            if (_hours.TryUse(hour, out int place)) run.AddTo(i, ref _hours.At(place));
-            if (_days.TryUse(DayOf(hour), out place)) run.AddTo(i, ref _days.At(place));
+            // Labels of the same hour often come together.
+            long hour = HourOf(scoredAt[i]), start = hour * MicrosecondsOfHour;
+            int end = i + 1;
+            while (end < scoredAt.Length && (ulong)(scoredAt[end] - start) < MicrosecondsOfHour) end++;
+            if (_hours.TryUse(hour, out int place)) run.AddTo(i, end, ref _hours.At(place));
+            else if (_days.TryUse(DayOf(hour), out place)) run.AddTo(i, end, ref _days.At(place));
+            i = end;
         }
     }
 
@@ -48,7 +58,7 @@ internal sealed class CohortLedger(HealthHistoryOptions history)
     {
         long hour = HourOf(scoredAtMicroseconds);
         if (_hours.TryUse(hour, out int place)) Add(ref _hours.At(place), change);
-        if (_days.TryUse(DayOf(hour), out place)) Add(ref _days.At(place), change);
+        else Retire(hour, change);
     }
 
     /// <summary>The figures of now.</summary>
@@ -56,9 +66,23 @@ internal sealed class CohortLedger(HealthHistoryOptions history)
     /// <param name="openEvents">Events of the present hour that are not counted yet.</param>
     public CohortFigures Figures(long clockMicroseconds, double openEvents)
     {
-        var hours = Read(_hours, MicrosecondsOfHour, openEvents);
-        var days = Read(_days, HoursOfDay * MicrosecondsOfHour, openEvents);
-        return new CohortFigures(hours, days, ByAge(hours, days, clockMicroseconds));
+        var hours = ImmutableArray.CreateBuilder<EventCohort>();
+        var days = ImmutableArray.CreateBuilder<EventCohort>();
+        long hour = _hours.First;
+        for (long day = _days.First; day <= _days.Open; day++)
+        {
+            var sums = _days[day];
+            for (; hour <= _hours.Open && DayOf(hour) <= day; hour++)
+            {
+                var ofHour = _hours[hour];
+                if (hour == _hours.Open) ofHour.Events += openEvents;
+                if (!ofHour.IsEmpty) hours.Add(Cohort(hour, MicrosecondsOfHour, ofHour));
+                if (DayOf(hour) == day) Add(ref sums, ofHour);
+            }
+            if (!sums.IsEmpty) days.Add(Cohort(day, HoursOfDay * MicrosecondsOfHour, sums));
+        }
+        var (allHours, allDays) = (hours.DrainToImmutable(), days.DrainToImmutable());
+        return new CohortFigures(allHours, allDays, ByAge(allHours, allDays, clockMicroseconds));
     }
 
     public void Save(StateBlocks changes)
@@ -69,24 +93,18 @@ internal sealed class CohortLedger(HealthHistoryOptions history)
 
     public void Load(StateBlocks state)
     {
-        _hours.Load(state);
-        _days.Load(state);
+        _days.Load(state, dropped: null);
+        _hours.Load(state, Retire);
     }
 
-    private static ImmutableArray<EventCohort> Read(CohortRing ring, long length, double openEvents)
+    private void Retire(long hour, CohortSums sums)
     {
-        var cohorts = ImmutableArray.CreateBuilder<EventCohort>();
-        for (long number = ring.First; number <= ring.Open; number++)
-        {
-            var sums = ring[number];
-            if (number == ring.Open) sums.Events += openEvents;
-            if (sums.Events == 0 && sums.Labelled == 0) continue;
-            cohorts.Add(new EventCohort(
-                number * length, length, (long)sums.Events, sums.Labelled, sums.Weight, sums.LogLoss / sums.Weight, sums.BaseRateLogLoss / sums.Weight,
-                sums.Probability / sums.Weight, sums.Positive / sums.Weight));
-        }
-        return cohorts.DrainToImmutable();
+        if (_days.TryUse(DayOf(hour), out int place)) Add(ref _days.At(place), sums);
     }
+
+    private static EventCohort Cohort(long number, long length, in CohortSums sums) => new(
+        number * length, length, (long)sums.Events, sums.Labelled, sums.Weight, sums.LogLoss / sums.Weight, sums.BaseRateLogLoss / sums.Weight,
+        sums.Probability / sums.Weight, sums.Positive / sums.Weight);
 
     private static ImmutableArray<LabelledAtAge> ByAge(ImmutableArray<EventCohort> hours, ImmutableArray<EventCohort> days, long clock)
     {
@@ -115,6 +133,7 @@ internal sealed class CohortLedger(HealthHistoryOptions history)
 
     private static void Add(ref CohortSums sums, in CohortSums change)
     {
+        sums.Events += change.Events;
         sums.Labelled += change.Labelled;
         sums.Weight += change.Weight;
         sums.LogLoss += change.LogLoss;

@@ -64,8 +64,10 @@ internal sealed class CohortRing(string part, int kept)
         foreach (var (number, range) in _dirty.Take()) changes.Put(part, number, MemoryMarshal.AsBytes(_sums.AsSpan(range)));
     }
 
-    /// <summary>Takes up what was saved; where another number was kept, as many as there are and fit.</summary>
-    public void Load(StateBlocks state)
+    /// <summary>Takes up what was saved; where more were kept, as many as fit.</summary>
+    /// <param name="state">The state.</param>
+    /// <param name="dropped">Is given those that do not fit.</param>
+    public void Load(StateBlocks state, Action<long, CohortSums>? dropped)
     {
         if (state.Find(part, -1) is not { } head) return;
         var numbers = MemoryMarshal.Cast<byte, long>(head);
@@ -81,6 +83,7 @@ internal sealed class CohortRing(string part, int kept)
         if (open == long.MinValue) return;
         _open = open;
         _first = Math.Max(first, open - Math.Min(length, kept) + 1);
+        for (long number = first; number < _first; number++) dropped?.Invoke(number, saved[number & (length - 1)]);
         for (long number = _first; number <= open; number++) _sums[PlaceOf(number)] = saved[number & (length - 1)];
         if (length != _sums.Length) _dirty.MarkAll();
     }

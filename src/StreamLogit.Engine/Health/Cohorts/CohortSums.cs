@@ -1,4 +1,3 @@
-using System.Runtime.CompilerServices;
 using System.Runtime.InteropServices;
 
 namespace StreamLogit.Engine.Health.Cohorts;
@@ -28,6 +27,6 @@ internal struct CohortSums
     /// <summary>Sum of weight over labels 1.</summary>
     public double Positive;
 
-    /// <summary>How many numbers these are.</summary>
-    public static int Numbers => Unsafe.SizeOf<CohortSums>() / sizeof(double);
+    /// <summary>Whether nothing happened.</summary>
+    public readonly bool IsEmpty => Events == 0 && Weight == 0 && Labelled == 0;
 }

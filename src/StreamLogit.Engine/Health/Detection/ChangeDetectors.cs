@@ -22,7 +22,7 @@ internal sealed class ChangeDetectors
 
     private const string Part = "health/detectors";
     private const int Detectors = 3;
-    private const int GroupsPerCheck = 8; // looking for a cut costs much more than adding a group
+    private const int GroupsPerCheck = 16; // looking for a cut costs much more than adding a group
     private const int KeptChanges = 64;
     private const double Ln2 = 0.69314718055994531;
 

@@ -111,6 +111,18 @@ public class CohortTests
         }
         Assert.Equal(whole.Snapshot.Cohorts, resumed.Snapshot.Cohorts);
         Assert.Equal(30, whole.Snapshot.Cohorts.Hours.Length);
+        Assert.Equal(7, whole.Snapshot.Cohorts.Days.Length);
+    }
+
+    [Fact]
+    public void CountLabel_EventsOfHoursThatAreNotKept_CountInTheirDays()
+    {
+        LedgerRun few = new(new HealthOptions { History = new HealthHistoryOptions { Hours = 24, Days = 30 } }), all = new();
+        for (int i = 0; i < 2000; i++)
+            foreach (var run in new[] { few, all }) run.Label((i + 1000) * 20 * LedgerRun.Minute, Math.Sin(i), i % 2, delay: i % 9 * 25 * LedgerRun.Hour);
+        var (expected, got) = (all.Snapshot.Cohorts.Days.TakeLast(25), few.Snapshot.Cohorts.Days.TakeLast(25));
+        Assert.Equal(expected.Select(d => (d.FromMicroseconds, d.Labelled, d.ObservedRate)), got.Select(d => (d.FromMicroseconds, d.Labelled, d.ObservedRate)));
+        Assert.All(expected.Zip(got), pair => Assert.Equal(pair.First.LogLoss, pair.Second.LogLoss, 1e-12));
     }
 
     [Theory]
@@ -128,5 +140,8 @@ public class CohortTests
         Assert.Equal(run.Snapshot.Cohorts.Hours.TakeLast(30), other.Snapshot.Cohorts.Hours);
         other.Resume(kept);
         Assert.Equal(run.Snapshot.Cohorts.Hours.TakeLast(30), other.Snapshot.Cohorts.Hours);
+        // Days hold the hours that are not kept.
+        Assert.Equal(120, other.Snapshot.Cohorts.Days.Sum(d => d.Labelled));
+        Assert.All(run.Snapshot.Cohorts.Days.Zip(other.Snapshot.Cohorts.Days), pair => Assert.Equal(pair.First.LogLoss, pair.Second.LogLoss, 1e-12));
     }
 }
