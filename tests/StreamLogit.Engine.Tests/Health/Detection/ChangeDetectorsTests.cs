@@ -20,6 +20,7 @@ public class ChangeDetectorsTests
             fired += run.Snapshot.Detectors.Sum(d => d.Fired);
         }
         double asked = (double)Streams * Length / LabelsPerFalseAlarm;
+        TestContext.Current.TestOutputHelper?.WriteLine($"{fired} false alarms, {asked} asked for");
         Assert.True(fired <= asked, $"{fired} false alarms, {asked} asked for");
     }
 
@@ -51,6 +52,8 @@ public class ChangeDetectorsTests
         }
         // About 5 % of labels are 1; odds that are twice as high give 0.3 nats for each 20 labels, and ln(3 * 20,000 / 32) = 7.5 must be reached.
         Assert.Equal(100, delays.Count);
+        TestContext.Current.TestOutputHelper?.WriteLine(FormattableString.Invariant(
+            $"found after {delays.Average():F0} labels on average, after {delays.Order().ElementAt(94)} in 95 of 100; the start is told {sinceErrors.Average():F0} labels late on average"));
         Assert.InRange(delays.Average(), 100, 1200);
         Assert.InRange(delays.Order().ElementAt(94), 100, 2500);
         Assert.InRange(sinceErrors.Average(), -800, 400);
