@@ -145,6 +145,35 @@ public sealed class HealthPageTests(ChromiumFixture chromium, ServedFerryTickets
     }
 
     [Fact]
+    public async Task Text_OfTheStream_StaysText()
+    {
+        const string hostile = "<img src=x onerror=alert(1)>";
+        string definition = $$"""
+            {
+              "stream": "{{hostile}}",
+              "features": [ { "category": "c<b>" } ],
+              "health": { "windows": ["1d"], "slices": ["c<b>"] }
+            }
+            """;
+        string[] records =
+        [
+            .. Enumerable.Range(0, 600).Select(i =>
+                $$"""{"id":"{{i}}","time":"2026-03-01T{{i / 60:00}}:{{i % 60:00}}:00Z","c<b>":"{{hostile}}{{i % 2}}","label":{{i % 5 / 4}}}"""),
+            hostile,
+        ];
+        using var stream = new ServedStream(definition, records, records.Length);
+        await using var watched = await OpenAsync(await chromium.OpenAsync(), stream.Address);
+        await watched.WaitForAsync("document.querySelector('#table-reject-examples tbody td')", "the example of a reject");
+
+        Assert.Equal(hostile, await watched.Page.InnerTextAsync("#stream"));
+        Assert.Contains(hostile, await watched.Page.InnerTextAsync("#table-reject-examples"), StringComparison.Ordinal);
+        Assert.Contains(hostile, await watched.Page.InnerTextAsync("#table-slices"), StringComparison.Ordinal);
+        Assert.Contains(hostile, await watched.Page.InnerTextAsync("#table-coefficients"), StringComparison.Ordinal);
+        Assert.Equal(0, await watched.Page.Locator("img").CountAsync());
+        Assert.Empty(watched.Complaints);
+    }
+
+    [Fact]
     public async Task EveryPanel_HasATableAndFiles()
     {
         await using var watched = await OpenAsync(await chromium.OpenAsync());

@@ -14,8 +14,8 @@ public sealed class LoginTests(ChromiumFixture chromium)
     {
         using var stream = ServedStream.OfFerryTickets(records: 3_000, Key);
         await using var watched = await chromium.OpenAsync();
-        await watched.Page.GotoAsync(stream.Address);
-        Assert.Equal(stream.Address + "/login", watched.Page.Url);
+        await watched.Page.GotoAsync(stream.Address + "/?window=30d&slice=channel%3Dweb");
+        Assert.Equal(stream.Address + "/login?window=30d&slice=channel%3Dweb", watched.Page.Url);
         Assert.Empty(await watched.FindAxeViolationsAsync());
 
         await GiveAsync(watched.Page, "not-the-key-at-all");
@@ -25,6 +25,7 @@ public sealed class LoginTests(ChromiumFixture chromium)
         await GiveAsync(watched.Page, Key);
         await watched.WaitForAsync("document.getElementById('link')?.dataset.state === 'live'", "the page to follow the stream");
 
+        Assert.Equal(stream.Address + "/?window=30d&slice=channel%3Dweb", watched.Page.Url);
         var cookie = Assert.Single(await watched.Context.CookiesAsync());
         Assert.Equal((true, true, SameSiteAttribute.Strict), (cookie.HttpOnly, cookie.Secure, cookie.SameSite));
         Assert.DoesNotContain(Key, cookie.Value, StringComparison.Ordinal);

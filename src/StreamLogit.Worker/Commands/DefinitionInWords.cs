@@ -38,6 +38,12 @@ internal static class DefinitionInWords
         yield return "";
         yield return "Files and topics";
         foreach (string line in Files(definition)) yield return $"  {line}";
+        if (definition.Listen is { } page)
+        {
+            yield return "";
+            yield return "Page";
+            yield return $"  {Describe(page)}";
+        }
         yield return "";
         yield return "Memory";
         yield return $"  {Memory(engine)}";
@@ -148,6 +154,14 @@ internal static class DefinitionInWords
 
     private static string Words(KafkaSourceOptions topics) =>
         $"records from the {(topics.AllTopics.Count() == 1 ? "topic" : "topics")} {string.Join(", ", topics.AllTopics)} as {topics.Instance} of the group {topics.Group}";
+
+    private static string Describe(ListenOptions page)
+    {
+        string scheme = page.Certificate is null ? "http" : "https";
+        string names = page.Hosts.IsEmpty ? "" : $", also as {string.Join(", ", page.Hosts)}";
+        string key = page.KeyFile is { } file ? $"the key in {file}" : page.KeyVariable is { } variable ? $"the key in the environment variable {variable}" : "no key, as only this machine can reach it";
+        return $"health at {scheme}://{new System.Net.IPEndPoint(page.Address, page.Port)}{names}; asks for {key}";
+    }
 
     private static string Words(RecordingFormat format) => format switch
     {

@@ -29,6 +29,16 @@ public sealed class CheckCommandTests
         Assert.Contains("alert from probability 0.75", result.Output, StringComparison.Ordinal);
     }
 
+    [Theory]
+    [InlineData("http://127.0.0.1:7070", "health at http://127.0.0.1:7070; asks for no key, as only this machine can reach it")]
+    [InlineData("{\"url\":\"http://[::]:80\",\"hosts\":[\"a.example\"],\"keyVariable\":\"PAGE_KEY\"}", "health at http://[::]:80, also as a.example; asks for the key in the environment variable PAGE_KEY")]
+    public void Check_Listen_SaysWhereThePageIsAndWhoSeesIt(string listen, string expected)
+    {
+        var result = StreamLogitProcess.Run("check", DemoStreams.File("ferry-tickets.json"), "--set", $"listen={listen}");
+
+        Assert.Contains($"\n  {expected}\n", result.Output, StringComparison.Ordinal);
+    }
+
     [Fact]
     public void Check_EnvironmentVariable_OverridesTheDefinitionButNotSet()
     {

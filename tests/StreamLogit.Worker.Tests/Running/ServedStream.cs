@@ -14,7 +14,8 @@ internal sealed class ServedStream : IDisposable
     /// <param name="records">The records.</param>
     /// <param name="given">How many of them are there at first.</param>
     /// <param name="key">The access key, or null for none.</param>
-    public ServedStream(string definition, string[] records, int given, string? key = null)
+    /// <param name="listen">The key <c>listen</c> of the definition, or null for any free port of loopback.</param>
+    public ServedStream(string definition, string[] records, int given, string? key = null, string? listen = null)
     {
         _records = records;
         Give(given);
@@ -24,7 +25,8 @@ internal sealed class ServedStream : IDisposable
             StreamLogitProcess.Program, "run", path, "--set", $"source.file={_folder["records.jsonl"]}", "--set", "source.follow=true", "--set", "source.format=jsonl",
             "--set", $"scores.file={_folder["scores.jsonl"]}", "--set", $"rejects.file={_folder["rejects.jsonl"]}", "--set", $"state.folder={_folder["state"]}",
         ];
-        arguments.AddRange(key is null ? ["--set", "listen=http://127.0.0.1:0"] : ["--set", "listen={\"url\":\"http://127.0.0.1:0\",\"keyVariable\":\"PAGE_KEY\"}"]);
+        listen ??= key is null ? "http://127.0.0.1:0" : "{\"url\":\"http://127.0.0.1:0\",\"keyVariable\":\"PAGE_KEY\"}";
+        arguments.AddRange(["--set", $"listen={listen}"]);
         _worker = StreamLogitProcess.Start("dotnet", [.. arguments], key is null ? [] : [("PAGE_KEY", key)], []);
         string line = _worker.WaitForMessage(Announcement);
         Address = line[(line.IndexOf(Announcement, StringComparison.Ordinal) + Announcement.Length)..].Trim();
@@ -39,6 +41,10 @@ internal sealed class ServedStream : IDisposable
             "\"alarms\": [", "\"alarms\": [ { \"metric\": \"events\", \"window\": \"1d\", \"above\": 1, \"minimum\": 0 },",
             StringComparison.Ordinal),
         File.ReadAllLines(DemoStreams.File("ferry-tickets.jsonl")), records, key);
+
+    /// <summary>Ten records of a demo stream, served as this says.</summary>
+    public static ServedStream Listening(string listen) => new(
+        File.ReadAllText(DemoStreams.File("ferry-tickets.json")), File.ReadAllLines(DemoStreams.File("ferry-tickets.jsonl")), given: 10, listen: listen);
 
     /// <summary>Lets the recording grow until it holds so many records.</summary>
     public void Give(int records)

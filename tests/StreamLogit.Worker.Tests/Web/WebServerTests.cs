@@ -147,6 +147,22 @@ public sealed class WebServerTests(WebServerTests.Server server) : IClassFixture
         Assert.Equal((HttpStatusCode.Unauthorized, HttpStatusCode.OK), (wrong.StatusCode, right.StatusCode));
     }
 
+    [Theory]
+    [InlineData("/login?next=https%3A%2F%2Fevil.example", "/")]
+    [InlineData("/login?window=7d&slice=%2F%2Fevil.example", "/?window=7d&slice=%2F%2Fevil.example")]
+    public async Task Login_WithTheKey_LeadsToThePageAndNowhereElse(string path, string expected)
+    {
+        using var stream = ServedStream.OfFerryTickets(records: 10, Key);
+        using var client = new HttpClient(new HttpClientHandler { AllowAutoRedirect = false, UseCookies = false });
+        using var form = new FormUrlEncodedContent([new("key", Key)]);
+
+        using var answer = await client.PostAsync(new Uri(stream.Address + path), form, Cancellation);
+
+        Assert.Equal((HttpStatusCode.SeeOther, expected), (answer.StatusCode, answer.Headers.Location?.OriginalString));
+        string cookie = Assert.Single(answer.Headers.GetValues("Set-Cookie"));
+        Assert.All(new[] { "secure", "httponly", "samesite=strict", "path=/" }, part => Assert.Contains($"; {part}", cookie, StringComparison.Ordinal));
+    }
+
     [Fact]
     public async Task Logins_TooMany_AreRefusedForAWhile()
     {

@@ -74,7 +74,7 @@ async function lost() {
 async function fetchOnce() {
   try {
     const answer = await fetch(`/data/view${query()}`);
-    if (answer.status === 401) location.assign("/login");
+    if (answer.status === 401) location.assign(`/login${query()}`);
     if (!answer.ok) return false;
     show(await answer.json());
     return true;

@@ -159,19 +159,39 @@ class DriftPanel extends Panel {
   }
 }
 
+// A share that grows with a length of time, which is told on a logarithmic axis.
+const growth = (label, name, words) => new Chart({
+  label,
+  x: "log",
+  series: [{ label: name, colour: "came" }],
+  values: (plot, ticks) => ticks.map((tick) => share(tick)),
+  range: () => [0, 1],
+  xValues: { splits: delayTicks, filter: (plot, ticks) => ticks, values: (plot, ticks) => ticks.map((tick) => duration(tick)) },
+  readout: (point, data) => words(share(data[1][point]), duration(data[0][point])),
+});
+
+class AgePanel extends Panel {
+  constructor() {
+    const chart = growth("Share of events that have their label, by their age", "events that have their label", (part, age) => `${part} at an age of ${age}`);
+    super({
+      title: "What is known by now", table: "labelled-by-age", body: [chart.element, el("p", { class: "none", hidden: true }, "No events yet.")],
+      text: "The share of all events of an age whose label has come. Where it ends below 100 %, some labels never come.",
+    });
+    this.chart = chart;
+  }
+
+  draw(view, table) {
+    this.body.lastChild.hidden = table.rows.length > 0;
+    this.chart.element.hidden = table.rows.length === 0;
+    if (table.rows.length) this.chart.update([column(table, "youngerSeconds"), column(table, "share")]);
+  }
+}
+
 class DelayPanel extends Panel {
   constructor() {
-    const chart = new Chart({
-      label: "Share of late labels that had come after a time",
-      x: "log",
-      series: [{ label: "labels that had come", colour: "came" }],
-      values: (plot, ticks) => ticks.map((tick) => share(tick)),
-      range: () => [0, 1],
-      xValues: { splits: delayTicks, filter: (plot, ticks) => ticks, values: (plot, ticks) => ticks.map((tick) => duration(tick)) },
-      readout: (point, data) => `${share(data[1][point])} within ${duration(data[0][point])}`,
-    });
+    const chart = growth("Share of late labels that had come after a time", "labels that had come", (part, time) => `${part} within ${time}`);
     super({
-      title: "How long labels take", table: "delays", body: [chart.element, el("p", { class: "empty", hidden: true }, "No label came after its event yet.")],
+      title: "How long labels take", table: "delays", body: [chart.element, el("p", { class: "none", hidden: true }, "No label came after its event yet.")],
       text: "From an event to its label, on the stream’s clock; of those labels that came in records of their own.",
     });
     this.chart = chart;
@@ -193,11 +213,12 @@ class StreamPanel extends Panel {
   constructor() {
     const chart = new Chart({
       label: "Share of events that are alerts, over time",
+      height: 190,
       series: [{ label: "share of events that are alerts", colour: "came" }],
       values: (plot, ticks) => ticks.map((tick) => share(tick)),
       readout: (point, data) => `${time(data[0][point] * 1000)}: ${share(data[1][point])} of ${cell("count", data[2][point])} events, ${cell("count", data[3][point])} labels came`,
     });
-    super({ title: "Alerts and events", table: "stream", body: [chart.element], text: "Of the whole stream." });
+    super({ title: "Alerts and events", span: 12, table: "stream", body: [chart.element], text: "Of the whole stream." });
     this.chart = chart;
   }
 
@@ -310,9 +331,10 @@ export function createPanels(choose) {
       text: "By detectors that watch the published log-loss label by label, whatever the window.",
     }),
     new DelayPanel(),
-    new StreamPanel(),
+    new AgePanel(),
     new BlendPanel(),
     new TablePanel({ title: "The bank: settings", table: "settings", none: "No labels yet.", text: "How each setting would have done, had it been published alone." }),
+    new StreamPanel(),
     new TablePanel({ title: "Alarms", span: 12, table: "alarms", none: "The definition has no alarms.", render: { state: flag } }),
     new TablePanel({ title: "When alarms were raised", span: 12, table: "alarm-changes", none: "No alarm was ever raised.", render: { state: flag } }),
     new TablePanel({ title: "Rejects", span: 4, table: "rejects", none: "No record was rejected." }),

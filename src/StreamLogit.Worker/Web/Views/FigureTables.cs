@@ -7,6 +7,7 @@ namespace StreamLogit.Worker.Web.Views;
 internal static class FigureTables
 {
     private const int ReliabilityGroups = 10;
+    private const double WidestAge = 7.0 / 6;
 
     public static DataTable Reliability(HealthFigures figures)
     {
@@ -65,6 +66,30 @@ internal static class FigureTables
         return table;
     }
 
+    /// <summary>How many of the events of an age have their label: ages that differ by a sixth or less stand together.</summary>
+    public static DataTable LabelledByAge(HealthSnapshot health)
+    {
+        var table = new DataTable(
+            "labelled-by-age", "How many events have their label, by age",
+            new("olderSeconds", "older than", ColumnKind.Seconds),
+            new("youngerSeconds", "younger than", ColumnKind.Seconds),
+            new("events", "events", ColumnKind.Count),
+            new("labelled", "with their label", ColumnKind.Amount),
+            new("share", "share", ColumnKind.Share));
+        long from = 0, events = 0;
+        double labelled = 0;
+        var ages = health.Cohorts.ByAge;
+        for (int i = 0; i < ages.Length; i++)
+        {
+            events += ages[i].Events;
+            labelled += ages[i].Labelled;
+            if (ages[i].ToMicroseconds < from * WidestAge && i < ages.Length - 1) continue;
+            if (events > 0) table.Add(from / 1e6, ages[i].ToMicroseconds / 1e6, events, labelled, labelled / events);
+            (from, events, labelled) = (ages[i].ToMicroseconds, 0, 0);
+        }
+        return table;
+    }
+
     public static DataTable Settings(Selection selection)
     {
         var table = new DataTable(
@@ -103,7 +128,7 @@ internal static class FigureTables
         new("high80", "80 % to", ColumnKind.Amount),
         new("came", "came", ColumnKind.Amount),
         new("logLoss", "log-loss", ColumnKind.Figure),
-        new("logLossRatio", "to base rate’s", ColumnKind.Figure),
+        new("logLossRatio", "ratio to base rate", ColumnKind.Figure),
         new("brier", "Brier", ColumnKind.Figure),
         new("auc", "AUC", ColumnKind.Figure),
         new("calibrationIntercept", "intercept", ColumnKind.Figure),

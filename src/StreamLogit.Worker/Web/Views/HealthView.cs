@@ -22,6 +22,7 @@ internal sealed class HealthView
             FigureTables.Reliability(Selection.Figures),
             FigureTables.Drift(Selection),
             FigureTables.Delays(Selection.Stream ?? health.Stream),
+            FigureTables.LabelledByAge(health),
             CurveTables.Stream(ofStream),
             CurveTables.Blend(ofStream, health.Settings),
             FigureTables.Settings(Selection),
