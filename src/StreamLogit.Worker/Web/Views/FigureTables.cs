@@ -1,3 +1,4 @@
+using System.Collections.Immutable;
 using StreamLogit.Engine.Definition;
 using StreamLogit.Engine.Health;
 
@@ -8,6 +9,9 @@ internal static class FigureTables
 {
     private const int ReliabilityGroups = 10;
     private const double WidestAge = 7.0 / 6;
+
+    private static readonly ImmutableArray<DataColumn> CalibrationColumns =
+        [new("calibrationIntercept", "intercept", ColumnKind.Figure), new("calibrationSlope", "slope", ColumnKind.Figure)];
 
     public static DataTable Reliability(HealthFigures figures)
     {
@@ -104,43 +108,48 @@ internal static class FigureTables
 
     public static DataTable Windows(HealthSnapshot health, ViewChoice choice)
     {
-        var table = Labels("windows", "All windows", "window", "window");
+        var table = Labels("windows", "All windows", "window", "window", withCalibration: true);
         var windows = ViewChoice.Find(health, choice.Slice)?.Windows ?? health.Windows;
         var total = ViewChoice.Find(health, choice.Slice)?.Total ?? health.Total;
-        foreach (var (name, figures) in windows.Select(w => (w.Name, w.Figures)).Append(("since the start", total))) AddLabels(table, name, figures);
+        foreach (var (name, figures) in windows.Select(w => (w.Name, w.Figures)).Append(("since the start", total))) AddLabels(table, name, figures, withCalibration: true);
         return table;
     }
 
     public static DataTable Slices(HealthSnapshot health, HealthOptions options, ViewChoice choice)
     {
-        var table = Labels("slices", "Slices", "slice", "slice");
+        var table = Labels("slices", "Slices", "slice", "slice", withCalibration: false);
         int window = Enumerable.Range(0, options.Windows.Length).FirstOrDefault(i => options.Windows[i].Name == choice.Window, -1);
-        foreach (var slice in health.Slices) AddLabels(table, ViewChoice.NameOf(slice), window < 0 ? slice.Total : slice.Windows[window].Figures);
+        foreach (var slice in health.Slices) AddLabels(table, ViewChoice.NameOf(slice), window < 0 ? slice.Total : slice.Windows[window].Figures, withCalibration: false);
         return table;
     }
 
-    private static DataTable Labels(string name, string title, string firstKey, string firstTitle) => new(
+    // Calibration is fitted, which takes too long to be done for hundreds of slices every second.
+    private static DataTable Labels(string name, string title, string firstKey, string firstTitle, bool withCalibration) => new(
         name, title,
-        new(firstKey, firstTitle, ColumnKind.Text),
-        new("labels", "labels", ColumnKind.Count),
-        new("promised", "promised bad", ColumnKind.Amount),
-        new("low80", "80 % from", ColumnKind.Amount),
-        new("high80", "80 % to", ColumnKind.Amount),
-        new("came", "came", ColumnKind.Amount),
-        new("logLoss", "log-loss", ColumnKind.Figure),
-        new("logLossRatio", "ratio to base rate", ColumnKind.Figure),
-        new("brier", "Brier", ColumnKind.Figure),
-        new("auc", "AUC", ColumnKind.Figure),
-        new("calibrationIntercept", "intercept", ColumnKind.Figure),
-        new("calibrationSlope", "slope", ColumnKind.Figure),
-        new("precision", "precision", ColumnKind.Share),
-        new("recall", "recall", ColumnKind.Share));
+        [
+            new(firstKey, firstTitle, ColumnKind.Text),
+            new("labels", "labels", ColumnKind.Count),
+            new("promised", "promised bad", ColumnKind.Amount),
+            new("low80", "80 % from", ColumnKind.Amount),
+            new("high80", "80 % to", ColumnKind.Amount),
+            new("came", "came", ColumnKind.Amount),
+            new("logLoss", "log-loss", ColumnKind.Figure),
+            new("logLossRatio", "ratio to base rate", ColumnKind.Figure),
+            new("brier", "Brier", ColumnKind.Figure),
+            new("auc", "AUC", ColumnKind.Figure),
+            new("precision", "precision", ColumnKind.Share),
+            new("recall", "recall", ColumnKind.Share),
+            .. withCalibration ? CalibrationColumns : [],
+        ]);
 
-    private static void AddLabels(DataTable table, string name, HealthFigures figures)
+    private static void AddLabels(DataTable table, string name, HealthFigures figures, bool withCalibration)
     {
-        var (promised, calibration) = (figures.Promised, figures.Scores.Calibration);
-        table.Add(
+        var promised = figures.Promised;
+        object?[] cells =
+        [
             name, figures.Count, promised.Expected, promised.Range80.Low, promised.Range80.High, promised.Came, figures.LogLoss, figures.LogLossRatio, figures.Brier,
-            figures.Scores.RocArea.Area, calibration.Intercept, calibration.Slope, figures.Alerts.Precision, figures.Alerts.Recall);
+            figures.Scores.RocArea.Area, figures.Alerts.Precision, figures.Alerts.Recall,
+        ];
+        table.Add(withCalibration ? [.. cells, figures.Scores.Calibration.Intercept, figures.Scores.Calibration.Slope] : cells);
     }
 }

@@ -11,6 +11,8 @@ internal static class Findings
     // In standard deviations, with one outcome more for what is rare. Among 250 slices that all hold, about one in ten times some slice strays so far.
     private const double FarSlice = 3.5;
 
+    private const long NewMicroseconds = 7L * 86_400_000_000;
+
     // By the convention of credit scoring, where the index comes from.
     private const double Some = 0.1, Much = 0.25;
 
@@ -20,7 +22,7 @@ internal static class Findings
         foreach (var alarm in raised) yield return new Finding(true, $"Alarm since {Wording.Time(alarm.SinceMicroseconds ?? 0)}: {alarm.Sentence}");
         if (selection.Figures.Count > 0) yield return LogLoss(selection.Figures);
         if (WorstSlice(health, selection) is { } slice) yield return slice;
-        if (Change(health, selection) is { } change) yield return change;
+        if (Change(health) is { } change) yield return change;
         if (Drift(selection) is { } drift) yield return drift;
         if (Delay(health, selection) is { } delay) yield return delay;
         if (Rejects(selection) is { } rejects) yield return rejects;
@@ -41,6 +43,7 @@ internal static class Findings
     /// <summary>The slice whose labels stray farthest, if that is more than what the worst of many does by chance.</summary>
     private static Finding? WorstSlice(HealthSnapshot health, Selection selection)
     {
+        if (selection.Window == ViewChoice.LastLabels) return null; // slices have windows of time only
         var (name, promised, distance) = health.Slices
             .Select(slice => (Name: ViewChoice.NameOf(slice), (slice.Windows.FirstOrDefault(w => w.Name == selection.Window)?.Figures ?? slice.Total).Promised))
             .Select(slice => (slice.Name, slice.Promised, Distance: Math.Abs(slice.Promised.Came - slice.Promised.Expected) / Math.Sqrt(slice.Promised.Variance + 1)))
@@ -49,13 +52,12 @@ internal static class Findings
         return new Finding(true, $"Where {name}: {Wording.Amount(promised.Expected)} bad outcomes were promised {selection.Words}, {Wording.Amount(promised.Came)} came.");
     }
 
-    private static Finding? Change(HealthSnapshot health, Selection selection)
+    private static Finding? Change(HealthSnapshot health)
     {
         if (health.Changes.IsEmpty) return null;
         var latest = health.Changes[0];
-        long from = selection.History.Days.IsEmpty ? 0 : (health.ClockMicroseconds ?? 0) - latest.AtMicroseconds;
-        string when = $"{Wording.Duration(from / 1e6)} ago";
-        return new Finding(from < 7L * 86_400_000_000, $"The latest change was found {when}, {Wording.Time(latest.AtMicroseconds)}: {latest.Sentence}");
+        long ago = (health.ClockMicroseconds ?? latest.AtMicroseconds) - latest.AtMicroseconds;
+        return new Finding(ago < NewMicroseconds, $"The latest change was found {Wording.Duration(ago / 1e6)} ago, {Wording.Time(latest.AtMicroseconds)}: {latest.Sentence}");
     }
 
     private static Finding? Drift(Selection selection)

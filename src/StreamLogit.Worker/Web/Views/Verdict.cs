@@ -14,6 +14,7 @@ internal sealed record Verdict(Standing Standing, string Title, string Sentence)
     // From a standard deviation of about two outcomes on, the ranges of the normal distribution mean something.
     private const double EnoughVariance = 5;
     private const double EnoughSurplus = 10;
+    private const double EnoughBad = 10;
 
     public static Verdict Of(HealthFigures figures, string window, long awaiting)
     {
@@ -35,8 +36,9 @@ internal sealed record Verdict(Standing Standing, string Title, string Sentence)
         return new Verdict(shown.Standing, shown.Title, shown.Sentence(window)) { Note = shown.Note };
     }
 
-    /// <summary>Whether even the lower end of the log-loss's 95 % interval is above the base rate's.</summary>
-    private static bool IsHarmful(HealthFigures figures) => figures.LogLossInterval.Low > figures.BaseRateLogLoss;
+    /// <summary>Whether even the lower end of the log-loss's 95 % interval is above the base rate's. Without some bad outcomes that interval says nothing.</summary>
+    private static bool IsHarmful(HealthFigures figures) =>
+        figures.Promised.Came >= EnoughBad && figures.LogLossInterval.Low > figures.BaseRateLogLoss;
 
     private readonly record struct Candidate(string Subject, PromisedPositives Promised)
     {

@@ -70,6 +70,16 @@ public sealed class VerdictTests
         Assert.Equal("of 10,000 labels in the last 7 days their log-loss is 0.08, that of the mere base rate 0.056.", verdict.Sentence);
     }
 
+    [Fact]
+    public void Of_AQuietWindowWithNoBadOutcome_IsNotCalledHarm()
+    {
+        // All labels 0 and p = 0.011 against 0.01: surely a higher loss, by what is no fault of the scores.
+        var figures = Figures(600, Promised(6.6, 6.5, 4)) with { LogLoss = 0.0111, LogLossStandardError = 0, BaseRateLogLoss = 0.0101 };
+
+        Assert.Equal(Standing.Doubtful, Verdict.Of(figures with { Promised = Promised(6.6, 6.5, 3) }, Week, awaiting: 0).Standing);
+        Assert.Equal(Standing.Holds, Verdict.Of(figures, Week, awaiting: 0).Standing);
+    }
+
     private static PromisedPositives Promised(double expected, double variance, double came) => new(expected, variance, came);
 
     private static HealthFigures Figures(long count, PromisedPositives all, long alerts = 0, PromisedPositives ofAlerts = default) =>
