@@ -12,7 +12,11 @@ public sealed class KafkaMockRoom : IDisposable
     private static readonly TimeSpan Limit = TimeSpan.FromSeconds(30);
     private int _groups;
 
-    public KafkaMock Cluster { get; } = new();
+    internal KafkaMockRoom(int brokers) => Cluster = new KafkaMock(brokers);
+
+    public KafkaMockRoom() : this(1) { }
+
+    public KafkaMock Cluster { get; }
 
     internal RecordedLog Log { get; } = new();
 

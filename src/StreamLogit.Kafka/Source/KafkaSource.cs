@@ -115,6 +115,7 @@ internal sealed class KafkaSource : IRecordSource
         }
         if (batch.Count > 0) return ValueTask.FromResult(FillOutcome.Filled);
         _connection.Watch.ThrowIfGivenUp();
+        _patience.ThrowIfGivenUp(() => StartOffsets.AreThere(_consumer, _options.AllTopics));
         return ValueTask.FromResult(_options.UntilEnd && IsAtEnd() ? FillOutcome.Ended : FillOutcome.Idle);
     }
 
@@ -171,7 +172,7 @@ internal sealed class KafkaSource : IRecordSource
         cursor.Given = cursor.Next;
         cursor.IsAtEnd = false;
         _connection.Watch.OnAnswer();
-        _patience.OnMessage();
+        _patience.OnThere();
     }
 
     private void Add(RecordBatch batch, PartitionCursor cursor, long offset, ReadOnlySpan<byte> bytes)
@@ -288,6 +289,7 @@ internal sealed class KafkaSource : IRecordSource
         KafkaInstruments.Rebalances.Add(1);
         var committed = _starts.Committed(_consumer, partitions);
         _connection.Watch.OnAnswer();
+        _patience.OnThere();
         var offsets = new List<TopicPartitionOffset>();
         foreach (var partition in partitions)
         {

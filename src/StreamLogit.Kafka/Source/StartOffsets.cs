@@ -34,6 +34,20 @@ internal sealed class StartOffsets(TopicStart start, ClusterWatch watch, TimePro
         return found[0].Offset.IsSpecial ? ends.High.Value : found[0].Offset.Value;
     }
 
+    /// <summary>Whether all topics are there.</summary>
+    public static bool AreThere(IConsumer<Ignore, int> consumer, IEnumerable<string> topics)
+    {
+        try
+        {
+            foreach (string topic in topics) consumer.QueryWatermarkOffsets(new TopicPartition(topic, 0), AnswerWithin);
+            return true;
+        }
+        catch (KafkaException)
+        {
+            return false;
+        }
+    }
+
     private T Ask<T>(string what, Func<T> ask)
     {
         long began = time.GetTimestamp();

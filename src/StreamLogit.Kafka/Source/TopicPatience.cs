@@ -7,21 +7,28 @@ namespace StreamLogit.Kafka.Source;
 internal sealed class TopicPatience(KafkaConnection connection)
 {
     private long? _missingSince;
+    private string _reason = "";
 
-    /// <summary>Hears that a message came.</summary>
-    public void OnMessage() => _missingSince = null;
+    /// <summary>Hears that a message came, or that partitions were assigned.</summary>
+    public void OnThere() => _missingSince = null;
+
+    /// <summary>Looks, where nothing comes, whether the topic has been missing for too long. The client tells only once that it is.</summary>
+    /// <param name="isThere">Asks whether it is there by now.</param>
+    /// <exception cref="PipelineException">It has.</exception>
+    public void ThrowIfGivenUp(Func<bool> isThere)
+    {
+        if (_missingSince is not { } since || connection.Time.GetElapsedTime(since) <= connection.Settings.Options.GiveUpAfter) return;
+        if (!isThere()) throw new PipelineException($"{_reason}, for {connection.Settings.Options.GiveUpAfter} by now. Make the topic, or correct its name.");
+        _missingSince = null;
+    }
 
     /// <summary>Hears that a topic is missing.</summary>
-    /// <exception cref="PipelineException">It has been missing for too long.</exception>
     public void OnMissing(string reason)
     {
-        var giveUpAfter = connection.Settings.Options.GiveUpAfter;
-        if (_missingSince is not { } since)
-        {
-            _missingSince = connection.Time.GetTimestamp();
-            KafkaInstruments.TopicsMissing.Add(1);
-            connection.Log.TopicMissing(reason, giveUpAfter);
-        }
-        else if (connection.Time.GetElapsedTime(since) > giveUpAfter) throw new PipelineException($"{reason}, for {giveUpAfter} by now. Make the topic, or correct its name.");
+        if (_missingSince is not null) return;
+        _missingSince = connection.Time.GetTimestamp();
+        _reason = reason;
+        KafkaInstruments.TopicsMissing.Add(1);
+        connection.Log.TopicMissing(reason, connection.Settings.Options.GiveUpAfter);
     }
 }
