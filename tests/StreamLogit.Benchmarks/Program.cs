@@ -1,6 +1,7 @@
 using System.Globalization;
 using BenchmarkDotNet.Running;
 using StreamLogit.Benchmarks;
+using StreamLogit.Benchmarks.Kafka;
 using StreamLogit.Benchmarks.Learning;
 using StreamLogit.Benchmarks.Page;
 using StreamLogit.Benchmarks.Ratios;
@@ -14,5 +15,6 @@ if (args is ["nightly", var flights, var days]) return NightlyRefitOfFlights.Pri
 if (args is ["keys", var keys, var events]) return KeyedRecording.Write(int.Parse(keys, CultureInfo.InvariantCulture), int.Parse(events, CultureInfo.InvariantCulture));
 if (args is ["costs", var gibibytes]) return BankCosts.Print(double.Parse(gibibytes, CultureInfo.InvariantCulture));
 if (args is ["viewers", var viewers]) return await PageViewers.PrintAsync(int.Parse(viewers, CultureInfo.InvariantCulture));
+if (args is ["mock-broker", .. var topics]) return MockBroker.Serve(topics);
 BenchmarkSwitcher.FromAssembly(typeof(RatioTable).Assembly).Run(args);
 return 0;

@@ -64,7 +64,8 @@ internal sealed class ClientSettings
         var config = Build<ProducerConfig>(own, [("linger.ms", "0")]);
         config.Set("enable.idempotence", On);
         config.Set("transactional.id", transactionalId);
-        config.DeliveryReportFields = "none";
+        // A transaction is only committed if all its messages were delivered.
+        config.EnableDeliveryReports = false;
         return config;
     }
 

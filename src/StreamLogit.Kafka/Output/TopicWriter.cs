@@ -11,7 +11,7 @@ internal class TopicWriter : IDisposable
     private static readonly TimeSpan Pause = TimeSpan.FromMilliseconds(5);
     private static readonly TimeSpan FlushSlice = TimeSpan.FromMilliseconds(200);
 
-    private readonly Action<DeliveryReport<byte[], byte[]>> _onDelivered;
+    private readonly Action<DeliveryReport<byte[], byte[]>>? _onDelivered;
     private readonly LentArrays _keys = new();
     private readonly LentArrays _values = new();
     private readonly Message<byte[], byte[]> _message = new();
@@ -21,7 +21,7 @@ internal class TopicWriter : IDisposable
     {
         Connection = connection;
         Producer = connection.CreateProducer(config);
-        _onDelivered = OnDelivered;
+        _onDelivered = config.EnableDeliveryReports == false ? null : OnDelivered;
         MaximumBytes = ClientSettings.MaximumMessageBytes(config);
     }
 

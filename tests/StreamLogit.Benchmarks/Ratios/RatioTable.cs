@@ -1,4 +1,5 @@
 using System.Globalization;
+using StreamLogit.Benchmarks.Kafka;
 
 namespace StreamLogit.Benchmarks.Ratios;
 
@@ -21,6 +22,8 @@ internal static class RatioTable
         ("engine-four-histories-allocated-bytes-per-event", () => HistoryRatios.AllocatedBytesPerEvent(), 0, true),
         ("engine-rows/scikit-learn-rows", () => EngineRatios.AgainstScikitLearn(settings: 1), 1.5, false),
         ("engine-16-setting-updates/scikit-learn-updates", () => EngineRatios.AgainstScikitLearn(settings: 16), 5, false),
+        ("kafka-at-least-once/bare-loop", () => KafkaRatios.AtLeastOnceAgainstBareLoop(), 0.8, false),
+        ("kafka-exactly-once-client/bare-loop-in-transactions", () => KafkaRatios.ExactlyOnceAgainstBareLoop(), 0.7, false),
     ];
 
     /// <summary>Measures the rows whose names contain one of <paramref name="names"/>, or all.</summary>
