@@ -12,6 +12,9 @@ namespace StreamLogit.Kafka;
 /// <summary>Opens the ends of streams: topics, and files where the definition names those.</summary>
 public static class KafkaEnds
 {
+    /// <summary>The meter that counts what the ends of streams meet with.</summary>
+    public const string MeterName = "StreamLogit.Kafka";
+
     /// <summary>Opens source and outputs as the definition names them.</summary>
     /// <exception cref="KafkaSettingsException">The settings are wrong.</exception>
     /// <exception cref="PipelineException">A file is out of reach.</exception>

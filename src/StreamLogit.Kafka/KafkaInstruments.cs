@@ -5,7 +5,7 @@ namespace StreamLogit.Kafka;
 /// <summary>What the Kafka ends of a worker count. The meter has the name of this project.</summary>
 internal static class KafkaInstruments
 {
-    private static readonly Meter Meter = new("StreamLogit.Kafka");
+    private static readonly Meter Meter = new(KafkaEnds.MeterName);
 
     public static Counter<long> Outages { get; } = Meter.CreateCounter<long>("streamlogit.kafka.outages", "{outage}", "Times that no broker could be reached.");
 

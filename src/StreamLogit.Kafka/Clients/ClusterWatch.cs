@@ -29,6 +29,7 @@ internal sealed class ClusterWatch(TimeSpan giveUpAfter, TimeProvider time, ILog
     {
         KafkaInstruments.Errors.Add(1, new KeyValuePair<string, object?>("error.type", error.Code.ToString()));
         logger.ClientError(error.Code.ToString(), error.Reason);
+        if (error.Code == ErrorCode.Local_MaxPollExceeded) logger.PolledTooLate();
         lock (_lock)
         {
             if (error.Code is ErrorCode.Local_Authentication or ErrorCode.SaslAuthenticationFailed)

@@ -33,6 +33,7 @@ internal sealed class KafkaSource : IRecordSource
     private RepeatedReading? _repeated;
     private bool _isSubscribed;
     private bool _mustSeek;
+    private volatile bool _isClosing;
     private long _bytes;
 
     /// <summary>A source that joins its group with the first fill.</summary>
@@ -140,6 +141,7 @@ internal sealed class KafkaSource : IRecordSource
     /// <inheritdoc/>
     public void Dispose()
     {
+        _isClosing = true;
         _repeated?.Dispose();
         // Closing commits the stored offsets, for which it may wait for a broker that is away.
         var closing = Task.Run(_consumer.Close);
@@ -268,9 +270,6 @@ internal sealed class KafkaSource : IRecordSource
                 break;
             case ErrorCode.TopicAuthorizationFailed or ErrorCode.GroupAuthorizationFailed:
                 throw new PipelineException($"The Kafka brokers do not let this worker read {string.Join(", ", _options.AllTopics)} in the group {_options.Group}: {error.Reason}");
-            case ErrorCode.Local_MaxPollExceeded:
-                _connection.Log.PolledTooLate();
-                break;
             case ErrorCode.FencedInstanceId:
                 throw Fenced();
             case var _ when error.IsFatal:
@@ -315,6 +314,7 @@ internal sealed class KafkaSource : IRecordSource
 
     private void Revoke(IReadOnlyList<TopicPartitionOffset> partitions)
     {
+        if (_isClosing) return;
         KafkaInstruments.Rebalances.Add(1);
         Gone?.Invoke(partitions.Select(partition => _partitions.Find(partition.TopicPartition)));
         foreach (var partition in partitions)
@@ -326,6 +326,7 @@ internal sealed class KafkaSource : IRecordSource
 
     private void Lose(IReadOnlyList<TopicPartitionOffset> partitions)
     {
+        if (_isClosing) return;
         KafkaInstruments.Rebalances.Add(1);
         Gone?.Invoke(partitions.Select(partition => _partitions.Find(partition.TopicPartition)));
         foreach (var partition in partitions) _connection.Log.PartitionLost(Leave(partition).Origin);

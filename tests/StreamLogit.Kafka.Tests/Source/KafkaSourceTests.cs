@@ -16,7 +16,19 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
 
     private KafkaSource Open(KafkaSourceOptions options, OutputKind outputs = OutputKind.Files, int maximumBytes = 1000) => new(options, room.Connect(), maximumBytes, outputs);
 
-    private static async Task<List<(string Origin, long Offset, string Text)>> TakeAsync(IRecordSource source)
+    /// <summary>Reads up to an offset, however many messages come at once.</summary>
+    private static async Task TakeToAsync(KafkaSource source, long offset)
+    {
+        var batch = Schemas.NewBatch();
+        long at = source.Position.Origins is [var origin] ? origin.Offset : 0;
+        while (at < offset)
+        {
+            await TakenRecord.FillAsync(source, batch, (int)(offset - at));
+            at = source.Position.Origins[0].Offset;
+        }
+    }
+
+    private static async Task<List<(string Origin, long Offset, string Text)>> TakeAsync(KafkaSource source)
     {
         var taken = new List<(string, long, string)>();
         var batch = Schemas.NewBatch();
@@ -68,8 +80,7 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
         var options = KafkaMockRoom.Source(room.NewName("group"), topic);
         using (var first = Open(options))
         {
-            var batch = Schemas.NewBatch();
-            await TakenRecord.FillAsync(first, batch, 4);
+            await TakeToAsync(first, 4);
             first.Committed(first.Position);
         }
         using var second = Open(options);
@@ -89,10 +100,9 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
         var old = SourcePosition.Start;
         using (var first = Open(options))
         {
-            var batch = Schemas.NewBatch();
-            await TakenRecord.FillAsync(first, batch, 2);
+            await TakeToAsync(first, 2);
             old = first.Position;
-            while (first.Position.Origins[0].Offset < 8) await TakenRecord.FillAsync(first, batch, (int)(8 - first.Position.Origins[0].Offset));
+            await TakeToAsync(first, 8);
             first.Committed(first.Position);
         }
         using var second = Open(options, (OutputKind)outputs);
@@ -132,5 +142,23 @@ public sealed class KafkaSourceTests(KafkaMockRoom room) : IClassFixture<KafkaMo
 
         var error = await Assert.ThrowsAsync<PipelineException>(() => TakenRecord.TakeToEndAsync(source));
         Assert.StartsWith("What the worker is to read next is not in Kafka any more", error.Message, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public async Task Fill_TooLateForTheGroup_SaysSoAndJoinsAgain()
+    {
+        string topic = NewTopic(1);
+        room.Produce(topic, 0, ["a"]);
+        var options = KafkaMockRoom.Source(room.NewName("group"), topic);
+        var connection = room.Connect();
+        using var source = new KafkaSource(options with { UntilEnd = false, Properties = options.Properties.Add("max.poll.interval.ms", "1200") }, connection, 1000, OutputKind.Files);
+        await TakeToAsync(source, 1);
+
+        // The clock is the client's own.
+        await Task.Delay(TimeSpan.FromSeconds(3), TestContext.Current.CancellationToken);
+        room.Produce(topic, 0, ["b"]);
+        await TakeToAsync(source, 2);
+
+        Assert.True(room.Log.Has(109), string.Join('\n', room.Log.Lines));
     }
 }
