@@ -1,5 +1,5 @@
 import { createPanels } from "./panels.js";
-import { time } from "./format.js";
+import { cell, duration, share, time } from "./format.js";
 import { el, setText } from "./dom.js";
 
 // Follows the worker and shows what it says. The address of the page holds what is chosen.
@@ -89,6 +89,7 @@ function show(next) {
   setText(find("clock"), view.clock ? `${time(view.clock)} UTC` : "–");
   if (view.clock) find("clock").dateTime = view.clock;
   showVerdict();
+  showProgress();
   showChoices();
   showFacts();
   find("notice").hidden = !view.notice;
@@ -98,6 +99,14 @@ function show(next) {
   for (const panel of panels) panel.update(view, `?${shown}`);
   find("all-json").href = `/data/view?${shown}`;
   find("main").removeAttribute("aria-busy");
+}
+
+function showProgress() {
+  const { records, rejected, commits, sourceShare } = view.progress;
+  const read = sourceShare === undefined ? "" : sourceShare === 1 ? " All of the source is read." : ` ${share(sourceShare)} of the source is read.`;
+  const behind = view.clock ? (Date.now() - Date.parse(view.clock)) / 1000 : 0;
+  const lag = behind > 1 ? ` The stream’s clock is ${duration(behind)} behind this device’s.` : "";
+  setText(find("progress"), `${cell("count", records)} records taken, ${cell("count", rejected)} of them rejected; ${cell("count", commits)} commits since this worker started.${read}${lag}`);
 }
 
 function showVerdict() {
