@@ -50,7 +50,8 @@ public sealed class ScoringEngine
         Definition = definition;
         Schema = new RecordSchema(definition);
         _encoder = new FeatureEncoder(definition, Schema, archive);
-        _bank = new Bank(definition.Learning, _encoder.SlotCount, _encoder.FirstDenseSlot);
+        _bank = new Bank(
+            definition.Learning, _encoder.SlotCount, _encoder.FirstDenseSlot, forgetHalfLifeOf: _encoder.IsAnyForgotten ? _encoder.ForgetHalfLifeOf : null);
         _clock = new StreamClock(definition.Record.AheadMicroseconds);
         _awaiting = new AwaitingStore(
             _bank.Names, definition.Labels.WaitMicroseconds, definition.Labels.Unlabelled == UnlabelledEvents.Negative, definition.Labels.MemoryBytes, archive,

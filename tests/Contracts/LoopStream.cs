@@ -20,9 +20,9 @@ internal static class LoopStream
         [
             new NumberFeature("amount", NumberScale.Standard),
             new CategoryFeature(["country"]),
-            new CategoryFeature(["country", "channel"]),
+            new CategoryFeature(["country", "channel"]) { ForgetHalfLifeMicroseconds = 1_800_000_000 },
             new TimeCycleFeature(86_400_000_000, "1d"),
-            new HistoryFeature(HistoryKind.Count, ["card"]) { HalfLifeMicroseconds = 600_000_000, Span = "10m" },
+            new HistoryFeature(HistoryKind.Count, ["card"]) { HalfLifeMicroseconds = 600_000_000, Span = "10m", ForgetHalfLifeMicroseconds = 300_000_000 },
             new HistoryFeature(HistoryKind.Distinct, ["card"]) { Of = "country", HalfLifeMicroseconds = 600_000_000, Span = "10m" },
             new HistoryFeature(HistoryKind.Rate, ["card"]) { HalfLifeMicroseconds = 3_600_000_000, Span = "1h" },
             new HistoryFeature(HistoryKind.New, ["card"]) { Of = "country", WithinMicroseconds = 600_000_000, Span = "10m" },

@@ -30,9 +30,9 @@ public static class DefaultBank
         new AdagradSetting(0.1, 0), new AdagradSetting(0.05, 3_000), new AdagradSetting(0.2, 30_000), new AdagradSetting(1, 300_000),
     ];
 
-    /// <summary>The settings that suit these features.</summary>
+    /// <summary>The settings that suit these features. Newton cannot let the coefficients of one feature fade alone.</summary>
     public static ImmutableArray<SettingOptions> For(ImmutableArray<FeatureOptions> features) =>
-        features.Any(feature => feature is CategoryFeature) || features.Sum(feature => feature.DenseCoefficients) is < 1 or > MostForNewton
+        features.Any(feature => feature is CategoryFeature || feature.ForgetHalfLifeMicroseconds > 0) || features.Sum(feature => feature.DenseCoefficients) is < 1 or > MostForNewton
             ? Settings
             : DenseSettings;
 }

@@ -18,6 +18,7 @@ internal sealed class FeatureEncoder
     private readonly CoefficientNames _names = new();
     private readonly VectorBuilder _vector;
     private readonly HistoryRoom _histories;
+    private readonly long[] _forgetHalfLives; // of the features
 
     public FeatureEncoder(EngineDefinition definition, RecordSchema schema, IBlockArchive? archive = null)
     {
@@ -34,6 +35,7 @@ internal sealed class FeatureEncoder
         _ledger = new SlotLedger(next);
         MaximumEntries = _features.Sum(f => f.MaximumEntries);
         _vector = new VectorBuilder(_ledger, MaximumEntries, _features.Length);
+        _forgetHalfLives = [.. definition.Features.Select(options => options.ForgetHalfLifeMicroseconds)];
         _histories.Start(definition.Histories.MemoryBytes, archive);
     }
 
@@ -45,6 +47,9 @@ internal sealed class FeatureEncoder
 
     /// <summary>The most entries that a vector has.</summary>
     public int MaximumEntries { get; }
+
+    /// <summary>Whether the coefficients of any feature fade by themselves.</summary>
+    public bool IsAnyForgotten => _forgetHalfLives.AsSpan().ContainsAnyExcept(0);
 
     /// <summary>Events encoded.</summary>
     public long Events { get; private set; }
@@ -97,11 +102,13 @@ internal sealed class FeatureEncoder
     public bool IsUsed(int slot) => _ledger.IsUsed(slot);
 
     /// <summary>The name of a slot.</summary>
-    public string NameOf(int slot)
+    public string NameOf(int slot) => slot < FirstDenseSlot ? _names.Of(slot) : _features[FeatureOfDense(slot)].NameOf(slot);
+
+    /// <summary>The half-life, in microseconds, of the coefficient of a slot: that of the feature whose value took it first. 0 for never, and where none has.</summary>
+    public long ForgetHalfLifeOf(int slot)
     {
-        if (slot < FirstDenseSlot) return _names.Of(slot);
-        int end = FirstDenseSlot;
-        return _features.First(feature => slot < (end += feature.DenseSlots)).NameOf(slot);
+        int feature = slot < FirstDenseSlot ? _ledger.OwnerOf(slot) : FeatureOfDense(slot);
+        return feature < 0 ? 0 : _forgetHalfLives[feature];
     }
 
     /// <summary>What the features have learned about the scales of their values.</summary>
@@ -160,6 +167,13 @@ internal sealed class FeatureEncoder
         foreach (var feature in _features) feature.Load(reader);
         _ledger.Load(state);
         _names.Load(state);
+    }
+
+    private int FeatureOfDense(int slot)
+    {
+        int feature = 0;
+        for (int end = FirstDenseSlot + _features[0].DenseSlots; slot >= end; end += _features[feature].DenseSlots) feature++;
+        return feature;
     }
 
     private Feature Create(FeatureOptions options, RecordSchema schema, HashedSlots hashed, int firstSlot) => options switch

@@ -3,7 +3,7 @@ using StreamLogit.Engine.Persistence;
 
 namespace StreamLogit.Engine.Features;
 
-/// <summary>What is known of every coefficient slot apart from its weights: which category value took it first, and the sum of its values.</summary>
+/// <summary>What is known of every coefficient slot apart from its weights: which feature's value took it first, and the sum of its values.</summary>
 internal sealed class SlotLedger(int slotCount)
 {
     private const string Part = "features/slots";
@@ -13,6 +13,9 @@ internal sealed class SlotLedger(int slotCount)
     public int SlotCount => _entries.Length;
 
     public bool IsUsed(int slot) => _entries[slot].Tag != 0;
+
+    /// <summary>The place in the definition of the feature whose value took a hashed slot first, or -1 where none has.</summary>
+    public int OwnerOf(int slot) => (int)_entries[slot].OwnerPlusOne - 1;
 
     /// <returns>The sum of the slot's values before this one.</returns>
     public double AddDense(int slot, double value)
@@ -27,9 +30,10 @@ internal sealed class SlotLedger(int slotCount)
 
     /// <param name="slot">The slot.</param>
     /// <param name="tag">Further bits of the value's hash, not 0, by which values that share a slot are told apart.</param>
+    /// <param name="feature">The place of the value's feature in the definition.</param>
     /// <param name="value">The value there.</param>
     /// <param name="sumBefore">The sum of the slot's values before.</param>
-    public SlotUse AddHashed(int slot, uint tag, double value, out double sumBefore)
+    public SlotUse AddHashed(int slot, uint tag, int feature, double value, out double sumBefore)
     {
         ref var entry = ref _entries[slot];
         sumBefore = entry.ValueSum;
@@ -38,6 +42,7 @@ internal sealed class SlotLedger(int slotCount)
         if (entry.Tag == tag) return SlotUse.Again;
         if (entry.Tag != 0) return SlotUse.Collision;
         entry.Tag = tag;
+        entry.OwnerPlusOne = (uint)feature + 1;
         return SlotUse.First;
     }
 
@@ -62,6 +67,6 @@ internal sealed class SlotLedger(int slotCount)
     {
         public double ValueSum;
         public uint Tag;
-        public uint Reserved;
+        public uint OwnerPlusOne;
     }
 }

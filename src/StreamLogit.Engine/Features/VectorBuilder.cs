@@ -56,7 +56,7 @@ internal sealed class VectorBuilder(SlotLedger ledger, int maximumEntries, int f
     /// <returns>Whether the slot is used for the first time, so that it wants a name.</returns>
     public bool AddHashed(int slot, uint tag, double value = 1)
     {
-        var use = ledger.AddHashed(slot, tag, value, out double sumBefore);
+        var use = ledger.AddHashed(slot, tag, Feature, value, out double sumBefore);
         Append(slot, value, sumBefore);
         if (use == SlotUse.Again) return false;
         HasCollision |= use == SlotUse.Collision;

@@ -15,7 +15,6 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
 
     // The delta of the published form: it only keeps 0 / 0 away.
     private const double SmallestRoot = 1e-8;
-    private const double Ln2 = 0.693147180559945309;
 
     private readonly AlignedDoubles _step;
     private readonly AlignedDoubles _sumFactor;
@@ -38,7 +37,7 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
             _step[lane] = settings[lane].Step;
             double halfLife = settings[lane].SumHalfLifeLabels;
             if (halfLife == 0) continue;
-            _sumFactor[lane] = Elementary.Exp(-Ln2 / halfLife);
+            _sumFactor[lane] = Elementary.Exp(-Elementary.Ln2 / halfLife);
             _sumsForget = true;
         }
     }
@@ -47,7 +46,7 @@ internal sealed class AdagradLearner<T> : SlotLearner<T> where T : struct, ILane
 
     public override void Learn(in EncodedVector x, in Lesson lesson)
     {
-        if (lesson.MissProbability.IsEmpty) Score(in x, lesson.Offset);
+        if (lesson.MissProbability.IsEmpty && !lesson.IsScored) Score(in x, lesson.Offset);
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
             // The negative gradient of the intercept; that of a coefficient is x times as much.

@@ -17,6 +17,8 @@ internal sealed class Bank
     private readonly BankState _state;
     private readonly int _publishedSetting;
     private readonly double[] _settingWeights;
+    private readonly SlotForgetting? _slotForgetting; // null where no feature forgets
+    private ImmutableArray<long> _outdatedForgetting = []; // blocks that the next save must take away
     private WarmStart? _warmStart;
     private long _lastLabelMicroseconds = long.MinValue;
     private bool _isChanged = true;
@@ -30,9 +32,19 @@ internal sealed class Bank
     /// <param name="slotCount">Coefficient slots, the hashed and the dense ones together.</param>
     /// <param name="firstDenseSlot">Where the dense slots start, which are the last ones.</param>
     /// <param name="widestLanes">The widest lanes to use: 1, 2, 4 or 8. Changes no bit.</param>
+    /// <param name="forgetHalfLifeOf">
+    /// Gives the half-life of a slot's coefficients in microseconds, 0 for never or not known yet, or null where no slot has one.
+    /// </param>
     /// <exception cref="ArgumentException">A rule does not suit the slots, or there are too many slots for the settings.</exception>
-    public Bank(LearningOptions options, int slotCount, int firstDenseSlot, int widestLanes = RowWidth.Widest)
+    public Bank(
+        LearningOptions options, int slotCount, int firstDenseSlot, int widestLanes = RowWidth.Widest, Func<int, long>? forgetHalfLifeOf = null)
     {
+        if (forgetHalfLifeOf is not null)
+        {
+            if (options.Bank.Any(setting => setting is NewtonSetting))
+                throw new ArgumentException("The update rule newton cannot let the coefficients of single slots fade.");
+            _slotForgetting = new SlotForgetting(slotCount, forgetHalfLifeOf);
+        }
         Names = [.. options.Bank.Select(setting => setting.Name)];
         _publishedSetting = options.PublishedSetting is null ? -1 : Names.IndexOf(options.PublishedSetting);
         if (options.PublishedSetting is not null && _publishedSetting < 0)
@@ -78,12 +90,8 @@ internal sealed class Bank
     public double Score(in EncodedVector x, long timeMicroseconds, Span<double> logOdds)
     {
         _blocks.Check(x.Slots);
-        double offset = _warmStart?.LogOdds(in x) ?? 0;
-        foreach (LearnerGroup group in _groups)
-        {
-            group.Learner.Score(in x, offset);
-            group.Scatter(group.Learner.LogOdds, logOdds[..SettingCount]);
-        }
+        ScoreSettings(in x);
+        foreach (LearnerGroup group in _groups) group.Scatter(group.Learner.LogOdds, logOdds[..SettingCount]);
         return _publishedSetting >= 0 ? logOdds[_publishedSetting] : _blend.LogOdds(logOdds[..SettingCount]);
     }
 
@@ -101,7 +109,11 @@ internal sealed class Bank
         _blocks.Mark(x.Slots);
         _isChanged = true;
         _blend.Learn(scoredLogOdds[..SettingCount], label, weight);
+
+        // The gradients are those at the coefficients after the label before. Then these are pulled for the time since, and then moved.
+        if (_slotForgetting is not null) ScoreSettings(in x);
         double elapsed = AdvanceClock(timeMicroseconds);
+        _slotForgetting?.Pull(x.Slots, _lastLabelMicroseconds, _groups);
         double offset = _warmStart?.LogOdds(in x) ?? 0;
         foreach (LearnerGroup group in _groups)
         {
@@ -111,6 +123,7 @@ internal sealed class Bank
                 Weight = weight,
                 ElapsedMicroseconds = elapsed,
                 Offset = offset,
+                IsScored = _slotForgetting is not null,
                 MissProbability = isFresh ? group.Gather(_blend.MissProbability) : default,
             });
         }
@@ -132,6 +145,7 @@ internal sealed class Bank
         coefficients[..x.Slots.Length].Clear();
         foreach (LearnerGroup group in _groups)
             group.Learner.AddCoefficients(in x, group.Gather(_settingWeights), coefficients);
+        _slotForgetting?.Fade(x.Slots, _lastLabelMicroseconds, coefficients);
         _warmStart?.AddTo(in x, coefficients);
     }
 
@@ -149,7 +163,8 @@ internal sealed class Bank
     public double Intercept(int setting) => Find(setting, out int lane).Intercept(lane) + (_warmStart?.Intercept ?? 0);
 
     /// <summary>The coefficient of a slot in a setting.</summary>
-    public double Coefficient(int slot, int setting) => Find(setting, out int lane).Coefficient(slot, lane) + (_warmStart?[slot] ?? 0);
+    public double Coefficient(int slot, int setting) =>
+        Find(setting, out int lane).Coefficient(slot, lane) * (_slotForgetting?.Left(slot, _lastLabelMicroseconds) ?? 1) + (_warmStart?[slot] ?? 0);
 
     /// <summary>How many coefficients of a setting, without the intercept, are not 0, or not those of the warm start.</summary>
     public long NonZeroCount(int setting) => Find(setting, out int lane).NonZeroCount(lane);
@@ -177,6 +192,9 @@ internal sealed class Bank
     /// <summary>Puts what changed since the last call into the parts <c>learning/...</c>.</summary>
     public void Save(StateBlocks changes)
     {
+        foreach (long block in _outdatedForgetting) changes.Remove(SlotForgetting.Part, block);
+        _outdatedForgetting = [];
+        _slotForgetting?.Save(changes);
         if (!_isChanged) return;
         Span<byte> clock = stackalloc byte[sizeof(long)];
         BinaryPrimitives.WriteInt64LittleEndian(clock, _lastLabelMicroseconds);
@@ -188,7 +206,8 @@ internal sealed class Bank
 
     /// <summary>
     /// Takes up a saved state. Only on a bank that has learned nothing. Settings that the state has too go on where they were; the others start
-    /// from the coefficients of the saved blend and get an equal share of its weight.
+    /// from the coefficients of the saved blend and get an equal share of its weight. Half-lives of slots may differ from the saved ones, which count
+    /// up to the last label that the state has learned.
     /// </summary>
     /// <exception cref="InvalidStateException">The state is damaged, or is about other slots.</exception>
     public BankChange Load(StateBlocks state)
@@ -198,8 +217,29 @@ internal sealed class Bank
         _lastLabelMicroseconds = BinaryPrimitives.ReadInt64LittleEndian(clock);
         _warmStart = WarmStart.Load(state, _blocks.SlotCount);
         BankChange change = _state.Load(state);
-        _isChanged = !_state.IsLayoutSaved;
+        _isChanged = !_state.IsLayoutSaved | LoadForgetting(state);
         return change;
+    }
+
+    /// <returns>Whether coefficients were pulled, because their half-life is not that of the state.</returns>
+    private bool LoadForgetting(StateBlocks state)
+    {
+        ImmutableArray<long> saved = [.. state.Read(SlotForgetting.Part).Select(block => block.Number)];
+        if (_slotForgetting is not null) return _slotForgetting.Load(state, _lastLabelMicroseconds, _blocks, _groups);
+        _outdatedForgetting = saved;
+        return !saved.IsEmpty && new SlotForgetting(_blocks.SlotCount, _ => 0).Load(state, _lastLabelMicroseconds, _blocks, _groups);
+    }
+
+    private void ScoreSettings(in EncodedVector x)
+    {
+        double offset = _warmStart?.LogOdds(in x) ?? 0;
+        if (_slotForgetting is null)
+        {
+            foreach (LearnerGroup group in _groups) group.Learner.Score(in x, offset);
+            return;
+        }
+        EncodedVector faded = _slotForgetting.Faded(in x, _lastLabelMicroseconds);
+        foreach (LearnerGroup group in _groups) group.Learner.Score(in faded, offset);
     }
 
     private ILearner Find(int setting, out int lane)

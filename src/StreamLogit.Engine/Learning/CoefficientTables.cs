@@ -12,6 +12,10 @@ public static class CoefficientTables
     public static long Bytes(LearningOptions options) =>
         (long)options.Slots * LearnerGroup.DoublesPerSlot(options.Bank) * sizeof(double);
 
+    /// <summary>The same, with what is kept of slots because features forget.</summary>
+    public static long Bytes(EngineDefinition definition) => Bytes(definition.Learning)
+        + (definition.Features.Any(feature => feature.ForgetHalfLifeMicroseconds > 0) ? (long)definition.Learning.Slots * SlotForgetting.BytesPerSlot : 0);
+
     /// <summary>Whether every table has the length of an array at most.</summary>
     public static bool CanBeMade(LearningOptions options) => options.Bank.GroupBy(setting => setting.GetType())
         .All(rule => (long)options.Slots * LearnerGroup.DoublesPerSlot([.. rule]) <= MostDoublesOfATable);

@@ -7,7 +7,6 @@ namespace StreamLogit.Engine.Learning;
 /// <summary>How much of each setting's coefficients is left after some time: 2^(-time / half-life).</summary>
 internal sealed class Forgetting<T> where T : struct, ILanes<T>
 {
-    private const double Ln2 = 0.693147180559945309;
     private readonly AlignedDoubles _ratePerMicrosecond;
 
     public Forgetting(int rowLength, ReadOnlySpan<SettingOptions> settings)
@@ -17,7 +16,7 @@ internal sealed class Forgetting<T> where T : struct, ILanes<T>
         {
             long halfLife = settings[lane].ForgetHalfLifeMicroseconds;
             if (halfLife == 0) continue;
-            _ratePerMicrosecond[lane] = Ln2 / halfLife;
+            _ratePerMicrosecond[lane] = Elementary.Ln2 / halfLife;
             IsNeeded = true;
         }
     }

@@ -44,7 +44,7 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
 
     public override void Learn(in EncodedVector x, in Lesson lesson)
     {
-        if (lesson.MissProbability.IsEmpty) Score(in x, lesson.Offset);
+        if (lesson.MissProbability.IsEmpty && !lesson.IsScored) Score(in x, lesson.Offset);
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {
             // The gradient of the intercept; that of a coefficient is x times as much.
@@ -67,7 +67,7 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         bool forgets = Forgetting.IsNeeded;
         for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
         {
-            var rule = new Rule(T.Load(in _step.First, lane), T.Load(in _beta.First, lane), T.Load(in _l1.First, lane), T.Load(in _l2.First, lane));
+            Rule rule = RuleAt(lane);
             T gradient = T.Load(in _gradient.First, lane);
             T scale = Scale.At(lane);
             T isForgetting = Forgetting.Mask(lane);
@@ -77,12 +77,28 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
                 T w = scale * T.Load(in table, place);
                 T z = T.Load(in table, place + length);
                 T n = T.Load(in table, place + 2 * length);
-                if (forgets) z = T.Select(isForgetting & T.Greater(T.Abs(w), T.Of(0)), rule.ZOf(w, n), z);
+                if (forgets) z = T.Select(isForgetting & T.Greater(T.Abs(w), T.Of(0)), rule.ZOf(w, n, w), z);
                 w = rule.Move(ref z, ref n, w, gradient * T.Of(Unsafe.Add(ref values, i)));
                 (forgets ? w / scale : w).Store(ref table, place);
                 z.Store(ref table, place + length);
                 n.Store(ref table, place + 2 * length);
             }
+        }
+    }
+
+    public override void Pull(int slot, double left)
+    {
+        ref double table = ref Table.First;
+        nuint length = (nuint)RowLength;
+        for (nuint lane = 0; lane < length; lane += (nuint)T.Width)
+        {
+            nuint place = (nuint)slot * (SlotRows * length) + lane;
+            T w = T.Load(in table, place);
+            T pulled = w * T.Of(left);
+            T z = T.Load(in table, place + length);
+            T zOfPulled = RuleAt(lane).ZOf(Scale.At(lane) * pulled, T.Load(in table, place + 2 * length), w);
+            pulled.Store(ref table, place);
+            T.Select(T.Greater(T.Abs(w), T.Of(0)), zOfPulled, z).Store(ref table, place + length);
         }
     }
 
@@ -113,6 +129,10 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
         _interceptN[lane] = numbers[3];
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private Rule RuleAt(nuint lane) =>
+        new(T.Load(in _step.First, lane), T.Load(in _beta.First, lane), T.Load(in _l1.First, lane), T.Load(in _l2.First, lane));
+
     private void LearnIntercept(nuint lane, T gradient)
     {
         T z = T.Load(in _interceptZ.First, lane);
@@ -137,10 +157,10 @@ internal sealed class FtrlLearner<T> : SlotLearner<T> where T : struct, ILanes<T
             return T.Select(T.Greater(T.Abs(z), l1), (penalty - z) / Curvature(root), T.Of(0));
         }
 
-        /// <summary>The z that belongs to a coefficient that is not 0.</summary>
+        /// <summary>The z that belongs to a coefficient on one side of 0, however near.</summary>
         [MethodImpl(MethodImplOptions.AggressiveInlining)]
-        public T ZOf(T w, T n) =>
-            T.Select(T.Greater(w, T.Of(0)), T.Of(0) - l1, l1) - w * Curvature(T.Sqrt(n));
+        public T ZOf(T w, T n, T side) =>
+            T.Select(T.Greater(side, T.Of(0)), T.Of(0) - l1, l1) - w * Curvature(T.Sqrt(n));
 
         private T Curvature(T rootOfN) => (beta + rootOfN) / step + l2;
     }

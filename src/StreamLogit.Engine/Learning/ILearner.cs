@@ -25,6 +25,11 @@ internal interface ILearner
     /// <summary>Adds to each place of <paramref name="coefficients"/> the coefficients of that entry of x, weighted by setting.</summary>
     void AddCoefficients(in EncodedVector x, ReadOnlySpan<double> settingWeights, Span<double> coefficients);
 
+    /// <summary>Pulls the coefficients of a slot towards 0. The slot must have been marked.</summary>
+    /// <param name="slot">The slot.</param>
+    /// <param name="left">The share of them that is left, 0 to 1.</param>
+    void Pull(int slot, double left);
+
     double Intercept(int lane);
 
     double Coefficient(int slot, int lane);

@@ -113,6 +113,12 @@ internal sealed class NewtonLearner<T> : ILearner where T : struct, ILanes<T>
         }
     }
 
+    public void Pull(int slot, double left)
+    {
+        if (!TryIndex(slot, out int index)) return;
+        for (int lane = 0; lane < RowLength; lane++) _mean[index * RowLength + lane] *= left;
+    }
+
     public double Intercept(int lane) => _mean[(_size - 1) * RowLength + lane];
 
     public double Coefficient(int slot, int lane) => TryIndex(slot, out int index) ? _mean[index * RowLength + lane] : 0;

@@ -40,7 +40,7 @@ internal sealed class SgdLearner<T> : SlotLearner<T> where T : struct, ILanes<T>
 
     public override void Learn(in EncodedVector x, in Lesson lesson)
     {
-        if (lesson.MissProbability.IsEmpty || _isAnyOvershootProof) Score(in x, lesson.Offset);
+        if ((lesson.MissProbability.IsEmpty || _isAnyOvershootProof) && !lesson.IsScored) Score(in x, lesson.Offset);
         double squaredLength = _isAnyOvershootProof ? SquaredLength(in x) : 0;
         for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
         {

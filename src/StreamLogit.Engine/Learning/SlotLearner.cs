@@ -84,6 +84,13 @@ internal abstract class SlotLearner<T> : ILearner where T : struct, ILanes<T>
         }
     }
 
+    public virtual void Pull(int slot, double left)
+    {
+        nuint place = (nuint)slot * (nuint)Table.RowLength;
+        for (nuint lane = 0; lane < (nuint)RowLength; lane += (nuint)T.Width)
+            (T.Load(in Table.First, place + lane) * T.Of(left)).Store(ref Table.First, place + lane);
+    }
+
     public double Intercept(int lane) => Intercepts[lane];
 
     public double Coefficient(int slot, int lane) => Scale[lane] * Table.Rows(slot, 1)[lane];

@@ -3,6 +3,9 @@ namespace StreamLogit.Engine.Numerics;
 /// <summary>Elementary functions of single values, with the same bits on every machine. At most 2 units in the last place off.</summary>
 internal static class Elementary
 {
+    /// <summary>ln 2.</summary>
+    public const double Ln2 = 0.693147180559945309;
+
     /// <summary>e^x.</summary>
     public static double Exp(double x) => LaneMath.Exp(new Lanes1(x)).Value;
 

@@ -20,7 +20,7 @@ internal static class DefinitionInWords
         foreach (string line in Records(engine.Record)) yield return $"  {line}";
         yield return "";
         yield return "Features";
-        foreach (var feature in engine.Features) yield return $"  {feature.Name}: {Describe(feature)}";
+        foreach (var feature in engine.Features) yield return $"  {feature.Name}: {Describe(feature)}{Forgetting(feature)}";
         yield return "";
         yield return "Learning";
         yield return $"  published: {engine.Learning.PublishedSetting ?? FormattableString.Invariant($"the blend of all settings, switch rate {engine.Learning.SwitchRate}")}";
@@ -121,6 +121,10 @@ internal static class DefinitionInWords
         return FormattableString.Invariant($"a coefficient for every run of {string.Join(", ", runs)}; at most {text.Most} different runs of each length");
     }
 
+    private static string Forgetting(FeatureOptions feature) => feature.ForgetHalfLifeMicroseconds > 0
+        ? $"; what is learned of it fades to half in {DurationText.Format(feature.ForgetHalfLifeMicroseconds)}"
+        : "";
+
     private static IEnumerable<string> Health(HealthOptions health)
     {
         yield return FormattableString.Invariant($"over {string.Join(", ", health.Windows.Select(window => window.Name))} and the last {health.LastLabels} labels");
@@ -174,7 +178,7 @@ internal static class DefinitionInWords
     private static string Memory(EngineDefinition engine)
     {
         return FormattableString.Invariant(
-            $"{FigureText.Bytes(CoefficientTables.Bytes(engine.Learning))} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), {Histories(engine)}and room for every event that awaits its label");
+            $"{FigureText.Bytes(CoefficientTables.Bytes(engine))} for the coefficients ({engine.Learning.Slots} slots, {engine.Learning.Bank.Length} settings), {Histories(engine)}and room for every event that awaits its label");
     }
 
     private static string Histories(EngineDefinition engine) =>

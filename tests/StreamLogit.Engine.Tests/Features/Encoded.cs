@@ -17,9 +17,12 @@ internal sealed class Encoded
     }
 
     public Encoded(ulong seed, params FeatureOptions[] features)
+        : this(Definitions.Of(features) with { Learning = Definitions.Of().Learning with { HashSeed = seed } })
     {
-        var definition = Definitions.Of(features);
-        definition = definition with { Learning = definition.Learning with { HashSeed = seed } };
+    }
+
+    public Encoded(EngineDefinition definition)
+    {
         _schema = new RecordSchema(definition);
         _decoder = new RecordDecoder(_schema);
         Encoder = new FeatureEncoder(definition, _schema);

@@ -18,6 +18,16 @@ public sealed class CoefficientTablesTests
         Assert.Equal(1024 * (4 + 3) * sizeof(double), CoefficientTables.Bytes(options));
     }
 
+    [Fact]
+    public void Bytes_FeatureThatForgets_AddsWhatIsKeptOfEverySlot()
+    {
+        var definition = Definitions.Of(new NumberFeature("x", NumberScale.None));
+        var forgetting = Definitions.Of(new NumberFeature("x", NumberScale.None) { ForgetHalfLifeMicroseconds = 1_000_000 });
+
+        Assert.Equal(CoefficientTables.Bytes(definition.Learning), CoefficientTables.Bytes(definition));
+        Assert.Equal(CoefficientTables.Bytes(definition) + 16 * definition.Learning.Slots, CoefficientTables.Bytes(forgetting));
+    }
+
     [Theory]
     [InlineData(1 << 26, 24, true)]
     [InlineData(1 << 26, 32, false)]

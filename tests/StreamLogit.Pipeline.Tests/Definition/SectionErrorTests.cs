@@ -43,7 +43,7 @@ public sealed class SectionErrorTests
     [InlineData("[ { \"category\": [ \"a\", \"label\" ] } ]", "2:24: features[0].category[1]: the field \"label\" holds the label, which is not known when an event is scored: name another")]
     [InlineData("[ { \"category\": [ \"a\", \"a\" ] } ]", "2:24: features[0].category[1]: the field \"a\" is there twice: keep one")]
     [InlineData("[ { \"category\": [ \"a\", 5, true ] } ]", "2:24: features[0].category[1]: expected a string, found the number 5", "2:27: features[0].category[2]: expected a string, found true")]
-    [InlineData("[ { \"category\": \"a\", \"scale\": \"none\" } ]", "2:22: features[0].scale: unknown key. Known here: \"category\"")]
+    [InlineData("[ { \"category\": \"a\", \"scale\": \"none\" } ]", "2:22: features[0].scale: unknown key. Known here: \"category\", \"forget\"")]
     [InlineData("[ { \"cycle\": \"time\" } ]", "2:3: features[0]: the key \"period\" is missing: how long the cycle is, a duration for the time of the event or a number for another field")]
     [InlineData("[ { \"cycle\": \"time\", \"period\": 24 } ]", "2:32: features[0].period: expected a duration from 1ms to 36525d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the number 24")]
     [InlineData("[ { \"cycle\": \"time\", \"period\": \"1 d\" } ]", "2:32: features[0].period: expected a duration from 1ms to 36525d, written as a number followed by ms, s, m, h, d or w, as \"90m\" or \"30d\", found the string \"1 d\"")]

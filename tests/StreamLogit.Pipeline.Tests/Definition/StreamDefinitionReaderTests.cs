@@ -97,7 +97,7 @@ public sealed class StreamDefinitionReaderTests
         Assert.Equal(
             [
                 """quay.json:2:13: stream: expected a string that is not empty, found the string "" """.TrimEnd(),
-                """quay.json:3:39: features[0].scael: unknown key; did you mean "scale"? Known here: "number", "scale" """.TrimEnd(),
+                """quay.json:3:39: features[0].scael: unknown key; did you mean "scale"? Known here: "number", "scale", "forget" """.TrimEnd(),
                 """quay.json:3:59: features[1]: expected a feature with one of the keys "number", "category", "cycle", "history", "bucket", "text", found "categroy"; did you mean "category"?""",
                 "quay.json:4:26: learning.slots: expected a power of two from 16 to 67108864, found the number 1000",
                 """quay.json:5:3: lables: unknown key; did you mean "labels"? Known here: "$schema", "stream", "record", "features", "histories", "learning", "labels", "decision", "health", "kafka", "source", "scores", "rejects", "recording", "state", "listen", "webhook" """.TrimEnd(),

@@ -40,6 +40,19 @@ public sealed class CheckCommandTests
     }
 
     [Fact]
+    public void Check_FeatureThatForgets_IsSaidInWords()
+    {
+        using var folder = new TemporaryFolder();
+        string path = folder.Write("quay.json", """{ "stream": "quay", "features": [ { "number": "amount" }, { "category": "country", "forget": "36h" } ] }""");
+
+        var result = StreamLogitProcess.Run("check", path);
+
+        Assert.Equal(0, result.ExitCode);
+        Assert.Contains("\n  country: a coefficient for every value, \"missing\" among them; what is learned of it fades to half in 36h\n", result.Output, StringComparison.Ordinal);
+        Assert.Contains("\n  amount: a number as it is; a coefficient of its own where it is missing\n", result.Output, StringComparison.Ordinal);
+    }
+
+    [Fact]
     public void Check_EnvironmentVariable_OverridesTheDefinitionButNotSet()
     {
         var result = StreamLogitProcess.RunWith(

@@ -13,9 +13,9 @@ public sealed class FullDiskTests(UndisturbedRun undisturbed) : IClassFixture<Un
         // The device that is always full.
         File.CreateSymbolicLink(full.Scores, "/dev/full");
 
-        var failed = StreamLogitProcess.Run(full.RunArguments(500));
+        var failed = StreamLogitProcess.Run(UndisturbedRun.Arguments(full, 500));
         File.Delete(full.Scores);
-        var resumed = StreamLogitProcess.Run(full.RunArguments(500));
+        var resumed = StreamLogitProcess.Run(UndisturbedRun.Arguments(full, 500));
 
         Assert.Equal(1, failed.ExitCode);
         Assert.Empty(failed.Output);
@@ -35,8 +35,8 @@ public sealed class FullDiskTests(UndisturbedRun undisturbed) : IClassFixture<Un
         using var limited = new WorkerFolder();
         File.Copy(undisturbed.Folder.Recording, limited.Recording);
 
-        var failed = RunLimited(mostKibibytesOfAFile, limited.RunArguments(500));
-        var resumed = StreamLogitProcess.Run(limited.RunArguments(500));
+        var failed = RunLimited(mostKibibytesOfAFile, UndisturbedRun.Arguments(limited, 500));
+        var resumed = StreamLogitProcess.Run(UndisturbedRun.Arguments(limited, 500));
 
         Assert.Equal(1, failed.ExitCode);
         Assert.Empty(failed.Output);

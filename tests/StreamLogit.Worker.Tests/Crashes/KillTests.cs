@@ -22,7 +22,7 @@ public sealed class KillTests(UndisturbedRun undisturbed) : IClassFixture<Undist
         int killsAtWork = 0;
         for (int kill = 0; kill < Kills; kill++)
         {
-            using var worker = StreamLogitProcess.Start(killed.RunArguments(commitEvery));
+            using var worker = StreamLogitProcess.Start(UndisturbedRun.Arguments(killed, commitEvery));
             bool atStart = kill % 5 == 4;
             if (!atStart)
             {
@@ -38,7 +38,7 @@ public sealed class KillTests(UndisturbedRun undisturbed) : IClassFixture<Undist
         Assert.InRange(killsAtWork, Kills - 2, Kills);
         Assert.InRange(new FileInfo(killed.Scores).Length, wholeLength / 4, wholeLength);
 
-        var last = StreamLogitProcess.Run(killed.RunArguments(commitEvery));
+        var last = StreamLogitProcess.Run(UndisturbedRun.Arguments(killed, commitEvery));
 
         Assert.Equal(0, last.ExitCode);
         Assert.Equal(undisturbed.Output, last.Output);

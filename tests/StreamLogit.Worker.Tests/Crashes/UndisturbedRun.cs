@@ -2,7 +2,9 @@ using StreamLogit.Worker.Tests.Running;
 
 namespace StreamLogit.Worker.Tests.Crashes;
 
-/// <summary>A run from beginning to end over a recording of which every hundredth line is spoilt, with which disturbed runs are compared.</summary>
+/// <summary>
+/// A run from beginning to end over a recording of which every hundredth line is spoilt, with which disturbed runs are compared. One feature forgets.
+/// </summary>
 public sealed class UndisturbedRun : IDisposable
 {
     private const int Records = 60_000;
@@ -14,7 +16,7 @@ public sealed class UndisturbedRun : IDisposable
         for (int i = 50; i < lines.Length; i += 100) lines[i] = lines[i][..^5];
         File.WriteAllLines(Folder.Recording, lines);
 
-        var run = StreamLogitProcess.Run(Folder.RunArguments(Records));
+        var run = StreamLogitProcess.Run(Arguments(Folder, Records));
         Assert.Equal(0, run.ExitCode);
         Output = run.Output;
         Assert.InRange(File.ReadLines(Folder.Rejects).Count(), Records / 100, Records / 50);
@@ -28,6 +30,9 @@ public sealed class UndisturbedRun : IDisposable
 
     /// <summary>The model at its end, as <c>show --json</c> writes it.</summary>
     internal string Model { get; }
+
+    /// <summary>Arguments of a run that commits after so many records.</summary>
+    internal static string[] Arguments(WorkerFolder folder, int commitEvery) => folder.RunArguments(commitEvery, "--set", "features[6].forget=12h");
 
     public void Dispose() => Folder.Dispose();
 }

@@ -1,3 +1,4 @@
+using System.Collections.Immutable;
 using System.Text.Json;
 using StreamLogit.Engine.Definition;
 
@@ -21,8 +22,8 @@ internal sealed class BankEntry
 
     /// <summary>Reads an entry, or adds errors and gives null.</summary>
     /// <param name="value">The entry.</param>
-    /// <param name="denseCoefficients">How many coefficients the features have beside hashed ones, or null where the features are wrong.</param>
-    public static BankEntry? Read(ValueReader value, int? denseCoefficients)
+    /// <param name="features">The features, or null where they are wrong.</param>
+    public static BankEntry? Read(ValueReader value, ImmutableArray<FeatureOptions>? features)
     {
         if (value.Object() is not { } entry) return null;
         var update = entry.Required("update", $"it names the update rule, one of {Quoted.List(UpdateRules.All.Select(rule => rule.Name))}");
@@ -33,10 +34,7 @@ internal sealed class BankEntry
             update.UnknownName([.. UpdateRules.All.Select(known => known.Name)]);
             return null;
         }
-        if (rule.MostDenseCoefficients is { } most && denseCoefficients is { } dense && (dense < 1 || dense > most))
-        {
-            update.Error($"{rule.Name} learns only the coefficients of numbers and cycles, from 1 to {most} of them, and these features have {dense}: choose another rule");
-        }
+        if (features is { } known) CheckFeatures(update, rule, known);
         var read = rule.Numbers.Select(number => ReadValues(entry, number)).ToList();
         entry.End();
         if (read.Contains(null)) return null;
@@ -57,6 +55,19 @@ internal sealed class BankEntry
                 numbers[number] = _values[number][digit];
             }
             yield return _rule.Create(numbers);
+        }
+    }
+
+    private static void CheckFeatures(ValueReader update, UpdateRule rule, ImmutableArray<FeatureOptions> features)
+    {
+        int dense = features.Sum(feature => feature.DenseCoefficients);
+        if (rule.MostDenseCoefficients is { } most && (dense < 1 || dense > most))
+            update.Error($"{rule.Name} learns only the coefficients of numbers and cycles, from 1 to {most} of them, and these features have {dense}: choose another rule");
+        if (!rule.LetsFeaturesForget && features.FirstOrDefault(feature => feature.ForgetHalfLifeMicroseconds > 0) is { } forgotten)
+        {
+            update.Error(
+                $"{rule.Name} learns all coefficients together and cannot let those of one feature fade, as \"forget\" of the feature {Quoted.Text(forgotten.Name)} says:"
+                + $" leave out either. An entry of the bank can have \"forget\" for all features");
         }
     }
 

@@ -11,7 +11,7 @@ internal static class BankSection
     private const string Default = "default";
 
     /// <summary>The settings in the order in which they are written, or null and errors.</summary>
-    public static ImmutableArray<SettingOptions>? Read(ValueReader value, int? denseCoefficients, ImmutableArray<SettingOptions> defaultBank)
+    public static ImmutableArray<SettingOptions>? Read(ValueReader value, ImmutableArray<FeatureOptions>? features, ImmutableArray<SettingOptions> defaultBank)
     {
         if (value.Value.Kind == JsonValueKind.String)
         {
@@ -26,7 +26,7 @@ internal static class BankSection
         long count = 0;
         foreach (var entry in entries)
         {
-            if (BankEntry.Read(entry, denseCoefficients) is not { } read)
+            if (BankEntry.Read(entry, features) is not { } read)
             {
                 right = false;
                 continue;

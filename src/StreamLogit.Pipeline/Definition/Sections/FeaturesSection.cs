@@ -59,8 +59,9 @@ internal static class FeaturesSection
             "text" => [TextFeatures.Read(section, Field(field, record))],
             _ => [ReadCycle(section, field, record)],
         };
+        long? forget = section.Optional("forget")?.Duration(UpdateRules.ShortestForgetMicroseconds, UpdateRules.LongestForgetMicroseconds);
         section.End();
-        return features.OfType<FeatureOptions>();
+        return features.OfType<FeatureOptions>().Select(feature => feature with { ForgetHalfLifeMicroseconds = forget ?? 0 });
     }
 
     private static NumberFeature? ReadNumber(ObjectReader section, ValueReader value, RecordOptions record)

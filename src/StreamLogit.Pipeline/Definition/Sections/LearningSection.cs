@@ -24,7 +24,7 @@ internal static class LearningSection
         var slotsKey = section.Optional("slots");
         int? slots = slotsKey?.PowerOfTwo(FewestSlotsExponent, MostSlotsExponent);
         ulong? hashSeed = section.Optional("hashSeed")?.Unsigned();
-        var bank = section.Optional("bank") is { } written ? BankSection.Read(written, features?.Sum(feature => feature.DenseCoefficients), defaults.Bank) : defaults.Bank;
+        var bank = section.Optional("bank") is { } written ? BankSection.Read(written, features, defaults.Bank) : defaults.Bank;
         double? startProbability = section.Optional("startProbability")?.Number(NumberRange.BetweenZeroAndOne);
         var warmStartKey = section.Optional("warmStart");
         string? publish = ReadPublish(section.Optional("publish"), bank);

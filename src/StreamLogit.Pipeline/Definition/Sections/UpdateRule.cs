@@ -10,4 +10,7 @@ internal sealed record UpdateRule(string Name, IReadOnlyList<RuleNumber> Numbers
 {
     /// <summary>The most dense coefficients that the rule takes, of which it needs at least one; null where it takes any number and hashed ones too.</summary>
     public int? MostDenseCoefficients { get; init; }
+
+    /// <summary>Whether a feature may have its own <c>forget</c>. Default true.</summary>
+    public bool LetsFeaturesForget { get; init; } = true;
 }

@@ -5,8 +5,8 @@ namespace StreamLogit.Pipeline.Definition.Sections;
 /// <summary>The update rules that the bank can hold, each with its numbers.</summary>
 internal static class UpdateRules
 {
-    private const long ShortestForgetMicroseconds = 1_000_000;
-    private const long LongestForgetMicroseconds = 36_525L * 24 * 3600 * 1_000_000;
+    public const long ShortestForgetMicroseconds = 1_000_000;
+    public const long LongestForgetMicroseconds = 36_525L * 24 * 3600 * 1_000_000;
 
     public static IReadOnlyList<UpdateRule> All { get; } =
     [
@@ -41,7 +41,7 @@ internal static class UpdateRules
                 RuleNumber.Number("forgetting", NumberRange.PositiveToOne, absent: 1),
                 RuleNumber.Number("prior", NumberRange.PositiveToMillion, absent: 1),
             ],
-            numbers => new NewtonSetting(numbers[0], numbers[1])) with { MostDenseCoefficients = NewtonSetting.MostDenseCoefficients },
+            numbers => new NewtonSetting(numbers[0], numbers[1])) with { MostDenseCoefficients = NewtonSetting.MostDenseCoefficients, LetsFeaturesForget = false },
     ];
 
     /// <summary>A rule with its own numbers and <c>forget</c>, which every rule has, as the last.</summary>

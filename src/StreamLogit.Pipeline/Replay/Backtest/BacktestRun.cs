@@ -160,7 +160,7 @@ public sealed class BacktestRun
 
     private static long BytesOf(Variant variant)
     {
-        var learning = variant.Definition.Engine.Learning;
-        return CoefficientTables.Bytes(learning) + learning.Slots * BytesPerSlot + BytesPerVariant;
+        var engine = variant.Definition.Engine;
+        return CoefficientTables.Bytes(engine) + engine.Learning.Slots * BytesPerSlot + BytesPerVariant;
     }
 }
