@@ -62,6 +62,33 @@ public sealed class AlarmRunTests : IDisposable
             Enumerable.Range(0, receiver.Count).Select(_ => receiver.Next().Body.GetProperty("number").GetInt64()));
     }
 
+    [Fact]
+    public void Run_KilledAgainAndAgain_TheReceiverHasEveryChangeInTheEnd()
+    {
+        using var receiver = new WebhookReceiver(200);
+        var received = new List<(long Number, string Sentence)>();
+        for (int kills = 0; kills < 3; kills++)
+        {
+            using var process = StreamLogitProcess.Start("dotnet", [StreamLogitProcess.Program, .. Arguments(receiver.Url)], Secret, []);
+            process.WaitForLength(_folder.Scores, 400_000 * (kills + 1));
+            process.Kill();
+        }
+
+        Assert.Equal(0, Run(receiver.Url).ExitCode);
+
+        while (receiver.Count > 0)
+        {
+            var body = receiver.Next().Body;
+            received.Add((body.GetProperty("number").GetInt64(), body.GetProperty("sentence").GetString()!));
+        }
+        var state = StreamLogitProcess.Run("show", _folder.State, "--health", "--json").Json;
+        var expected = state.GetProperty("alarmChanges").EnumerateArray().Select(change => (change.GetProperty("number").GetInt64(), change.GetProperty("sentence").GetString()!)).Order().ToList();
+        Assert.NotEmpty(expected);
+        // Some may have come twice, but then they say the same.
+        Assert.Equal(expected, received.Distinct().Order());
+        Assert.Empty(receiver.Faults);
+    }
+
     [Theory]
     [InlineData("""{"url":"http://127.0.0.1:1","secretVariable":"NO_SUCH_SECRET"}""", "The environment variable NO_SUCH_SECRET, which webhook.secretVariable names, is not set")]
     [InlineData("""{"url":"http://127.0.0.1:1","secretFile":"/no/such/file"}""", "cannot be read from the file that webhook.secretFile names")]
@@ -75,11 +102,10 @@ public sealed class AlarmRunTests : IDisposable
         Assert.False(Directory.Exists(_folder.State));
     }
 
-    private ProgramResult Run(string url)
-    {
-        string webhook = JsonSerializer.Serialize(new { url, secretVariable = "DUTY_SECRET" });
-        return StreamLogitProcess.RunWith(
-            [("DUTY_SECRET", WebhookReceiver.Secret)],
-            _folder.RunArguments(2000, "--until-end", "--set", $"health.alarms={Alarm}", "--set", $"webhook={webhook}"));
-    }
+    private static (string, string)[] Secret => [("DUTY_SECRET", WebhookReceiver.Secret)];
+
+    private ProgramResult Run(string url) => StreamLogitProcess.RunWith(Secret, Arguments(url));
+
+    private string[] Arguments(string url) => _folder.RunArguments(
+        2000, "--until-end", "--set", $"health.alarms={Alarm}", "--set", $"webhook={JsonSerializer.Serialize(new { url, secretVariable = "DUTY_SECRET" })}");
 }
