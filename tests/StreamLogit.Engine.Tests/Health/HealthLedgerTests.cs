@@ -126,6 +126,37 @@ public class HealthLedgerTests
     }
 
     [Fact]
+    public void CountLabel_TenMillionLabelsOverYears_TakesNoMoreMemoryThanTwo()
+    {
+        const int Settled = 2_000_000, All = 10_000_000; // an event each half minute: after 694 days the rings are full but for a few days, after 3,472 long since
+        var run = new LedgerRun(new HealthOptions { History = new HealthHistoryOptions { Days = 365 }, LabelsPerFalseAlarm = int.MaxValue });
+        var random = new Detection.FixedStream(31);
+        var blocks = new StateBlocks();
+        Count(0, Settled);
+        run.Ledger.Save(blocks);
+        long settledBytes = Bytes(blocks), start = GC.GetAllocatedBytesForCurrentThread();
+
+        Count(Settled, All);
+
+        Assert.InRange(GC.GetAllocatedBytesForCurrentThread() - start, 0, 1 << 20);
+        run.Ledger.Save(blocks);
+        Assert.InRange(Bytes(blocks), 0.95 * settledBytes, 1.05 * settledBytes);
+        Assert.Equal(All, run.Snapshot.Labelled);
+        Assert.Equal(365, run.Snapshot.History.Days.Length - 1);
+
+        void Count(int from, int to)
+        {
+            for (int i = from; i < to; i++)
+            {
+                double logOdds = -3 + 2 * random.Uniform();
+                run.Label(i * Minute / 2, logOdds, random.Label(1 / (1 + Math.Exp(-logOdds))), delay: i % 3 * LedgerRun.Hour);
+            }
+        }
+
+        static long Bytes(StateBlocks blocks) => blocks.Changes().Sum(change => (long)(change.Bytes?.Length ?? 0));
+    }
+
+    [Fact]
     public void CountLabel_ExtremeLogOdds_StaysFinite()
     {
         var run = new LedgerRun();
