@@ -45,11 +45,7 @@ internal sealed class HealthLedger
     private readonly long[] _rejects = new long[(int)Enum.GetValues<RejectReason>().Max() + 1];
     private BaseRate _baseRate;
     private long _labelled;
-    private long _minute; // the first one of those that are open together
-    private long _openMinute; // that of the clock
-    private long _minuteEnd = long.MinValue; // in microseconds; before the first time, every minute is over
-    private long _hourEnd = long.MinValue; // in minutes
-    private long _dayEnd = long.MinValue;
+    private OpenMinutes _time = OpenMinutes.None;
 
     public HealthLedger(EngineDefinition definition, RecordSchema schema, ImmutableArray<string> settingNames)
     {
@@ -91,7 +87,7 @@ internal sealed class HealthLedger
     }
 
     /// <summary>Whether the clock has left the open minute, so that <see cref="StartMinute"/> is due.</summary>
-    public bool IsMinuteOver(long clockMicroseconds) => clockMicroseconds >= _minuteEnd && IsOn;
+    public bool IsMinuteOver(long clockMicroseconds) => clockMicroseconds >= _time.MinuteEnd && IsOn;
 
     /// <summary>
     /// Closes the open minute and opens that of the clock. A minute with fewer than eight records stays open for those after it, up to five of the same hour, so that
@@ -100,21 +96,21 @@ internal sealed class HealthLedger
     public void StartMinute(long clockMicroseconds)
     {
         long minute = MinuteOf(clockMicroseconds);
-        bool isFirst = _minuteEnd == long.MinValue;
-        _openMinute = minute;
-        _minuteEnd = (minute + 1) * MicrosecondsOfMinute;
-        if (minute - _minute < MostMinutesTogether && minute < _hourEnd && OpenRecords < FewRecords) return;
+        bool isFirst = _time.MinuteEnd == long.MinValue;
+        _time.Present = minute;
+        _time.MinuteEnd = (minute + 1) * MicrosecondsOfMinute;
+        if (minute - _time.First < MostMinutesTogether && minute < _time.HourEnd && OpenRecords < FewRecords) return;
 
         CountWaiting();
         _cohorts.CountEvents(HealthRow.Stream(_open).Events);
         if (!isFirst && !_stream.Levels[0].IsOpenEmpty)
         {
-            _settingShares.AddTo(_open, Math.Min(minute - _minute, MostMinutesTogether));
+            _settingShares.AddTo(_open, Math.Min(minute - _time.First, MostMinutesTogether));
             _settingShares.Close();
         }
-        bool isNewHour = minute >= _hourEnd, isNewDay = minute >= _dayEnd;
-        if (isNewHour) _hourEnd = (WholeDivision.Floor(minute, MinutesOfHour) + 1) * MinutesOfHour;
-        if (isNewDay) _dayEnd = (WholeDivision.Floor(minute, MinutesOfDay) + 1) * MinutesOfDay;
+        bool isNewHour = minute >= _time.HourEnd, isNewDay = minute >= _time.DayEnd;
+        if (isNewHour) _time.HourEnd = (WholeDivision.Floor(minute, MinutesOfHour) + 1) * MinutesOfHour;
+        if (isNewDay) _time.DayEnd = (WholeDivision.Floor(minute, MinutesOfDay) + 1) * MinutesOfDay;
         _stream.MoveTo(minute);
         foreach (var field in _slices) field.MoveTo(minute, isNewDay && !isFirst);
         if (isNewHour)
@@ -122,7 +118,7 @@ internal sealed class HealthLedger
             _cohorts.MoveTo(WholeDivision.Floor(minute, MinutesOfHour));
             _drift.StartHour(minute);
         }
-        _minute = minute;
+        _time.First = minute;
         if (!isFirst && !_alarms.IsEmpty) _alarms.Look(minute - 1, _alarmMetrics);
     }
 
@@ -145,7 +141,7 @@ internal sealed class HealthLedger
     public void CountReject(RejectReason reason)
     {
         _rejects[(int)reason]++;
-        if (_minuteEnd == long.MinValue) return; // there is no time yet to count it at
+        if (_time.MinuteEnd == long.MinValue) return; // there is no time yet to count it at
         HealthRow.Stream(_open).Rejects++;
         _openTally.Use(HealthRow.FirstRejectCell + (int)reason)++;
     }
@@ -159,7 +155,7 @@ internal sealed class HealthLedger
     {
         double baseRate = _baseRate.Probability;
         _baseRate.Learn(label.Label, label.Weight);
-        var count = new LabelCount((int)_openMinute, (uint)_labelled, baseRate, (float)label.Weight);
+        var count = new LabelCount((int)_time.Present, (uint)_labelled, baseRate, (float)label.Weight);
         _labelled++;
         if (!IsOn) return count;
         _waiting.Add(label, baseRate);
@@ -202,7 +198,7 @@ internal sealed class HealthLedger
     {
         CountWaiting();
         long clock = clockMicroseconds ?? 0;
-        return _reader.Read(MinuteOf(clock), clock, Math.Clamp(MinuteOf(clock) - _minute + 1, 1, MostMinutesTogether)) with
+        return _reader.Read(MinuteOf(clock), clock, Math.Clamp(MinuteOf(clock) - _time.First + 1, 1, MostMinutesTogether)) with
         {
             ClockMicroseconds = clockMicroseconds,
             Labelled = Labelled,
@@ -222,11 +218,7 @@ internal sealed class HealthLedger
         CountWaiting();
         using var bytes = new MemoryStream();
         using var writer = new BinaryWriter(bytes);
-        writer.Write(_minute);
-        writer.Write(_openMinute);
-        writer.Write(_minuteEnd);
-        writer.Write(_hourEnd);
-        writer.Write(_dayEnd);
+        _time.Save(writer);
         writer.Write(_baseRate.Ones);
         writer.Write(_baseRate.Labels);
         writer.Write(_labelled);
@@ -249,11 +241,7 @@ internal sealed class HealthLedger
     {
         byte[] bytes = state.Find(Part, 0) ?? throw new InvalidStateException($"the state has no {Part}");
         using var reader = new BinaryReader(new MemoryStream(bytes));
-        _minute = reader.ReadInt64();
-        _openMinute = reader.ReadInt64();
-        _minuteEnd = reader.ReadInt64();
-        _hourEnd = reader.ReadInt64();
-        _dayEnd = reader.ReadInt64();
+        _time = OpenMinutes.Read(reader);
         _baseRate.Ones = reader.ReadDouble();
         _baseRate.Labels = reader.ReadDouble();
         _labelled = reader.ReadInt64();
