@@ -151,6 +151,17 @@ public sealed class HealthPageTests(ChromiumFixture chromium, ServedFerryTickets
     }
 
     [Fact]
+    public async Task Page_OfAStreamWithoutRecords_SaysThatThereIsNothingToTell()
+    {
+        using var stream = ServedStream.OfFerryTickets(records: 0);
+        await using var watched = await OpenAsync(await chromium.OpenAsync(), stream.Address);
+
+        Assert.Equal("Nothing to tell yet", await watched.Page.InnerTextAsync("#verdict-title"));
+        Assert.Empty(await watched.FindAxeViolationsAsync());
+        Assert.Empty(watched.Complaints);
+    }
+
+    [Fact]
     public async Task Text_OfTheStream_StaysText()
     {
         const string hostile = "<img src=x onerror=alert(1)>";

@@ -50,5 +50,8 @@ public sealed class ListenRefusalTests : IDisposable
         Assert.Equal(0, result.ExitCode);
         Assert.Contains("The health page is at http://", result.Errors, StringComparison.Ordinal);
         Assert.DoesNotContain("nobody-guesses", result.Errors + result.Output, StringComparison.Ordinal);
+        var kept = Directory.GetFiles(_folder.State);
+        Assert.NotEmpty(kept);
+        Assert.All(kept, file => Assert.True(File.ReadAllBytes(file).AsSpan().IndexOf("nobody-guesses"u8) < 0, file));
     }
 }
