@@ -18,6 +18,7 @@ internal sealed class Bank
     private readonly int _publishedSetting;
     private readonly double[] _settingWeights;
     private readonly SlotForgetting? _slotForgetting; // null where no feature forgets
+    private readonly bool _freshNeedScore; // lessons that have their probabilities
     private ImmutableArray<long> _outdatedForgetting = []; // blocks that the next save must take away
     private WarmStart? _warmStart;
     private long _lastLabelMicroseconds = long.MinValue;
@@ -44,6 +45,7 @@ internal sealed class Bank
             if (options.Bank.Any(setting => setting is NewtonSetting))
                 throw new ArgumentException("The update rule newton cannot let the coefficients of single slots fade.");
             _slotForgetting = new SlotForgetting(slotCount, forgetHalfLifeOf);
+            _freshNeedScore = options.Bank.Any(setting => setting is SgdSetting { IsOvershootProof: true });
         }
         Names = [.. options.Bank.Select(setting => setting.Name)];
         _publishedSetting = options.PublishedSetting is null ? -1 : Names.IndexOf(options.PublishedSetting);
@@ -111,7 +113,7 @@ internal sealed class Bank
         _blend.Learn(scoredLogOdds[..SettingCount], label, weight);
 
         // The gradients are those at the coefficients after the label before. Then these are pulled for the time since, and then moved.
-        if (_slotForgetting is not null) ScoreSettings(in x);
+        if (_slotForgetting is not null && (!isFresh || _freshNeedScore)) ScoreSettings(in x);
         double elapsed = AdvanceClock(timeMicroseconds);
         _slotForgetting?.Pull(x.Slots, _lastLabelMicroseconds, _groups);
         double offset = _warmStart?.LogOdds(in x) ?? 0;

@@ -21,7 +21,7 @@ internal readonly ref struct Lesson
     /// </summary>
     public required ReadOnlySpan<double> MissProbability { get; init; }
 
-    /// <summary>Whether the last score that every setting computed is that of the event at present.</summary>
+    /// <summary>Whether the last score that every setting computed is that of the event at present, where the lesson needs one.</summary>
     public bool IsScored { get; init; }
 
     /// <summary>The weight, with the sign of the direction in which the log-odds must move.</summary>
