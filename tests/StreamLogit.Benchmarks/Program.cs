@@ -15,6 +15,7 @@ if (args is ["nightly", var flights, var days]) return NightlyRefitOfFlights.Pri
 if (args is ["keys", var keys, var events]) return KeyedRecording.Write(int.Parse(keys, CultureInfo.InvariantCulture), int.Parse(events, CultureInfo.InvariantCulture));
 if (args is ["costs", var gibibytes]) return BankCosts.Print(double.Parse(gibibytes, CultureInfo.InvariantCulture));
 if (args is ["viewers", var viewers]) return await PageViewers.PrintAsync(int.Parse(viewers, CultureInfo.InvariantCulture));
+if (args is ["kafka-soak", var minutes, var eventsPerSecond]) return await KafkaSoak.RunAsync(double.Parse(minutes, CultureInfo.InvariantCulture), int.Parse(eventsPerSecond, CultureInfo.InvariantCulture));
 if (args is ["mock-broker", .. var topics]) return MockBroker.Serve(topics);
 BenchmarkSwitcher.FromAssembly(typeof(RatioTable).Assembly).Run(args);
 return 0;
