@@ -10,6 +10,10 @@ internal sealed class AlarmState(AlarmOptions alarm)
     private const long MostMinutesBetweenLooks = 60;
     private const long MicrosecondsOfMinute = 60_000_000;
 
+    private string? _sentence = AlarmSentence.NotLookedAt(alarm);
+    private AlarmReading _reading;
+    private bool _isBeyond;
+
     public AlarmOptions Alarm => alarm;
 
     /// <summary>How many minutes pass between two looks: a sixtieth of the window, from a minute to an hour.</summary>
@@ -28,9 +32,17 @@ internal sealed class AlarmState(AlarmOptions alarm)
 
     public long Count { get; set; }
 
-    public string Sentence { get; set; } = AlarmSentence.NotLookedAt(alarm);
+    /// <summary>What is wrong, or that nothing is. Written when somebody reads it, as most looks change nothing and nobody does.</summary>
+    public string Sentence => _sentence ??= IsTold ? AlarmSentence.Of(alarm, _reading, _isBeyond) : AlarmSentence.TooFew(alarm, _reading, IsRaised);
 
     public AlarmFigures Figures => new(alarm, IsRaised, SinceMicroseconds, Value, Count, Sentence);
+
+    private bool IsTold => !double.IsNaN(_reading.Value) && _reading.Count >= alarm.Minimum;
+
+    /// <summary>Takes note of what a look found.</summary>
+    /// <param name="reading">The metric.</param>
+    /// <param name="isBeyond">Whether it is beyond the bound.</param>
+    public void Found(AlarmReading reading, bool isBeyond) => (_reading, _isBeyond, _sentence) = (reading, isBeyond, null);
 
     public void Save(BinaryWriter writer)
     {
@@ -53,7 +65,7 @@ internal sealed class AlarmState(AlarmOptions alarm)
         BeyondSinceMicroseconds = Optional(reader.ReadInt64());
         Value = reader.ReadDouble();
         Count = reader.ReadInt64();
-        Sentence = reader.ReadString();
+        _sentence = reader.ReadString();
 
         static long? Optional(long value) => value == long.MinValue ? null : value;
     }

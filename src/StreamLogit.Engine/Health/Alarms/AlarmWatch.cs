@@ -89,13 +89,13 @@ internal sealed class AlarmWatch(ImmutableArray<AlarmOptions> alarms)
         if (double.IsNaN(reading.Value) || reading.Count < alarm.Minimum)
         {
             state.BeyondSinceMicroseconds = null;
-            state.Sentence = AlarmSentence.TooFew(alarm, reading, state.IsRaised);
+            state.Found(reading, isBeyond: false);
             return;
         }
         bool isBeyond = alarm.IsAbove ? reading.Value > alarm.Bound : reading.Value < alarm.Bound;
         state.BeyondSinceMicroseconds = isBeyond ? state.BeyondSinceMicroseconds ?? clockMicroseconds : null;
         bool isRaised = isBeyond && (state.IsRaised || clockMicroseconds - state.BeyondSinceMicroseconds >= alarm.ForMicroseconds);
-        state.Sentence = AlarmSentence.Of(alarm, reading, isBeyond);
+        state.Found(reading, isBeyond);
         if (isRaised == state.IsRaised) return;
         state.IsRaised = isRaised;
         state.SinceMicroseconds = clockMicroseconds;
