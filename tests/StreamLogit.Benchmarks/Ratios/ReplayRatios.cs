@@ -54,8 +54,10 @@ internal static class ReplayRatios
         }
     }
 
+    // Slices have a row of their own in the table.
     private static EngineDefinition WithSettings(EngineDefinition definition, int settings) => definition with
     {
+        Health = definition.Health with { Slices = [], Alarms = [] },
         Learning = definition.Learning with { Bank = [.. Enumerable.Range(0, settings).Select(i => new SgdSetting(0.003 * (i + 1), 0, 1e-6))] },
     };
 }

@@ -8,7 +8,7 @@ namespace StreamLogit.Kafka.Tests.Runs;
 /// <summary>A worker that runs between topics of a mock cluster until it is stopped, for tests that disturb it.</summary>
 internal sealed class LiveWorker : IAsyncDisposable
 {
-    private static readonly TimeSpan Limit = TimeSpan.FromSeconds(40);
+    private static readonly TimeSpan Limit = TimeSpan.FromMinutes(2);
 
     private readonly TemporaryFolder _folder = new(inMemory: true);
     private readonly CancellationTokenSource _stop = new();
