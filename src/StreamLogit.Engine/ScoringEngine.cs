@@ -303,7 +303,7 @@ public sealed class ScoringEngine
                 StandsFor = 1,
                 Alert = isAlert ? 1 : 0,
             };
-            Learn(record.IdHash, encoded, _logOdds, isFresh: true, label, _clock.Microseconds);
+            Learn(record.IdHash, encoded, _logOdds, isFresh: true, label);
             _encoder.Learn(_encoder.LabelKeys, record.TimeMicroseconds, label.Label, label.Weight);
         }
         else if (IsKept(probability, record.IdHash, out int standsFor))
@@ -373,7 +373,7 @@ public sealed class ScoringEngine
     private void MoveClock(RecordBatch records, long timeMicroseconds)
     {
         _clock.MoveTo(timeMicroseconds);
-        if (_health.IsMinuteOver(_clock.Microseconds))
+        if (_health.IsMinuteOver(_clock.Microseconds) && !_health.TryKeepOpen(_clock.Microseconds))
         {
             TellSettings();
             _health.StartMinute(_clock.Microseconds);
@@ -430,7 +430,7 @@ public sealed class ScoringEngine
         var counted = Counted(header, label, scored.WeightOf(weight));
         if (isAssumed) counted.StandsFor = 0;
         _encoder.Learn(scored.LabelKeys, header.TimeMicroseconds, label, counted.Weight);
-        return Learn(header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), isFresh: false, counted, header.ScoredAtMicroseconds);
+        return Learn(header.IdHash, scored.Vector, _awaiting.LogOddsOf(place), isFresh: false, counted);
     }
 
     private CountedLabel Counted(in KeptHeader header, int label, double weight) => new()
@@ -445,8 +445,7 @@ public sealed class ScoringEngine
         Alert = header.Alert,
     };
 
-    private LabelCount Learn(
-        ulong idHash, in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, bool isFresh, in CountedLabel label, long scoredAtMicroseconds)
+    private LabelCount Learn(ulong idHash, in EncodedVector vector, ReadOnlySpan<double> scoredLogOdds, bool isFresh, in CountedLabel label)
     {
         Labelled?.Invoke(new LabelledEvent
         {
@@ -457,7 +456,7 @@ public sealed class ScoringEngine
             Label = label.Label,
             Weight = label.Weight,
             TakenBackWeight = 0,
-            ScoredAtMicroseconds = scoredAtMicroseconds,
+            ScoredAtMicroseconds = label.ScoredAtMicroseconds,
             KnownAtMicroseconds = _clock.Microseconds,
         });
         _bank.Learn(vector, scoredLogOdds, isFresh, label.Label, label.Weight, _clock.Microseconds);

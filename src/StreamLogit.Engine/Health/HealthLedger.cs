@@ -86,20 +86,27 @@ internal sealed class HealthLedger
         }
     }
 
-    /// <summary>Whether the clock has left the open minute, so that <see cref="StartMinute"/> is due.</summary>
+    /// <summary>Whether the clock has left the open minute, so that <see cref="TryKeepOpen"/> is to be asked, and then <see cref="StartMinute"/> is due.</summary>
     public bool IsMinuteOver(long clockMicroseconds) => clockMicroseconds >= _time.MinuteEnd && IsOn;
 
     /// <summary>
-    /// Closes the open minute and opens that of the clock. A minute with fewer than eight records stays open for those after it, up to five of the same hour, so that
-    /// slow streams are not all bookkeeping.
+    /// Lets a minute with fewer than eight records stay open for those after it, up to five of the same hour, so that slow streams are not all bookkeeping.
     /// </summary>
+    /// <returns>Whether the minute of the clock is open now together with those before it.</returns>
+    public bool TryKeepOpen(long clockMicroseconds)
+    {
+        long minute = MinuteOf(clockMicroseconds);
+        if (minute - _time.First >= MostMinutesTogether || minute >= _time.HourEnd || OpenRecords >= FewRecords) return false;
+        Enter(minute);
+        return true;
+    }
+
+    /// <summary>Closes the minutes that are open and opens that of the clock.</summary>
     public void StartMinute(long clockMicroseconds)
     {
         long minute = MinuteOf(clockMicroseconds);
         bool isFirst = _time.MinuteEnd == long.MinValue;
-        _time.Present = minute;
-        _time.MinuteEnd = (minute + 1) * MicrosecondsOfMinute;
-        if (minute - _time.First < MostMinutesTogether && minute < _time.HourEnd && OpenRecords < FewRecords) return;
+        Enter(minute);
 
         CountWaiting();
         _cohorts.CountEvents(HealthRow.Stream(_open).Events);
@@ -294,6 +301,12 @@ internal sealed class HealthLedger
             stream.DelaySeconds += delay / 1e6;
             _openTally.Use(HealthRow.FirstDelayCell + DelayBins.Of(delay))++;
         }
+    }
+
+    private void Enter(long minute)
+    {
+        _time.Present = minute;
+        _time.MinuteEnd = (minute + 1) * MicrosecondsOfMinute;
     }
 
     private static long MinuteOf(long microseconds) => WholeDivision.Floor(microseconds, MicrosecondsOfMinute);

@@ -30,7 +30,7 @@ internal sealed class LedgerRun
     public LedgerRun MoveTo(long clock)
     {
         _clock = Math.Max(_clock, clock);
-        if (Ledger.IsMinuteOver(_clock)) Ledger.StartMinute(_clock);
+        if (Ledger.IsMinuteOver(_clock) && !Ledger.TryKeepOpen(_clock)) Ledger.StartMinute(_clock);
         return this;
     }
 

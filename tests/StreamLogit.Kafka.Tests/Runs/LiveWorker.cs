@@ -77,5 +77,4 @@ internal sealed class LiveWorker : IAsyncDisposable
 
     /// <summary>The ids of scores.</summary>
     public static IEnumerable<string> Ids(IEnumerable<Confluent.Kafka.ConsumeResult<string?, string>> scores) => scores.Select(score => score.Message.Key!);
-
 }
